@@ -1,0 +1,3 @@
+"""Opto-ckt sizes the driver and receiver circuits of optical links and optical sensors."""
+
+__version__ = "0.1.0"

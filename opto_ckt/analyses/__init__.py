@@ -1,0 +1,1 @@
+"""What is computed from a topology and its values."""

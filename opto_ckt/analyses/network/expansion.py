@@ -1,0 +1,252 @@
+"""Elements to primitives: the one small-signal model that the engine, the symbolic road and the decks share."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from functools import singledispatch
+from math import pi
+from typing import Any
+
+from opto_ckt.analyses.network.primitives import Expansion, Kind, NoiseGenerator, Primitive, Value
+from opto_ckt.constants import BOLTZMANN, ELEMENTARY_CHARGE
+from opto_ckt.topology import (
+    GROUND,
+    Capacitor,
+    Diode,
+    Element,
+    Inductor,
+    LaserDiode,
+    OpAmp,
+    Photodiode,
+    Reference,
+    Resistor,
+    Supply,
+    Switch,
+    Terminal,
+    Topology,
+    Transistor,
+    renamed,
+)
+
+Parts = tuple[tuple[Primitive, ...], tuple[NoiseGenerator, ...]]
+
+
+def expand(topology: Topology) -> Expansion:
+    """The small-signal primitives and noise generators; rails are ground, what lies between them is left out."""
+    rails = {element.node for element in topology if isinstance(element, Supply)}
+    primitives: list[Primitive] = []
+    generators: list[NoiseGenerator] = []
+    for element in topology:
+        grounded = renamed(element, dict.fromkeys(rails, GROUND))
+        more_primitives, more_generators = _expand(grounded)
+        primitives += [each for each in more_primitives if each.nodes[0] != each.nodes[1]]
+        generators += [each for each in more_generators if each.nodes[0] != each.nodes[1]]
+    nodes, gain = _signal(topology[topology.input])
+    return Expansion(
+        primitives=tuple(primitives),
+        generators=tuple(generators),
+        input=nodes,
+        gain=gain,
+        output=topology.output,
+        loop=f"{topology.loop}.stage1" if topology.loop else None,
+    )
+
+
+@singledispatch
+def _expand(element: Element) -> Parts:
+    raise TypeError(f"no small-signal model for {type(element).__name__}")
+
+
+@singledispatch
+def _signal(element: Element) -> tuple[tuple[str, str], Value]:
+    """Nodes and gain of the current that a unit of the circuit's input injects."""
+    raise TypeError(f"{type(element).__name__} is no input")
+
+
+@_expand.register
+def _(element: Resistor) -> Parts:
+    return (
+        (Primitive("R", element.ref, (element.a, element.b), _named(element.ref)),),
+        (_thermal(element.ref, (element.a, element.b), _named(element.ref)),),
+    )
+
+
+@_expand.register
+def _(element: Capacitor) -> Parts:
+    return (Primitive("C", element.ref, (element.a, element.b), _named(element.ref)),), ()
+
+
+@_expand.register
+def _(element: Inductor) -> Parts:
+    return (Primitive("L", element.ref, (element.a, element.b), _named(element.ref)),), ()
+
+
+@_expand.register
+def _(element: Diode) -> Parts:
+    return (_own("C", element, "capacitance", (element.anode, element.cathode)),), ()
+
+
+@_expand.register(Supply)
+@_expand.register(Terminal)
+@_expand.register(Switch)
+def _(element: Element) -> Parts:
+    """Nothing: a rail is ground, a terminal a name, and a switch that is off conducts nothing."""
+    return (), ()
+
+
+@_expand.register
+def _(element: Photodiode) -> Parts:
+    """Junction (C, shunt) behind its series resistance; light enters through the pole of the transit time."""
+    ref, junction, light = element.ref, f"{element.ref}.junction", f"{element.ref}.light"
+    inside = (element.cathode, junction)
+    transit = _named(f"{ref}.transit_frequency")
+    responsivity = _named(f"{ref}.responsivity")
+    return (
+        (
+            Primitive("R", f"{ref}.transit_r", (light, GROUND), _one),
+            Primitive("C", f"{ref}.transit_c", (light, GROUND), lambda v: 1 / (2 * pi * transit(v))),
+            Primitive("G", f"{ref}.photocurrent", (*inside, light, GROUND), responsivity),
+            _own("C", element, "capacitance", inside),
+            _own("R", element, "shunt_resistance", inside),
+            _own("R", element, "series_resistance", (junction, element.anode)),
+        ),
+        (
+            _shot(f"{ref} signal shot", inside, _named(f"{ref}.signal_current")),
+            _shot(f"{ref} ambient shot", inside, _named(f"{ref}.ambient_current")),
+            _shot(f"{ref} dark shot", inside, _named(f"{ref}.dark_current")),
+            _thermal(f"{ref} shunt", inside, _named(f"{ref}.shunt_resistance")),
+            _thermal(f"{ref} series", (junction, element.anode), _named(f"{ref}.series_resistance")),
+        ),
+    )
+
+
+@_signal.register
+def _(element: Photodiode) -> tuple[tuple[str, str], Value]:
+    return (GROUND, f"{element.ref}.light"), _one
+
+
+@_expand.register
+def _(element: OpAmp) -> Parts:
+    """Two poles of unit-gain stages, an output resistance, input capacitances; e_n sits ahead of the first stage."""
+    ref = element.ref
+    first, second, ideal = f"{ref}.pole1", f"{ref}.pole2", f"{ref}.ideal"
+    gain_bandwidth = _named(f"{ref}.gain_bandwidth")
+    open_loop_gain = _named(f"{ref}.open_loop_gain")
+    second_pole = _named(f"{ref}.second_pole")
+    voltage_noise = _named(f"{ref}.voltage_noise")
+    current_noise = _named(f"{ref}.current_noise")
+    return (
+        (
+            _own("C", element, "differential_capacitance", (element.plus, element.minus)),
+            Primitive("C", f"{ref}.common_plus", (element.plus, GROUND), _named(f"{ref}.common_capacitance")),
+            Primitive("C", f"{ref}.common_minus", (element.minus, GROUND), _named(f"{ref}.common_capacitance")),
+            Primitive("G", f"{ref}.stage1", (GROUND, first, element.plus, element.minus), _one),
+            Primitive("R", f"{ref}.gain", (first, GROUND), open_loop_gain),
+            Primitive("C", f"{ref}.dominant", (first, GROUND), lambda v: 1 / (2 * pi * gain_bandwidth(v))),
+            Primitive("G", f"{ref}.stage2", (GROUND, second, first, GROUND), _one),
+            Primitive("R", f"{ref}.unity", (second, GROUND), _one),
+            Primitive("C", f"{ref}.second", (second, GROUND), lambda v: 1 / (2 * pi * second_pole(v))),
+            Primitive("E", f"{ref}.buffer", (ideal, GROUND, second, GROUND), _one),
+            Primitive("R", f"{ref}.output", (ideal, element.out), _named(f"{ref}.output_resistance")),
+        ),
+        (
+            NoiseGenerator(
+                f"{ref} voltage",
+                (GROUND, first),
+                lambda v: voltage_noise(v) ** 2,
+                _named(f"{ref}.voltage_noise_corner"),
+            ),
+            NoiseGenerator(
+                f"{ref} current",
+                (GROUND, element.minus),
+                lambda v: current_noise(v) ** 2,
+                _named(f"{ref}.current_noise_corner"),
+            ),
+            NoiseGenerator(
+                f"{ref} current, + input",
+                (GROUND, element.plus),
+                lambda v: current_noise(v) ** 2,
+                _named(f"{ref}.current_noise_corner"),
+            ),
+        ),
+    )
+
+
+@_expand.register
+def _(element: Transistor) -> Parts:
+    """Transconductance with input conductance, output conductance and two capacitances.
+
+    Channel noise is 4 k T γ g_m (γ = 2/3, long channel); a bipolar transistor's collector shot noise 2 q I_C
+    is the same with γ = 1/2. Base current brings its own shot noise.
+    """
+    ref, control, source, drain = element.ref, element.control, element.source, element.drain
+    transconductance = _named(f"{ref}.transconductance")
+    input_conductance = _named(f"{ref}.input_conductance")
+    output_conductance = _named(f"{ref}.output_conductance")
+    noise_factor = _named(f"{ref}.channel_noise_factor")
+    temperature = _named("temperature")
+    return (
+        (
+            Primitive("G", f"{ref}.channel", (drain, source, control, source), transconductance),
+            Primitive("G", f"{ref}.input", (control, source, control, source), input_conductance),
+            Primitive("G", f"{ref}.leak", (drain, source, drain, source), output_conductance),
+            Primitive(
+                "C", f"{ref}.control_source", (control, source), _named(f"{ref}.control_source_capacitance")
+            ),
+            Primitive("C", f"{ref}.control_drain", (control, drain), _named(f"{ref}.control_drain_capacitance")),
+        ),
+        (
+            NoiseGenerator(
+                f"{ref} channel",
+                (drain, source),
+                lambda v: 4 * BOLTZMANN * temperature(v) * noise_factor(v) * transconductance(v),
+                None,
+            ),
+            _shot(f"{ref} control", (control, source), _named(f"{ref}.control_current")),
+        ),
+    )
+
+
+@_expand.register
+def _(element: LaserDiode) -> Parts:
+    ends = (element.anode, element.cathode)
+    return (_own("R", element, "series_resistance", ends), _own("C", element, "capacitance", ends)), ()
+
+
+@_expand.register
+def _(element: Reference) -> Parts:
+    ref, ends = element.ref, (element.cathode, element.anode)
+    noise, resistance = _named(f"{ref}.noise"), _named(f"{ref}.output_resistance")
+    return (
+        (_own("R", element, "output_resistance", ends),),
+        (NoiseGenerator(f"{ref} noise", ends, lambda v: (noise(v) / resistance(v)) ** 2, None),),
+    )
+
+
+@_signal.register
+def _(element: Reference) -> tuple[tuple[str, str], Value]:
+    resistance = _named(f"{element.ref}.output_resistance")
+    return (element.anode, element.cathode), lambda v: 1 / resistance(v)
+
+
+def _one(values: Mapping[str, Any]) -> float:
+    return 1.0
+
+
+def _named(name: str) -> Value:
+    return lambda values: values[name]
+
+
+def _own(kind: Kind, element: Element, figure: str, nodes: tuple[str, ...]) -> Primitive:
+    name = element.value_name(figure)
+    return Primitive(kind, name, nodes, _named(name))
+
+
+def _thermal(label: str, nodes: tuple[str, str], resistance: Value) -> NoiseGenerator:
+    temperature = _named("temperature")
+    name = label if " " in label else f"{label} thermal"
+    return NoiseGenerator(name, nodes, lambda v: 4 * BOLTZMANN * temperature(v) / resistance(v), None)
+
+
+def _shot(label: str, nodes: tuple[str, str], current: Value) -> NoiseGenerator:
+    return NoiseGenerator(label, nodes, lambda v: 2 * ELEMENTARY_CHARGE * current(v), None)

@@ -1,0 +1,24 @@
+"""The registry: every circuit by name, loaded when it is asked for."""
+
+from __future__ import annotations
+
+from importlib import import_module
+
+from opto_ckt.circuit import Circuit
+
+CIRCUITS: dict[str, str] = {
+    "tia": "opto_ckt.circuits.receivers.tia",
+    "laser-current": "opto_ckt.circuits.drivers.laser_current",
+}
+"""Name -> module whose ``CIRCUIT`` it is."""
+
+
+def load(name: str) -> Circuit:
+    """The circuit of that name.
+
+    Raises
+    ------
+    KeyError : there is none of that name in `CIRCUITS`.
+    """
+    circuit: Circuit = import_module(CIRCUITS[name]).CIRCUIT
+    return circuit

@@ -1,0 +1,1 @@
+"""Blocks: parts of a circuit that any circuit may take."""

@@ -1,0 +1,174 @@
+"""C1 of the transimpedance amplifier: a window between ringing and what is too slow or unstable, and its place in it."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from itertools import product
+from math import inf, isfinite
+
+import numpy as np
+
+from opto_ckt.circuit import Bench, Fitted
+from opto_ckt.circuits.receivers.detector import wanted_bandwidth
+from opto_ckt.derivation import Derivation
+from opto_ckt.errors import InfeasibleError
+from opto_ckt.formulas import second_order, transimpedance, transimpedance_limits
+from opto_ckt.limits import Lanes
+from opto_ckt.request import ReceiverRequest
+from opto_ckt.units import write
+
+BUILDABLE = 0.2e-12  #: a fitted capacitor below this is no more than its own pads [F]
+SCAN = np.geomspace(1 / 20, 20, 121)  #: total C_f tried at nominal, as multiples of the closed form
+COARSE = SCAN[::2]  #: tried at corners
+DECIDES = ("U1.gain_bandwidth", "U1.second_pole", "D1.capacitance")  #: limits whose combinations make the corners
+ALLOWED_PEAKING = float(second_order.peaking(quality=1.0))  #: where nothing is asked for: 1.25 dB
+
+
+def input_capacitance(request: ReceiverRequest, bench: Bench) -> dict[str, float]:
+    """Capacitance of the summing node by where it comes from, nominal. [F]"""
+    capacitance = bench.nominal("D1.capacitance")
+    return {
+        "D1 at its bias": float(request.detector.capacitance_at(request.detector.reverse_bias, capacitance)),
+        "U1 common mode": bench.nominal("U1.common_capacitance"),
+        "U1 differential": bench.nominal("U1.differential_capacitance"),
+        "board": bench.nominal("CB"),
+    }
+
+
+def feedback_capacitor(
+    request: ReceiverRequest,
+    derivation: Derivation,
+    bench: Bench,
+    r1: float,
+    quality: float,
+    others: Mapping[str, float],
+) -> tuple[Fitted, float]:
+    """C1 for the wanted Q on the whole network, moved into its window; and the overshoot left at the worst corner.
+
+    Raises
+    ------
+    InfeasibleError : what damps the response is more than a decompensated op amp stands.
+    """
+    series, stray = request.preferred.capacitors.series, bench.nominal("CS")
+    capacitance = sum(input_capacitance(request, bench).values())
+    gain_bandwidth = bench.nominal("U1.gain_bandwidth")
+    with np.errstate(invalid="ignore"):
+        closed_form = transimpedance.feedback_capacitance(
+            feedback_resistance=r1, input_capacitance=capacitance, gain_bandwidth=gain_bandwidth, quality=quality
+        )
+    total = max(float(np.nan_to_num(closed_form)), stray)
+    found = bench.evaluate({"R1": r1, "C1": total * SCAN - stray, **others})
+    wanted = _where_quality(total * SCAN, found["quality_factor"], quality)
+    low, high, overshoots = _window(request, bench, r1, total, others)
+    stable = _largest_stable(bench, capacitance)
+    if low > stable and isfinite(low):
+        raise _unstable(bench, capacitance, low, stable)
+    high = min(high, stable)
+    aim = min(max(wanted, low), high) if low <= high else float(np.sqrt(low * high)) if isfinite(low) else high
+    overshoot = float(np.interp(aim, total * COARSE, overshoots))
+    if "C1" in request.fixed:
+        derivation.note("C1", "fixed in the design file")
+        return Fitted("C1", request.fixed["C1"], series, fixed=True), overshoot
+    reason = _reason(request, quality, (wanted, total, aim), (low, high), stray)
+    derivation.compute(
+        "C1",
+        transimpedance.feedback_capacitance,
+        reason=reason,
+        feedback_resistance=r1,
+        input_capacitance=capacitance,
+        gain_bandwidth=gain_bandwidth,
+        quality=quality,
+    )
+    exact = max(aim - stray, 0.0)
+    bare = exact < BUILDABLE
+    return Fitted("C1", exact, series, low=0.0 if bare else exact / 2, high=stable - stray, omittable=bare), overshoot
+
+
+def _reason(
+    request: ReceiverRequest,
+    quality: float,
+    totals: tuple[float, float, float],
+    window: tuple[float, float],
+    stray: float,
+) -> str:
+    wanted, closed_form, aim = totals
+    low, high = (write(max(edge - stray, 0.0), "F") if isfinite(edge) else "open" for edge in window)
+    said = f"Q = {quality:.3g}"
+    if abs(wanted / closed_form - 1) > 0.02:
+        said += f" ({write(wanted, 'F')} in all with second pole and load, {write(closed_form, 'F')} with one pole)"
+    if abs(aim / wanted - 1) > 0.02:
+        said += ", moved into its window"
+    said += f"; window over corners {low} … {high}; {write(stray, 'F')} more is stray"
+    if aim - stray < BUILDABLE:
+        said += "; no more than bare pads: not to be built as a part"
+    return said if window[0] <= window[1] else said + "; the window is empty"
+
+
+def _unstable(bench: Bench, capacitance: float, low: float, stable: float) -> InfeasibleError:
+    gain = bench.nominal("U1.minimum_stable_gain")
+    return InfeasibleError(
+        f"C_f would have to be at least {write(low, 'F')} against peaking, and at most {write(stable, 'F')} for the minimum"
+        f" stable gain {gain:.3g} of U1",
+        [
+            f"minimum stable gain of U1 ≤ {1 + capacitance / low:.3g}",
+            f"{write((gain - 1) * low - capacitance, 'F')} more from summing node to ground",
+        ],
+    )
+
+
+def _window(
+    request: ReceiverRequest, bench: Bench, r1: float, total: float, others: Mapping[str, float]
+) -> tuple[float, float, Lanes]:
+    """Least total C_f that damps and largest that keeps the bandwidth, over corners; worst overshoot along `COARSE`."""
+    totals = total * COARSE
+    stray, spread = bench.nominal("CS"), bench.high("CS") - bench.nominal("CS")
+    fitted = np.maximum(totals - stray, 0.0)
+    stock = request.preferred.capacitors
+    deviation = np.where(fitted < 10e-12, stock.tolerance_below_10pF, stock.tolerance * fitted) + spread
+    corners = list(product(*((bench.low(name), bench.high(name)) for name in DECIDES)))
+    ends = np.array([np.maximum(totals - deviation - stray, -stray * 0.99), totals + deviation - stray])
+    lanes = {name: np.repeat([corner[i] for corner in corners], ends.size) for i, name in enumerate(DECIDES)}
+    found = bench.evaluate({"R1": r1, **others, **lanes, "C1": np.tile(ends.ravel(), len(corners))})
+    shape = (len(corners), 2, len(totals))
+
+    def worst(name: str, *, smallest: bool) -> Lanes:
+        figure = np.nan_to_num(found[name], nan=-inf if smallest else inf).reshape(shape)
+        return np.asarray(figure.min(axis=(0, 1)) if smallest else figure.max(axis=(0, 1)))
+
+    require = request.require
+    peaking = require["peaking"].max if "peaking" in require else None
+    margin = require["phase_margin"].min if "phase_margin" in require else None
+    damped = np.flatnonzero(
+        (worst("peaking", smallest=False) <= (ALLOWED_PEAKING if peaking is None else peaking))
+        & (worst("phase_margin", smallest=True) >= (margin or 0.0))
+    )
+    bandwidth = wanted_bandwidth(request)
+    wide = np.flatnonzero(worst("bandwidth", smallest=True) >= (bandwidth or 0.0))
+    overshoots = np.minimum(worst("overshoot", smallest=False), 1.0)
+    low = float(totals[damped[0]]) if len(damped) else inf
+    if bandwidth is None:
+        return low, inf, overshoots
+    return low, float(totals[wide[-1]]) if len(wide) else float(totals[0]), overshoots
+
+
+def _largest_stable(bench: Bench, capacitance: float) -> float:
+    """Total C_f above which a decompensated op amp is below its minimum stable gain. [F]"""
+    gain = bench.nominal("U1.minimum_stable_gain")
+    if gain <= 1:
+        return inf
+    return float(
+        transimpedance_limits.largest_feedback_capacitance(input_capacitance=capacitance, minimum_stable_gain=gain)
+    )
+
+
+def _where_quality(tried: Lanes, qualities: Lanes, wanted: float) -> float:
+    """First C_f, from small to large, at which the largest Q has come down to the wanted one; else that of the least Q."""
+    known = np.nan_to_num(qualities, nan=inf)
+    below = np.flatnonzero(known <= wanted)
+    if not len(below):
+        return float(tried[int(np.argmin(known))])
+    index = int(below[0])
+    if index == 0 or not isfinite(known[index - 1]):
+        return float(tried[index])
+    share = (known[index - 1] - wanted) / (known[index - 1] - known[index])
+    return float(tried[index - 1] * (tried[index] / tried[index - 1]) ** share)

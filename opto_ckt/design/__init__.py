@@ -1,0 +1,1 @@
+"""Reads a design file, runs its circuit and builds the result."""

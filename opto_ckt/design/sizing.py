@@ -1,0 +1,201 @@
+"""The main job: from a design file that was read to everything that was found for it."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping, Sequence
+from dataclasses import dataclass
+from itertools import product
+from typing import Literal
+
+import numpy as np
+
+from opto_ckt.analyses.corners import Extreme, extremes, tolerances_of
+from opto_ckt.analyses.faults import run_faults
+from opto_ckt.analyses.thermal import worst_heat
+from opto_ckt.choice import Choice, choose
+from opto_ckt.circuit import Circuit, Fitted
+from opto_ckt.derivation import Derivation
+from opto_ckt.design.findings import assumed_spreads, cautions, head, noise_table
+from opto_ckt.design.model import Model
+from opto_ckt.design.partslist import parts_list
+from opto_ckt.design.reading import ReadDesign
+from opto_ckt.design.remedies import remedies
+from opto_ckt.errors import InputError
+from opto_ckt.figures import FIGURES
+from opto_ckt.limits import (
+    NOMINAL,
+    Corner,
+    Level,
+    Limits,
+    Requirement,
+    distinct,
+    one_at_a_time,
+    values_at,
+)
+from opto_ckt.request import Request
+from opto_ckt.request.reading import meant
+from opto_ckt.result import FoundFigure, FoundRequirement, Result, Rounding, Scene
+from opto_ckt.units import si_unit
+
+SURROUNDINGS = ("temperature", "supply.", "signal.")  #: limits whose all combinations are tried for heat, load, faults
+
+
+@dataclass(frozen=True)
+class Sized:
+    """A model with values chosen for its fitted parts."""
+
+    model: Model
+    fitted: tuple[Fitted, ...]
+    limits: Limits  #: those of the model and the tolerances of the fitted parts
+    choice: Choice
+    derivation: Derivation
+    requirements: tuple[Requirement, ...]
+    asked: int  #: how many of them the design file asks for; the rest is implied
+
+
+def size(read: ReadDesign, circuit: Circuit) -> Result:
+    """Size the circuit of a design file, check it at its corners and gather what was found.
+
+    Raises
+    ------
+    InputError : a figure is required that the circuit does not offer, or a part fixed that it does not have.
+    InfeasibleError : no values exist that bias and stabilise the circuit.
+    """
+    request = read.request
+    model = Model(circuit, request)
+    refuse_unknown(read, circuit, model)
+    sized = choose_values(model)
+    found = extremes(model.evaluate, sized.limits, sized.choice.values, circuit.offers)
+    corners = _corners(sized, found)
+    lanes = values_at(sized.limits, corners, sized.choice.values)
+    biased = model.biased(lanes)
+    rows = _requirement_rows(sized, found)
+    scenes = _scenes(sized, rows, found)
+    heat = worst_heat(circuit, biased, request, corners)
+    parts = parts_list(sized.model, sized.fitted, sized.choice, sized.derivation, sized.limits, biased)
+    return Result(
+        head=head(read, circuit),
+        topology=model.topology,
+        requirements=rows,
+        figures=_figure_rows(circuit.offers, found),
+        parts=parts,
+        noise=noise_table(model, scenes[0].values),
+        heat=heat,
+        faults=run_faults(circuit, lanes, request),
+        roundings=_roundings(sized),
+        assumed=assumed_spreads(sized.limits),
+        cautions=cautions(model, biased, sized.limits, parts, heat, sized.choice),
+        not_checked=circuit.not_checked,
+        derivation=sized.derivation,
+        scenes=scenes,
+        noise_frequency=circuit.noise_frequency(request),
+        noise_band=circuit.noise_band(request),
+    )
+
+
+def choose_values(model: Model) -> Sized:
+    """Exact values from the circuit, preferred values for all of them together."""
+    circuit, request = model.circuit, model.request
+    derivation = Derivation()
+    fitted = circuit.propose(request, derivation, model.bench())
+    elements = [model.topology[part.ref] for part in fitted]
+    limits = {**model.limits, **tolerances_of(elements, request)}
+    asked = _asked(request)
+    requirements = (*asked, *circuit.implied(request))
+    choice = choose(fitted, model.evaluate, requirements, limits)
+    return Sized(model, fitted, limits, choice, derivation, requirements, len(asked))
+
+
+def _asked(request: Request) -> list[Requirement]:
+    sides: tuple[Literal["min"], Literal["max"]] = ("min", "max")
+    return [
+        Requirement(name, side, bound, FIGURES[name].scale)
+        for name, limit in request.require.items()
+        for side in sides
+        if (bound := getattr(limit, side)) is not None
+    ]
+
+
+def _figure_rows(offers: Sequence[str], found: Mapping[str, Extreme]) -> tuple[FoundFigure, ...]:
+    return tuple(
+        FoundFigure(
+            name, found[name].nominal, found[name].low, found[name].high, found[name].at_low, found[name].at_high,
+            si_unit(FIGURES[name].unit),
+        )
+        for name in FIGURES
+        if name in offers
+    )  # fmt: skip
+
+
+def _requirement_rows(sized: Sized, found: Mapping[str, Extreme]) -> tuple[FoundRequirement, ...]:
+    """A row for every bound asked for, and for each implied one that is missed."""
+    rows = []
+    for index, requirement in enumerate(sized.requirements):
+        extreme = found[requirement.figure]
+        low = requirement.side == "min"
+        worst, at = (extreme.low, extreme.at_low) if low else (extreme.high, extreme.at_high)
+        met = bool(requirement.margin(worst) >= 0)
+        if not met or index < sized.asked:
+            ways = () if met else remedies(sized.model, requirement, at)
+            unit = si_unit(FIGURES[requirement.figure].unit)
+            rows.append(FoundRequirement(requirement, extreme.nominal, worst, at, unit, ways))
+    return tuple(rows)
+
+
+def _corners(sized: Sized, found: Mapping[str, Extreme]) -> list[Corner]:
+    """Corners for heat, load and faults: every one that a figure was worst at, and all combinations of surroundings."""
+    names = [n for n, limit in sized.limits.items() if limit.varies and n.startswith(SURROUNDINGS)]
+    levels: tuple[Level, ...] = ("low", "high")
+    surroundings: list[Corner] = [dict(zip(names, ends, strict=True)) for ends in product(levels, repeat=len(names))]
+    worst = [corner for extreme in found.values() for corner in (extreme.at_low, extreme.at_high)]
+    singles = one_at_a_time(sized.limits)
+    crossed = [{**single, **around} for single in singles for around in (surroundings[0], surroundings[-1])]
+    return distinct([NOMINAL, *worst, *singles, *surroundings, *crossed])
+
+
+def _scenes(sized: Sized, rows: Sequence[FoundRequirement], found: Mapping[str, Extreme]) -> tuple[Scene, ...]:
+    """Nominal, and the two corners that matter most: of the requirements, else of the first figures."""
+    wanted = [(f"{row.requirement.figure} {row.requirement.side}", row.at) for row in rows]
+    wanted += [(f"{name} least", extreme.at_low) for name, extreme in found.items()]
+    named: dict[frozenset[tuple[str, Level]], tuple[str, Corner]] = {}
+    for name, corner in [("nominal", NOMINAL), *wanted]:
+        named.setdefault(frozenset(corner.items()), (name, corner))
+    chosen = list(named.values())[:3]
+    values = values_at(sized.limits, [corner for _, corner in chosen], sized.choice.values)
+    biased = sized.model.biased(values)
+    figures = sized.model.circuit.figures(biased, sized.model.evaluation(biased), sized.model.request)
+    return tuple(
+        Scene(
+            name,
+            corner,
+            {key: float(np.broadcast_to(value, len(chosen))[lane]) for key, value in biased.items()},
+            {key: float(np.broadcast_to(value, len(chosen))[lane]) for key, value in figures.items()},
+        )
+        for lane, (name, corner) in enumerate(chosen)
+    )
+
+
+def _roundings(sized: Sized) -> tuple[Rounding, ...]:
+    """Figures at nominal with exact values beside those with preferred values."""
+    exact = {part.ref: part.exact for part in sized.fitted}
+    both = {ref: np.array([exact[ref], value]) for ref, value in sized.choice.values.items()}
+    figures = sized.model.bench().evaluate(both)
+    return tuple(
+        Rounding(name, float(figures[name][0]), float(figures[name][1]), si_unit(FIGURES[name].unit))
+        for name in FIGURES
+        if name in sized.model.circuit.offers
+    )
+
+
+def refuse_unknown(read: ReadDesign, circuit: Circuit, model: Model) -> None:
+    """Refuse requirements on figures that the circuit does not offer, and fixed parts that it does not have."""
+    fixable = sorted(element.ref for element in model.topology.fitted if element.chosen_from)
+    offers = sorted(circuit.offers)
+    unknown = [(("require", name), name, offers) for name in read.request.require if name not in circuit.offers]
+    unknown += [(("fixed", ref), ref, fixable) for ref in read.request.fixed if ref not in fixable]
+    problems = [
+        read.source.problem(path, f"{circuit.name} has no {name}; it has {', '.join(allowed)}{meant(name, allowed)}")
+        for path, name, allowed in unknown
+    ]
+    if problems:
+        raise InputError(problems)

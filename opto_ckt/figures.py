@@ -1,0 +1,90 @@
+"""The one table of figures that a circuit can promise: name, unit, what it means, what a miss is measured by."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass
+from types import MappingProxyType
+
+
+@dataclass(frozen=True)
+class Figure:
+    """One figure of merit, as it is asked for under `[require]` and printed in results."""
+
+    name: str
+    unit: str  #: as read and written; inside it stands in the SI base unit
+    label: str
+    convention: str  #: what exactly is meant where the trade has more than one use
+    scale: float  #: a margin is measured against the larger of the limit and this, in the SI base unit
+    decibel: float | None = None  #: factor of the logarithm that is printed beside: 10 for powers, 20 for amplitudes
+
+
+_ALL = (
+    Figure("transimpedance", "V/A", "transimpedance", "output voltage over photocurrent, at dc or in midband", 1.0),
+    Figure(
+        "bandwidth",
+        "Hz",
+        "bandwidth",
+        "light to the last node, blocks and load included; -3 dB electrical, re midband",
+        1.0,
+    ),
+    Figure("low_cutoff", "Hz", "lower cut-off", "-3 dB electrical, re midband", 0.01),
+    Figure("peaking", "dB", "peaking", "highest gain over midband, 20 log", 0.5),
+    Figure("phase_margin", "°", "phase margin", "smallest over all crossings of unity loop gain", 45.0),
+    Figure(
+        "quality_factor", "1", "quality factor", "largest of all complex pole pairs; 0.5 where all poles are real", 0.5
+    ),
+    Figure("rise_time", "s", "rise time", "10-90 %, step of light to output, rise of the source excluded", 1e-12),
+    Figure("overshoot", "1", "overshoot", "of the final step", 0.05),
+    Figure(
+        "output_swing", "V", "output swing", "largest distance from the dark level: one level, ambient, overshoot", 0.01
+    ),
+    Figure("output_noise", "V", "output noise", "rms in the noise band, signal at its typical level", 1e-9),
+    Figure(
+        "input_noise_density",
+        "A/√Hz",
+        "input noise density",
+        "at noise_frequency, dark current and ambient, no signal",
+        1e-18,
+    ),
+    Figure("nep_density", "W/√Hz", "NEP density", "at noise_frequency, dark current and ambient, no signal", 1e-18),
+    Figure(
+        "nep_band",
+        "W",
+        "NEP in the band",
+        "output rms noise / (midband |Zt| × responsivity); ambient, no signal",
+        1e-15,
+        10.0,
+    ),
+    Figure(
+        "sensitivity",
+        "W",
+        "sensitivity",
+        "average power at the stated bit error and extinction ratio, optimum threshold, intersymbol interference in it",
+        1e-12,
+        10.0,
+    ),
+    Figure("overload", "W", "overload", "average power at which the one level reaches the swing limit", 1e-9, 10.0),
+    Figure("dynamic_range", "dB", "dynamic range", "overload over sensitivity, optical: 10 log of the powers", 1.0),
+    Figure("dc_offset", "V", "dc offset", "of the output, no light, from its ideal level", 1e-4),
+    Figure("dark_output", "V", "dark output", "output level without light, to ground", 0.01),
+    Figure("current", "A", "current", "through the source, steady", 1e-6),
+    Figure("current_error", "1", "current error", "against the current asked for, either sign", 1e-3),
+    Figure("bias_current", "A", "bias current", "steady part of the current through the source", 1e-6),
+    Figure("modulation_current", "A", "modulation current", "one level to zero level, peak to peak", 1e-6),
+    Figure("optical_power", "W", "optical power", "average, at the stated plane, after trimming at 25 °C", 1e-9, 10.0),
+    Figure(
+        "extinction_ratio", "W/W", "extinction ratio", "one level over zero level, as a ratio; 10 log in dB", 1.0, 10.0
+    ),
+    Figure("compliance_margin", "V", "compliance margin", "supply left over at the current, at its worst", 0.1),
+    Figure("loop_bandwidth", "Hz", "loop bandwidth", "where the loop gain is one", 1.0),
+    Figure("harmonic_2", "dB", "second harmonic", "re the fundamental, electrical: 20 log of the photocurrents", 1.0),
+    Figure("harmonic_3", "dB", "third harmonic", "re the fundamental, electrical: 20 log of the photocurrents", 1.0),
+    Figure("dissipation", "W", "dissipation", "total taken from the supplies", 1e-3),
+    Figure("junction_temperature", "°C", "junction temperature", "of the hottest junction", 10.0),
+    Figure("droop", "1", "droop", "of the average, half of peak to peak, after run_length equal bits", 0.01),
+    Figure("margin", "dB", "link margin", "received power over sensitivity, optical: 10 log", 1.0),
+)
+
+FIGURES: Mapping[str, Figure] = MappingProxyType({figure.name: figure for figure in _ALL})
+"""Every figure by its name, in the order in which figures are printed."""

@@ -1,0 +1,1 @@
+"""Closed forms, one subject a file."""

@@ -1,0 +1,129 @@
+"""What is read from noise densities: where one source takes over from another, NEP, signal-to-noise ratio."""
+
+from __future__ import annotations
+
+from numpy import log, pi, sqrt
+
+from opto_ckt.constants import BOLTZMANN, ELEMENTARY_CHARGE
+from opto_ckt.formulas.formula import Real, source
+
+
+@source("derived: 2πf C e_n = √(4kT/R)")
+def capacitance_noise_crossover(
+    *, voltage_noise: Real, capacitance: Real, resistance: Real, temperature: Real
+) -> Real:
+    r"""Frequency above which e_n·2πfC exceeds the thermal noise of the feedback resistance.
+
+    .. math:: f = \frac{\sqrt{4kT/R}}{2 \pi C e_n}
+
+    Parameters
+    ----------
+    voltage_noise : e_n. [V/√Hz]
+    capacitance : C = C_i + C_f. [F]
+    resistance : R. [Ω]
+    temperature : T. [K]
+
+    Returns
+    -------
+    f. [Hz]
+
+    Notes
+    -----
+    e_n white there.
+    """
+    return sqrt(4 * BOLTZMANN * temperature / resistance) / (2 * pi * capacitance * voltage_noise)
+
+
+@source("derived: 2qI = 4kT/R; P. C. D. Hobbs, Optics & Photonics News, April 2001")
+def shot_equals_thermal_voltage(*, temperature: Real) -> Real:
+    r"""Drop across the feedback resistance at which shot noise equals its thermal noise.
+
+    .. math:: I R = 2kT/q
+
+    Parameters
+    ----------
+    temperature : T. [K]
+
+    Returns
+    -------
+    I R. [V]
+
+    Notes
+    -----
+    A larger drop means that the light, not the resistor, sets the noise.
+
+    Examples
+    --------
+    >>> print(f"{shot_equals_thermal_voltage(temperature=300.0) * 1e3:.1f} mV")
+    51.7 mV
+    """
+    return 2 * BOLTZMANN * temperature / ELEMENTARY_CHARGE
+
+
+@source("derived: (shot + thermal)/shot; P. C. D. Hobbs, Optics & Photonics News, April 2001")
+def thermal_penalty(*, drop: Real, temperature: Real) -> Real:
+    r"""Loss of signal-to-noise ratio that the feedback resistance adds to shot noise.
+
+    .. math:: 10 \log_{10}\left(1 + \frac{2kT}{q V}\right)
+
+    Parameters
+    ----------
+    drop : V = I R_f. [V]
+    temperature : T. [K]
+
+    Returns
+    -------
+    The loss. [dB]
+
+    Notes
+    -----
+    No amplifier noise.
+    """
+    ratio = 1 + 2 * BOLTZMANN * temperature / (ELEMENTARY_CHARGE * drop)
+    decibels: Real = 10 / log(10.0) * log(ratio)
+    return decibels
+
+
+@source("definition")
+def noise_equivalent_power(*, current_noise: Real, responsivity: Real) -> Real:
+    r"""Optical power that equals the noise: a density from a density, watts from an rms current.
+
+    .. math:: NEP = i/R
+
+    Parameters
+    ----------
+    current_noise : i at the input. [A/√Hz]
+    responsivity : R at the wavelength, avalanche gain included. [A/W]
+
+    Returns
+    -------
+    NEP. [W/√Hz]
+
+    Notes
+    -----
+    At the frequency, or over the band, of i.
+    """
+    return current_noise / responsivity
+
+
+@source("definition")
+def signal_to_noise(*, signal: Real, noise: Real) -> Real:
+    r"""Ratio of signal power to noise power.
+
+    .. math:: 20 \log_{10}(I/i)
+
+    Parameters
+    ----------
+    signal : I. [A]
+    noise : i, rms. [A]
+
+    Returns
+    -------
+    The electrical ratio; half of it in optical decibels. [dB]
+
+    Notes
+    -----
+    Rms over rms; a decision's Q is another thing.
+    """
+    decibels: Real = 20 / log(10.0) * log(signal / noise)
+    return decibels

@@ -1,0 +1,1 @@
+"""Decks, bill of materials, schematic and printed page, each from a result."""

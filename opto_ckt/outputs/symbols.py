@@ -1,0 +1,261 @@
+"""Symbols of the schematic as plain strokes on the drawing's grid, one function a class of element."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Iterator
+from dataclasses import dataclass
+from functools import singledispatch
+from math import cos, hypot, pi, sin
+
+from opto_ckt.topology import (
+    Capacitor,
+    Diode,
+    Element,
+    Inductor,
+    LaserDiode,
+    OpAmp,
+    Photodiode,
+    Point,
+    Reference,
+    Supply,
+    Switch,
+    Terminal,
+    Transistor,
+)
+
+Segment = tuple[Point, Point]
+
+
+@dataclass(frozen=True)
+class Shape:
+    """A line through points; closed it is an outline, filled a solid."""
+
+    points: tuple[Point, ...]
+    closed: bool = False
+    filled: bool = False
+
+    @property
+    def segments(self) -> Iterator[Segment]:
+        """Straight pieces of the line."""
+        yield from zip(self.points, self.points[1:], strict=False)
+        if self.closed:
+            yield self.points[-1], self.points[0]
+
+    def mapped(self, place: Callable[[Point], Point]) -> Shape:
+        """The same shape elsewhere."""
+        return Shape(tuple(place(point) for point in self.points), self.closed, self.filled)
+
+
+def snapped(point: Point) -> Point:
+    """The point without the noise of its arithmetic."""
+    return (round(point[0], 6) + 0.0, round(point[1], 6) + 0.0)
+
+
+def line(*points: Point) -> Shape:
+    """An open line."""
+    return Shape(points)
+
+
+def disc(centre: Point, radius: float, *, filled: bool) -> Shape:
+    """A circle, as a polygon fine enough to look round."""
+    corners = (2 * pi * step / 24 for step in range(24))
+    points = tuple((centre[0] + radius * cos(angle), centre[1] + radius * sin(angle)) for angle in corners)
+    return Shape(points, closed=True, filled=filled)
+
+
+def arrow(start: Point, tip: Point, *, size: float = 0.14) -> tuple[Shape, Shape]:
+    """A line with a solid head."""
+    length = hypot(tip[0] - start[0], tip[1] - start[1])
+    along = ((tip[0] - start[0]) / length, (tip[1] - start[1]) / length)
+    foot = (tip[0] - size * along[0], tip[1] - size * along[1])
+    side = (-along[1] * size * 0.38, along[0] * size * 0.38)
+    head = (tip, (foot[0] + side[0], foot[1] + side[1]), (foot[0] - side[0], foot[1] - side[1]))
+    return line(start, foot), Shape(head, closed=True, filled=True)
+
+
+def symbol(element: Element, touched: frozenset[Point]) -> tuple[Shape, ...]:
+    """Strokes of one element, with leads to its pins; an op amp's supply pin that nothing touches is left out."""
+    if not drawn(element) or not element.pin_points():
+        return ()
+    if element.to is not None:
+        return _between(element, element.to)
+    place = element.placed
+    optional = {element.pin_places[pin] for pin in optional_pins(element)}
+    leads = {offset for offset in optional if snapped(place(offset)) not in touched}
+    return tuple(shape.mapped(place) for shape in outline(element) if not leads & set(shape.points))
+
+
+def drawn(element: Element) -> bool:
+    """Whether an element has a place on the drawing: fitted, and no rail, which is shown by marks."""
+    return element.fitted and not isinstance(element, Supply)
+
+
+def optional_pins(element: Element) -> frozenset[str]:
+    """Pins that may be left out of the drawing."""
+    return frozenset({"positive", "negative"}) if isinstance(element, OpAmp) else frozenset()
+
+
+def _between(element: Element, to: Point) -> tuple[Shape, ...]:
+    """A two-terminal symbol in the middle of the line from ``at`` to ``to``, with its leads."""
+    (x, y), length = element.at, hypot(to[0] - element.at[0], to[1] - element.at[1])
+    along = ((to[0] - x) / length, (to[1] - y) / length)
+    across = (along[1], -along[0]) if element.flipped else (-along[1], along[0])
+    half = half_length(element)
+    scale = min(1.0, 0.45 * length / half)
+
+    def place(point: Point) -> Point:
+        u, v = length / 2 + scale * point[0], scale * point[1]
+        return (x + u * along[0] + v * across[0], y + u * along[1] + v * across[1])
+
+    body = tuple(shape.mapped(place) for shape in outline(element))
+    return (line(element.at, place((-half, 0))), line(place((half, 0)), to), *body)
+
+
+def half_length(element: Element) -> float:
+    """Half the length of a two-terminal body between its leads."""
+    return next((half for kind, half in _HALF_LENGTHS if isinstance(element, kind)), 0.45)
+
+
+_HALF_LENGTHS: tuple[tuple[type[Element], float], ...] = (
+    (Capacitor, 0.08), (Inductor, 0.52), (Diode, 0.18), (Photodiode, 0.18), (LaserDiode, 0.18), (Reference, 0.18),
+)  # fmt: skip
+
+
+@singledispatch
+def outline(element: Element) -> tuple[Shape, ...]:
+    """Body in its own axes: two-terminal about the origin along x, others with leads as they face right.
+
+    An element without a symbol of its own is a box.
+    """
+    if element.to is not None:
+        return (_box(-0.45, -0.18, 0.45, 0.18),)
+    xs, ys = zip(*element.pin_places.values(), strict=True)
+    return (_box(min(xs), min(ys) - 0.3, max(xs), max(ys) + 0.3),)
+
+
+def _box(left: float, bottom: float, right: float, top: float) -> Shape:
+    return Shape(((left, bottom), (right, bottom), (right, top), (left, top)), closed=True)
+
+
+@outline.register
+def _(element: Capacitor) -> tuple[Shape, ...]:
+    return line((-0.08, -0.3), (-0.08, 0.3)), line((0.08, -0.3), (0.08, 0.3))
+
+
+@outline.register
+def _(element: Inductor) -> tuple[Shape, ...]:
+    turns = [(hump, step) for hump in range(4) for step in range(13)]
+    points = (
+        (-0.39 + 0.26 * hump - 0.13 * cos(pi * step / 12), 0.16 * sin(pi * step / 12)) for hump, step in turns
+    )
+    return (line(*points),)
+
+
+def _triangle(direction: float) -> Shape:
+    """Body of a diode that conducts along +x or, for -1, along -x."""
+    back, tip = -0.18 * direction, 0.18 * direction
+    return Shape(((back, 0.22), (back, -0.22), (tip, 0)), closed=True)
+
+
+@outline.register
+def _(element: Diode) -> tuple[Shape, ...]:
+    return _triangle(1), line((0.18, -0.22), (0.18, 0.22))
+
+
+@outline.register
+def _(element: Photodiode) -> tuple[Shape, ...]:
+    light = (*arrow((-0.32, 0.74), (-0.1, 0.36)), *arrow((-0.04, 0.78), (0.18, 0.4)))
+    return (_triangle(1), line((0.18, -0.22), (0.18, 0.22)), *light)
+
+
+@outline.register
+def _(element: LaserDiode) -> tuple[Shape, ...]:
+    light = (*arrow((-0.1, 0.34), (0.12, 0.72)), *arrow((0.16, 0.34), (0.38, 0.72)))
+    return (_triangle(1), line((0.18, -0.22), (0.18, 0.22)), *light)
+
+
+@outline.register
+def _(element: Reference) -> tuple[Shape, ...]:
+    return _triangle(-1), line((-0.28, -0.3), (-0.18, -0.22), (-0.18, 0.22), (-0.08, 0.3))
+
+
+@outline.register
+def _(element: OpAmp) -> tuple[Shape, ...]:
+    return (
+        Shape(((0.25, 0.9), (0.25, -0.9), (1.75, 0)), closed=True),
+        line((0, 0.5), (0.25, 0.5)),
+        line((0, -0.5), (0.25, -0.5)),
+        line((1.75, 0), (2, 0)),
+        line((1, 0.45), (1, 1)),
+        line((1, -0.45), (1, -1)),
+        line((0.34, 0.5), (0.54, 0.5)),
+        line((0.34, -0.5), (0.54, -0.5)),
+        line((0.44, -0.6), (0.44, -0.4)),
+    )
+
+
+def _field_effect(polarity: int) -> tuple[Shape, ...]:
+    """Enhancement MOSFET, body tied to source; the arrow points to an n channel."""
+    tips = ((1, 0), (0.54, 0)) if polarity > 0 else ((0.54, 0), (1, 0))
+    return (
+        line((0, 0), (0.42, 0)),
+        line((0.42, -0.36), (0.42, 0.36)),
+        *(line((0.54, middle - 0.1), (0.54, middle + 0.1)) for middle in (-0.32, 0, 0.32)),
+        line((0.54, 0.32), (1, 0.32), (1, 1)),
+        line((0.54, -0.32), (1, -0.32), (1, -1)),
+        *arrow(*tips, size=0.16),
+        line((1, 0), (1, -0.32)),
+    )
+
+
+def _bipolar(polarity: int) -> tuple[Shape, ...]:
+    """Bipolar transistor; the arrow lies at the emitter and points the way of its current."""
+    near, far = (0.5, -0.16), (1.0, -0.52)
+    emitter = (near, far) if polarity > 0 else (far, near)
+    return (
+        line((0, 0), (0.5, 0)),
+        line((0.5, -0.38), (0.5, 0.38)),
+        line((0.5, 0.16), (1, 0.52), (1, 1)),
+        *arrow(*emitter, size=0.18),
+        line((1, -0.52), (1, -1)),
+    )
+
+
+@outline.register
+def _(element: Transistor) -> tuple[Shape, ...]:
+    return _bipolar(element.polarity) if element.bipolar else _field_effect(element.polarity)
+
+
+@outline.register
+def _(element: Switch) -> tuple[Shape, ...]:
+    return _field_effect(element.polarity)
+
+
+@outline.register
+def _(element: Terminal) -> tuple[Shape, ...]:
+    return ()  # its ring lies away from its wire: drawn as a mark
+
+
+def ground_mark(point: Point, away: Point) -> tuple[Shape, ...]:
+    """Stem and three bars, the longest nearest to the point."""
+    bars = ((0.28, 0.2), (0.36, 0.13), (0.44, 0.06))
+    return (_stem(point, away, 0.28), *(_bar(point, away, distance, half) for distance, half in bars))
+
+
+def rail_mark(point: Point, away: Point) -> tuple[Shape, ...]:
+    """Stem and one bar."""
+    return _stem(point, away, 0.3), _bar(point, away, 0.3, 0.2)
+
+
+def port_mark(point: Point, away: Point) -> tuple[Shape, ...]:
+    """A ring that touches the point."""
+    return (disc((point[0] + 0.09 * away[0], point[1] + 0.09 * away[1]), 0.09, filled=False),)
+
+
+def _stem(point: Point, away: Point, length: float) -> Shape:
+    return line(point, (point[0] + length * away[0], point[1] + length * away[1]))
+
+
+def _bar(point: Point, away: Point, distance: float, half: float) -> Shape:
+    x, y = point[0] + distance * away[0], point[1] + distance * away[1]
+    return line((x - half * away[1], y + half * away[0]), (x + half * away[1], y - half * away[0]))

@@ -1,0 +1,1 @@
+"""Data-sheet records, one kind of part a file."""

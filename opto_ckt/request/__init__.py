@@ -1,0 +1,22 @@
+"""Records of the design file; the request of each kind of circuit is loaded when it is asked for."""
+
+from __future__ import annotations
+
+from importlib import import_module
+from typing import TYPE_CHECKING, Any
+
+from opto_ckt.request.request import Request
+
+if TYPE_CHECKING:
+    from opto_ckt.request.driver import LaserDriverRequest
+    from opto_ckt.request.receiver import ReceiverRequest
+
+__all__ = ["LaserDriverRequest", "ReceiverRequest", "Request"]
+
+LOADED_ON_USE = {"ReceiverRequest": "receiver", "LaserDriverRequest": "driver"}
+
+
+def __getattr__(name: str) -> Any:
+    if name not in LOADED_ON_USE:
+        raise AttributeError(f"module {__name__} has no attribute {name}")
+    return getattr(import_module(f"{__name__}.{LOADED_ON_USE[name]}"), name)
