@@ -41,7 +41,7 @@ exponent = st.floats(-2, 2).filter(lambda power: abs(power) > 0.05)
 
 @st.composite
 def posynomials(draw):
-    """Sums of two power laws with each variable on the same side in both: the worst corner is known, trade-offs are not."""
+    """Sums of two power laws that agree in direction: the worst corner is known, the best trade-off is not."""
     weights = [draw(st.floats(0.2, 2)), draw(st.floats(0.2, 2))]
     signs = {name: draw(st.sampled_from([-1, 1])) for name in ("R1", "C1", "speed", "load")}
     powers = [{name: sign * draw(st.floats(0.1, 2)) for name, sign in signs.items()} for _ in range(2)]
@@ -169,8 +169,6 @@ def test_equally_near_values_go_to_fewer_lines():
 
 
 def test_equally_near_values_go_to_the_commoner_series():
-    exact = (1.62 * 1.5) ** 0.5
-    assert choose((Fitted("R1", exact, "E48", low=1.4999, high=1.63),), lambda v: {}, [], {}).values["R1"] == pytest.approx(1.54)
     exact = (1.0 * 1.05) ** 0.5
     assert choose((Fitted("R1", exact, "E48"),), lambda v: {}, [], {}).values == {"R1": 1.0}
     exact = (9.53 * 10.0) ** 0.5
@@ -197,8 +195,9 @@ def test_a_drawer_without_a_fitting_value_says_so():
     assert choice.notes == ("C1: no drawer's value lies in its window, from 20.0 pF up; 10 pF is the nearest",)
 
 
-def test_a_window_holds_its_own_ends_in_spite_of_rounding():
-    value = 0.1 + 0.2  # 0.30000000000000004
+@pytest.mark.parametrize("value", [0.1 + 0.2, 0.3 - 1e-16])
+def test_a_window_holds_its_own_ends_in_spite_of_rounding(value):
+    assert value != 0.3
     assert choose((Fitted("R1", value, "E24", low=value, high=value),), lambda v: {}, [], {}).notes == ()
 
 
@@ -279,7 +278,8 @@ def many_parts():
         return {"a": r[0] * r[1] / r[2] * v["x"], "b": r[3] * r[4] / (r[5] * r[0])}
 
     nominal = evaluate({**{part.ref: part.exact for part in fitted}, "x": 1.0})
-    bounds = [Requirement(n, s, f * value, 1e-9) for n, value in nominal.items() for s, f in (("min", 0.97), ("max", 1.03))]
+    sides = (("min", 0.97), ("max", 1.03))
+    bounds = [Requirement(name, side, f * value, 1e-9) for name, value in nominal.items() for side, f in sides]
     return fitted, evaluate, bounds, limits
 
 

@@ -48,6 +48,7 @@ def extremes(evaluate: Evaluate, limits: Limits, chosen: Values, names: Iterable
 
     Each limit alone at low and high; then for every figure and direction the corner of the worst levels; then each
     limit alone around the worst corner seen so far, and all the moves that made it worse together, until none does.
+    Limits that do not matter to a figure at nominal are moved together first, and singly where that matters.
     A limit goes to its other end; back to nominal only where both ends of it are worse, or both better, than nominal.
     Every lane counts for every figure.
 
@@ -93,12 +94,16 @@ class _Search:
             if not fresh:
                 break
             around = [self.around(target, self.steps[centres[target]]) for target in fresh]
-            self.visit(np.concatenate(around))
+            probes = [self.probes(target, self.steps[centres[target]]) for target in fresh]
+            self.visit(np.concatenate([*around, *probes]))
             jumps = []
-            for target, rows in zip(fresh, around, strict=True):
-                centre = int(centres[target])
-                explored[target][centre] = lanes = self.lanes(rows)
+            for target, rows, probing in zip(fresh, around, probes, strict=True):
+                centre, lanes = int(centres[target]), self.lanes(rows)
                 jumps.append(self.jump(target, centre, lanes))
+                if self.telling(target, centre, self.lanes(probing)).any():
+                    self.matters[target] = True
+                else:
+                    explored[target][centre] = lanes
         self.visit(np.array(jumps))
         return self.found(explored)
 
@@ -142,6 +147,16 @@ class _Search:
             row[column] = level
         return rows
 
+    def probes(self, target: int, centre: Row) -> Steps:
+        """All limits that do not matter at nominal moved together, in three ways: whether one of them does here."""
+        idle = ~self.matters[target] & (centre == 0)
+        turns = np.where(np.arange(len(centre)) % 2, 1, -1).astype(np.int8)
+        return np.array([np.where(idle, moved, centre) for moved in (-1, 1, turns)], dtype=np.int8)
+
+    def telling(self, target: int, centre: int, lanes: Indices) -> NDArray[np.bool_]:
+        """Which lanes differ from a centre by more than rounding."""
+        return np.asarray(np.abs(self.signed[target, lanes] - self.signed[target, centre]) > self.noise[target])
+
     def jump(self, target: int, centre: int, lanes: Indices) -> Row:
         """All moves that alone make a target worse, made together."""
         worse = lanes[self.signed[target, lanes] < self.signed[target, centre] - self.noise[target]]
@@ -159,7 +174,7 @@ class _Search:
         rows = self.steps[worst]
         for target, (centre, row) in enumerate(zip(worst, rows, strict=True)):
             lanes = explored[target].get(int(centre), np.empty(0, dtype=np.intp))
-            telling = np.abs(self.signed[target, lanes] - self.signed[target, centre]) > self.noise[target]
+            telling = self.telling(target, int(centre), lanes)
             moved = self.steps[lanes] != row
             row[moved[~telling].any(axis=0) & ~moved[telling].any(axis=0)] = 0
         self.visit(rows)

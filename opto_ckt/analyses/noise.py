@@ -10,7 +10,7 @@ from numpy.typing import NDArray
 
 from opto_ckt.analyses.network import Evaluation
 from opto_ckt.analyses.network.lanes import horner
-from opto_ckt.analyses.network.quadrature import band_integrals
+from opto_ckt.analyses.network.quadrature import Density, band_integrals, panel_edges
 from opto_ckt.analyses.network.scan import LOWEST
 from opto_ckt.analyses.response import transfer_at
 
@@ -31,19 +31,15 @@ def output_density(evaluation: Evaluation, frequency: Array | float) -> Array:
     ----------
     frequency : any shape that broadcasts against the lanes. [Hz]
     """
-    generators = evaluation.generators
-    return _density(evaluation, generators.white, generators.flicker, frequency)
+    return _density(evaluation, *evaluation.noise, frequency)
 
 
 def density_by_generator(evaluation: Evaluation, frequency: Array | float) -> dict[str, Array]:
     """Power density of the output noise that each generator makes, by its label. [V²/Hz]"""
     generators = evaluation.generators
     result: dict[str, Array] = {}
-    for label, place, density, corner in zip(
-        generators.labels, generators.places, generators.densities, generators.corners, strict=True
-    ):
-        power = generators.powers[place] * density
-        own = _density(evaluation, power, power * corner, frequency)
+    for label, white, corner in zip(generators.labels, generators.white, generators.corners, strict=True):
+        own = _density(evaluation, white, white * corner, frequency)
         result[label] = result[label] + own if label in result else own
     return result
 
@@ -80,10 +76,8 @@ def output_rms(evaluation: Evaluation, band: Band | None = None, flicker_from: f
     -----
     Closed form to rounding; bands and 1/f noise to about 1e-7.
     """
-    generators = evaluation.generators
-    white = _white(evaluation, [generators.white], band)
-    flicker = _flicker(evaluation, [generators.flicker], band, flicker_from, beside=white)
-    return _root(evaluation, (white + flicker)[0])
+    (power,) = _powers(evaluation, [evaluation.noise], band, flicker_from)
+    return _root(evaluation, power)
 
 
 def rms_by_generator(
@@ -91,20 +85,12 @@ def rms_by_generator(
 ) -> dict[str, Array]:
     """Root-mean-square output noise that each generator makes, by its label; as `output_rms` otherwise. [V]"""
     generators = evaluation.generators
-    white = _white(evaluation, generators.powers, band)
-    flicker = np.zeros_like(white)
-    flickering = np.unique(generators.places[generators.corners.any(axis=1)])
-    if len(flickering):
-        powers = [generators.powers[place] for place in flickering]
-        flicker[flickering] = _flicker(evaluation, powers, band, flicker_from)
-    power: dict[str, Array] = {}
-    for label, place, density, corner in zip(
-        generators.labels, generators.places, generators.densities, generators.corners, strict=True
-    ):
-        with np.errstate(invalid="ignore"):
-            own = np.where(density == 0, 0.0, density * (white[place] + corner * flicker[place]))
-        power[label] = power[label] + own if label in power else own
-    return {label: _root(evaluation, own) for label, own in power.items()}
+    pairs = zip(generators.white, generators.corners, strict=True)
+    parts = [(white, white * corner) for white, corner in pairs]
+    total: dict[str, Array] = {}
+    for label, power in zip(generators.labels, _powers(evaluation, parts, band, flicker_from), strict=True):
+        total[label] = total[label] + power if label in total else power
+    return {label: _root(evaluation, power) for label, power in total.items()}
 
 
 def _density(evaluation: Evaluation, white: Array, flicker: Array, frequency: Array | float) -> Array:
@@ -122,12 +108,24 @@ def _root(evaluation: Evaluation, power: Array) -> Array:
     return np.where(evaluation.stable, np.sqrt(np.where(evaluation.stable, power, 0.0)), np.nan)
 
 
-def _white(evaluation: Evaluation, powers: Sequence[Array], band: Band | None) -> Array:
-    """Integral over f of power/|D|² for each of several polynomials; shape (polynomials, lanes)."""
+def _powers(
+    evaluation: Evaluation, parts: Sequence[tuple[Array, Array]], band: Band | None, flicker_from: float
+) -> Array:
+    """Integral over f of (white + flicker/f)/|D|² for each pair of polynomials; shape (pairs, lanes). [V²]"""
     hertz = evaluation.frequency_scale / (2 * pi)
+    low, high = _scaled(evaluation, band or (flicker_from, inf))
     if band is not None:
-        return band_integrals(powers, evaluation.denominator_power, *_scaled(evaluation, band), power=0) * hertz
-    return np.array([_moment_sum(evaluation.moments, power) for power in powers]) * hertz
+        edges = panel_edges(low, high, evaluation.extent)
+        densities = [Density(white * hertz, flicker if flicker.any() else None) for white, flicker in parts]
+        return band_integrals(densities, evaluation.denominator_power, edges) if parts else np.zeros((0, 1))
+    power = np.array([_moment_sum(evaluation.moments, white) for white, _ in parts]) * hertz
+    flickering = [index for index, (_, flicker) in enumerate(parts) if flicker.any()]
+    if flickering:
+        edges = panel_edges(low, max(evaluation.extent[1], low) * BEYOND, evaluation.extent, decades=1.5)
+        densities = [Density(None, parts[index][1]) for index in flickering]
+        beside = np.where(np.isfinite(power[flickering]), power[flickering], 0.0)
+        power[flickering] += band_integrals(densities, evaluation.denominator_power, edges, beside)
+    return power
 
 
 def _moment_sum(moments: Array, power: Array) -> Array:
@@ -139,21 +137,6 @@ def _moment_sum(moments: Array, power: Array) -> Array:
         terms = np.where(power[:known] == 0, 0.0, terms)
     total = terms.sum(axis=0)
     return np.where(power[known:].any(axis=0), inf, total) if len(power) > known else np.asarray(total)
-
-
-def _flicker(
-    evaluation: Evaluation,
-    powers: Sequence[Array],
-    band: Band | None,
-    flicker_from: float,
-    beside: Array | float = 0.0,
-) -> Array:
-    """Integral over f of power/|D|²/f for each of several polynomials; shape (polynomials, lanes)."""
-    if not any(power.any() for power in powers):
-        return np.zeros((len(powers), evaluation.lanes))
-    low, high = _scaled(evaluation, band or (flicker_from, inf))
-    high = min(high, max(evaluation.extent[1] * BEYOND, low * BEYOND))
-    return band_integrals(powers, evaluation.denominator_power, low, high, -1, beside)
 
 
 def _scaled(evaluation: Evaluation, band: Band) -> Band:

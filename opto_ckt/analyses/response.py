@@ -6,8 +6,8 @@ import numpy as np
 from numpy.typing import NDArray
 
 from opto_ckt.analyses.network import Evaluation, step
-from opto_ckt.analyses.network.lanes import difference
-from opto_ckt.analyses.network.scan import Index, crossing, falls, first_of, last_of, refine, value_and_slope
+from opto_ckt.analyses.network.lanes import Index, Lanes, difference
+from opto_ckt.analyses.network.scan import crossing, falls, first_of, last_of, refine, value_and_slope
 
 Array = NDArray[np.float64]
 ROUNDING = 1e-8  #: a gain that passes its reference by less is not a peak
@@ -77,8 +77,11 @@ def peak(evaluation: Evaluation, reference: Array | float | None = None) -> tupl
     height, frequency = np.zeros(evaluation.lanes), np.full(evaluation.lanes, np.nan)
     lanes = np.flatnonzero(top > power * (1 + ROUNDING))
     if len(lanes):
-        index = np.argmax(scanned[:, lanes] == top[lanes], axis=0)
-        x, highest = _highest(evaluation, lanes, index)
+        index = first_of(scanned == top)[0][lanes]
+        x, highest = evaluation.scan[index], top[lanes]
+        inner = np.flatnonzero((index > 0) & (index < len(scanned) - 1))
+        if len(inner):
+            x[inner], highest[inner] = _highest(evaluation, lanes[inner], index[inner])
         height[lanes] = 10 * np.log10(highest / power[lanes])
         frequency[lanes] = evaluation.frequency(x)
     unstable = ~evaluation.stable
@@ -151,17 +154,25 @@ def _reference(evaluation: Evaluation, reference: Array | float | None) -> Array
 
 def _highest(evaluation: Evaluation, lanes: Index, index: Index) -> tuple[Array, Array]:
     """Point x and value of the maximum of |N/D|² next to a scan point, where its derivative falls through zero."""
-    inner = np.clip(index, 1, len(evaluation.scan) - 2)
     above, below = evaluation.numerator_power[:, lanes], evaluation.denominator_power[:, lanes]
 
-    def slope_of_ratio(at: Array, part: Index | slice) -> tuple[Array, Array]:
+    def slope_of_ratio(at: Array, part: Lanes) -> tuple[Array, Array]:
         n, n1, n2 = _three(above[:, part], at)
         d, d1, d2 = _three(below[:, part], at)
         return n1 * d - n * d1, n2 * d - n * d2
 
     points = evaluation.scan
-    x = refine(slope_of_ratio, points[inner - 1], points[inner + 1], closeness=1e-5)
+    x = refine(slope_of_ratio, points[index - 1], points[index + 1], _summit(evaluation, lanes, index), closeness=1e-4)
     return x, value_and_slope(above, x)[0] / value_and_slope(below, x)[0]
+
+
+def _summit(evaluation: Evaluation, lanes: Index, index: Index) -> Array:
+    """Top of the parabola in ln x through a scan point and its neighbours."""
+    scanned, points = evaluation.scanned_response, evaluation.scan
+    before, here, after = (scanned[index + offset, lanes] for offset in (-1, 0, 1))
+    bend = 2 * here - before - after
+    shift = np.where(bend > 0, (after - before) / np.where(bend > 0, 2 * bend, 1.0), 0.0)
+    return np.asarray(points[index] * (points[1] / points[0]) ** np.clip(shift, -1, 1))
 
 
 def _three(polynomial: Array, at: Array) -> tuple[Array, Array, Array]:
@@ -169,10 +180,14 @@ def _three(polynomial: Array, at: Array) -> tuple[Array, Array, Array]:
     value = polynomial[-1].copy()
     slope, bend = np.zeros_like(value), np.zeros_like(value)
     for row in polynomial[-2::-1]:
-        bend = bend * at + slope
-        slope = slope * at + value
-        value = value * at + row
-    return value, slope, 2 * bend
+        bend *= at
+        bend += slope
+        slope *= at
+        slope += value
+        value *= at
+        value += row
+    bend *= 2
+    return value, slope, bend
 
 
 def _reference_power(evaluation: Evaluation, reference: Array | float | None) -> Array:

@@ -26,13 +26,16 @@ def examine(kind: type[Table], data: Mapping[str, Any]) -> Examined:
     """Read a table field by field; checks between fields run for those that could be read."""
     known = facts(kind)
     values: dict[str, Any] = {}
-    findings = [Finding((key,), _unknown(key, kind)) for key in data if key not in known]
+    unknown = [key for key in data if key not in known]
+    findings = [Finding((key,), _unknown(key, kind)) for key in unknown]
+    misspelt = {name for name in known if any(meant(key, known) == meant(name, known) for key in unknown)}
     whole = True
     for name, fact in known.items():
         if name not in data:
             if fact.needed:
                 whole = False
-                findings.append(Finding((name,), f"is missing{_expected(kind, name, fact)}"))
+                missing = f"is missing{_expected(kind, name, fact)}"
+                findings += [] if name in misspelt else [Finding((name,), missing)]
             else:
                 values[name] = fact.default
             continue

@@ -30,9 +30,10 @@ class Model:
         """The compiled network."""
         return Network(expand(self.topology))
 
-    def moved(self, limits: Limits) -> Model:
-        """The same model with some limits in other places; the network is compiled once."""
-        other = Model(self.circuit, self.request, limits)
+    def moved(self, limits: Limits | None = None, fixed: Mapping[str, float] | None = None) -> Model:
+        """The same model with some limits in other places, or some parts fixed; the network is compiled once."""
+        request = self.request.model_copy(update={"fixed": {**self.request.fixed, **(fixed or {})}})
+        other = Model(self.circuit, request, limits)
         other.__dict__["network"] = self.network
         return other
 

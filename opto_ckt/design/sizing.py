@@ -19,7 +19,7 @@ from opto_ckt.design.findings import assumed_spreads, cautions, head, noise_tabl
 from opto_ckt.design.model import Model
 from opto_ckt.design.partslist import parts_list
 from opto_ckt.design.reading import ReadDesign
-from opto_ckt.design.remedies import remedies
+from opto_ckt.design.remedies import Remedies
 from opto_ckt.errors import InputError
 from opto_ckt.figures import FIGURES
 from opto_ckt.limits import (
@@ -130,15 +130,17 @@ def _figure_rows(offers: Sequence[str], found: Mapping[str, Extreme]) -> tuple[F
 def _requirement_rows(sized: Sized, found: Mapping[str, Extreme]) -> tuple[FoundRequirement, ...]:
     """A row for every bound asked for, and for each implied one that is missed."""
     rows = []
+    corners = distinct(corner for extreme in found.values() for corner in (extreme.at_low, extreme.at_high))
+    ways = Remedies(sized.model, {part.ref: part.exact for part in sized.fitted}, corners)
     for index, requirement in enumerate(sized.requirements):
         extreme = found[requirement.figure]
         low = requirement.side == "min"
         worst, at = (extreme.low, extreme.at_low) if low else (extreme.high, extreme.at_high)
         met = bool(requirement.margin(worst) >= 0)
         if not met or index < sized.asked:
-            ways = () if met else remedies(sized.model, requirement, at)
             unit = si_unit(FIGURES[requirement.figure].unit)
-            rows.append(FoundRequirement(requirement, extreme.nominal, worst, at, unit, ways))
+            remedies = () if met else ways.of(requirement)
+            rows.append(FoundRequirement(requirement, extreme.nominal, worst, at, unit, remedies))
     return tuple(rows)
 
 

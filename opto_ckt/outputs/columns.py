@@ -2,11 +2,13 @@
 
 from __future__ import annotations
 
+import re
 import unicodedata
 from collections.abc import Sequence
 
 GAP = "  "  #: between columns
 LEAST = 20  #: columns that a wrapped text is given at least, however far it is indented
+_TEARABLE = re.compile(r"(?<![0-9≥≤=±…]) (?!…)")  #: blanks that do not join a number to its unit or its sign
 
 
 def width(text: str) -> int:
@@ -42,34 +44,35 @@ def aligned(rows: Sequence[Sequence[str]], sides: str, indent: int = 2) -> list[
 
 
 def wrapped(text: str, indent: int, columns: int | None) -> list[str]:
-    """One paragraph in lines of at most so many columns, broken at blanks only; a single line where there is no limit."""
+    """One sentence in lines of at most so many columns, no number torn from its unit; a single line where there is no limit.
+
+    >>> wrapped("2 V over 97 µA", 2, 22)
+    ['  2 V over 97 µA']
+    """
     if columns is None:
         return [" " * indent + text]
+    return _filled(_TEARABLE.split(text), " ", indent, columns)
+
+
+def packed(items: Sequence[str], indent: int, columns: int, before: str = "") -> list[str]:
+    """A list with commas in lines of at most so many columns, no item torn; ``before`` stands in front of the first line.
+
+    >>> packed(["R1 high", "C1 low", "hottest"], 4, 24, before="at  ")
+    ['at  R1 high, C1 low,', '    hottest']
+    """
+    if not items:
+        return [before.rstrip()] if before else []
+    first, *others = _filled([f"{item}," for item in items[:-1]] + [items[-1]], " ", indent, columns)
+    return [before + first[indent:] if before else first, *others]
+
+
+def _filled(pieces: Sequence[str], between: str, indent: int, columns: int) -> list[str]:
     room = max(LEAST, columns - indent)
-    lines = [""]
-    for word in text.split(" "):
-        longer = f"{lines[-1]} {word}" if lines[-1] else word
-        if lines[-1] and width(longer) > room:
-            lines.append(word)
+    lines = [pieces[0]]
+    for piece in pieces[1:]:
+        longer = f"{lines[-1]}{between}{piece}"
+        if width(longer) > room:
+            lines.append(piece)
         else:
             lines[-1] = longer
     return [" " * indent + line for line in lines]
-
-
-def hanging(line: str, indent: int, columns: int | None) -> list[str]:
-    """A line that was put together in columns; what passes the limit goes on below its last column, at ``indent``."""
-    if columns is None or width(line) <= columns:
-        return [line]
-    at = _place(line, indent)
-    first, *others = wrapped(line[at:], indent, columns)
-    return [line[:at] + first[indent:], *others]
-
-
-def _place(line: str, columns: int) -> int:
-    """Number of characters that take so many columns."""
-    taken = 0
-    for place, letter in enumerate(line):
-        if taken >= columns:
-            return place
-        taken += width(letter)
-    return len(line)

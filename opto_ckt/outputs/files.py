@@ -51,7 +51,11 @@ def _plain(name: str) -> str:
 
 
 def _check(paths: Iterable[Path], *, force: bool) -> None:
-    foreign = [path for path in paths if os.path.lexists(path) and not (force or _ours(path))]
+    present = [path for path in paths if os.path.lexists(path)]
+    folders = [path.name for path in present if path.is_dir() and not path.is_symlink()]
+    if folders:
+        raise RefusedError(f"{present[0].parent}: not written, since {', '.join(folders)} is a folder there")
+    foreign = [path for path in present if not (force or _ours(path))]
     if foreign:
         names = ", ".join(path.name for path in foreign)
         raise RefusedError(

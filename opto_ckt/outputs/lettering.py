@@ -77,6 +77,7 @@ class Label:
 
     owner: str
     spots: tuple[TextBox, ...]
+    tied: bool = False  #: has no meaning but close to its point, so chooses first
 
 
 def text_width(text: str, *, bold: bool = False) -> float:
@@ -114,6 +115,7 @@ class Frame:
 
 _SHIFTS = (0.0, 0.25, -0.25, 0.5, -0.5, 0.75, -0.75, 1.0, -1.0)
 _GAPS = (0.1, 0.2, 0.35, 0.55, 0.8)
+_NEAR_GAPS = 3  #: how many of them keep a text close
 
 
 def spots_around(owner: str, lines: tuple[str, ...], frame: Frame, sides: str, *, heading: bool = True) -> Label:
@@ -156,7 +158,8 @@ def spots_in_corners(owner: str, lines: tuple[str, ...], frame: Frame) -> Label:
 def spots_beyond(owner: str, lines: tuple[str, ...], tip: Point, away: Point, *, heading: bool = False) -> Label:
     """Places at the end of a mark, straight on first, then to its sides."""
     order = {(1, 0): "rtb", (-1, 0): "ltb", (0, 1): "trl", (0, -1): "brl"}[(round(away[0]), round(away[1]))]
-    return spots_around(owner, lines, Frame(*tip, *tip), order, heading=heading)
+    around = spots_around(owner, lines, Frame(*tip, *tip), order, heading=heading)
+    return Label(owner, around.spots[: _NEAR_GAPS * len(_SHIFTS) * len(order)], tied=True)
 
 
 def _at(blank: TextBox, left: float, bottom: float, align: Align) -> TextBox:
@@ -166,14 +169,13 @@ def _at(blank: TextBox, left: float, bottom: float, align: Align) -> TextBox:
 def place_labels(labels: Sequence[Label], strokes: Sequence[Segment]) -> dict[str, TextBox]:
     """One place for each label where it touches no stroke and no other text.
 
-    The labels with the fewest free places choose first, and give way where that leaves another none. Where the sheet
-    is too crowded, a label left over stands at its best place whatever it touches.
+    Tied labels choose first, then those with the fewest free places; a choice gives way where it leaves another none.
+    Where the sheet is too crowded, a label left over stands at its best place whatever it touches.
     """
     free = {label.owner: _clear(label.spots, strokes) for label in labels}
-    order = sorted(free, key=lambda owner: len(free[owner]))
+    order = [label.owner for label in sorted(labels, key=lambda label: (not label.tied, len(free[label.owner])))]
     found = _searched(order, free)
-    best = {label.owner: label.spots[0] for label in labels}
-    return {owner: found.get(owner, best[owner]) for owner in best}
+    return {label.owner: found.get(label.owner, label.spots[0]) for label in labels}
 
 
 def _clear(spots: Sequence[TextBox], strokes: Sequence[Segment]) -> list[TextBox]:

@@ -2,10 +2,10 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Iterator, Sequence
+from collections.abc import Iterator, Sequence
 
 from opto_ckt.figures import FIGURES
-from opto_ckt.outputs.columns import GAP, aligned, hanging, padded, width, wrapped
+from opto_ckt.outputs.columns import GAP, aligned, packed, padded, width, wrapped
 from opto_ckt.outputs.derivation_text import steps
 from opto_ckt.outputs.figure_text import decibel_text, figure_text
 from opto_ckt.outputs.ratings import loads_text, tolerance_text, value_text
@@ -13,12 +13,11 @@ from opto_ckt.outputs.wording import describe, labels_of
 from opto_ckt.result import FoundPart, FoundRequirement, Result
 from opto_ckt.units import percent, write
 
-PAGE = 100  #: columns over which the verdict is set to the right
+PAGE = 100  #: columns that tables and lists are laid out for
 SIGNS = {"min": "≥", "max": "≤"}
-BOLD, DIM, GOOD, BAD = "1", "2", "32;1", "31;1"
+BOLD, DIM, GOOD, BAD = "1", "2", "1;32", "1;31"
 
-Paint = Callable[[str, str], str]
-Line = tuple[str, str]  #: text and its colour
+Line = tuple[str, str]  #: text and its colour; none where empty
 
 
 def page(result: Result, *, verbose: bool = False, colour: bool = False, columns: int | None = None) -> str:
@@ -26,39 +25,40 @@ def page(result: Result, *, verbose: bool = False, colour: bool = False, columns
 
     Parameters
     ----------
-    verbose : with loads and ratings of the parts, noise of each generator, and every formula with its numbers put in.
+    verbose : with source, load and rating of each part, and every formula with its numbers put in.
     colour : with the control sequences of a terminal; nothing is told by colour alone.
-    columns : width at which sentences are wrapped; not at all where None.
+    columns : width of the terminal, at which sentences are wrapped; not at all where None.
     """
-    sections = [
+    sections = (
         _head(result),
         _requirements(result, columns),
-        _parts(result, verbose, columns),
-        _figures(result, columns),
-        _rounding(result, columns),
-        _input_capacitance(result, columns),
-        _noise(result, verbose, columns),
-        _heat(result, columns),
+        _parts(result, columns, verbose=verbose),
+        _figures(result),
+        _roundings(result),
+        _input_capacitance(result),
+        _noise(result),
+        _heat(result),
         _faults(result, columns),
-        _listed("Cautions", result.cautions, columns),
-        _listed("Assumed spreads, where the sheet gives typ only", result.assumed, columns, joined=True),
-        _listed("Not checked", result.not_checked, columns, joined=True),
-        _derivation(result, columns) if verbose else (),
-    ]
-    blocks = ["\n".join(_painted(text, code, colour) for text, code in section) for section in map(list, sections) if section]
-    return "\n\n".join(blocks) + "\n"
+        _cautions(result, columns),
+        _list("Assumed, where a sheet gives a typical figure only", result.assumed),
+        _list("Not checked", result.not_checked),
+        _conventions(result, columns),
+        _derivation(result, columns) if verbose else iter(()),
+    )
+    blocks = ["\n".join(_painted(text, code if colour else "") for text, code in section) for section in sections]
+    return "\n\n".join(block for block in blocks if block) + "\n"
 
 
 def verdict(result: Result) -> str:
     """The outcome in a few words."""
     missed = sum(not row.met for row in result.requirements)
-    if result.verdict == "missed":
+    if missed:
         return f"{missed} of {len(result.requirements)} requirement{'s' * (len(result.requirements) > 1)} missed"
     return {"met": "every requirement met", "none": "no requirement asked"}[result.verdict]
 
 
-def _painted(text: str, code: str, colour: bool) -> str:
-    return f"\x1b[{code}m{text}\x1b[0m" if colour and code else text
+def _painted(text: str, code: str) -> str:
+    return f"\x1b[{code}m{text}\x1b[0m" if code else text
 
 
 def _head(result: Result) -> Iterator[Line]:
@@ -74,121 +74,116 @@ def _requirements(result: Result, columns: int | None) -> Iterator[Line]:
         return
     labels = labels_of(result.topology)
     rows = [("Requirements", "asked", "nominal", "worst found", "", "at")]
-    rows += [_requirement(row, describe(row.at, labels=labels)) for row in result.requirements]
-    head, *lines = _under_heading(rows, "lrrrll")
-    last = width(head) - width("at")
+    rows += [_requirement(row) for row in result.requirements]
+    head, *lines = aligned(rows, "lrrrll", indent=0)
     yield head, BOLD
     for row, line in zip(result.requirements, lines, strict=True):
-        for text in hanging(line, last, columns):
-            yield text, "" if row.met else BAD
+        colour = "" if row.met else BAD
+        for text in _with_list(line, head, describe(row.at, labels=labels)):
+            yield text, colour
         if row.remedies:
             for text in wrapped(f"would do: {', or '.join(row.remedies)}", 6, columns):
                 yield text, ""
 
 
-def _requirement(row: FoundRequirement, at: str) -> tuple[str, ...]:
+def _requirement(row: FoundRequirement) -> tuple[str, ...]:
     name = row.requirement.figure
     asked = f"{SIGNS[row.requirement.side]} {figure_text(name, row.requirement.bound)}"
-    return (f"  {name}", asked, figure_text(name, row.nominal), figure_text(name, row.worst), "met" if row.met else "missed", at)
+    met = "met" if row.met else "missed"
+    return (f"  {name}", asked, figure_text(name, row.nominal), figure_text(name, row.worst), met, "")
 
 
-def _under_heading(rows: Sequence[Sequence[str]], sides: str) -> list[str]:
-    """A table whose first row is the heading of the section."""
-    return aligned(rows, sides, indent=0)
+def _with_list(line: str, head: str, items: str) -> Iterator[str]:
+    """A row with a list in its last column, of which a line that runs full goes on below."""
+    at = width(head) - len("at")
+    yield from packed(items.split(", "), at, PAGE, before=padded(line, at))
 
 
-def _parts(result: Result, verbose: bool, columns: int | None) -> Iterator[Line]:
-    rows = [("Parts", "", "fitted", "exact", "", "")]
-    rows += [(f"  {part.ref}", part.role, value_text(part), _exact(part), tolerance_text(part), _make(part)) for part in result.parts]
-    head, *lines = _under_heading(rows, "llrrll")
+def _parts(result: Result, columns: int | None, *, verbose: bool) -> Iterator[Line]:
+    rows = [("Parts", "", "fitted", "exact", "tolerance", "kind")]
+    rows += [(f"  {part.ref}", part.role, value_text(part), _exact(part), tolerance_text(part), _kind(part)) for part in result.parts]
+    head, *lines = aligned(rows, "llrrll", indent=0)
     yield head, BOLD
     for part, line in zip(result.parts, lines, strict=True):
         yield line, ""
-        for text in _reasons(part, verbose):
-            for wrapped_text in wrapped(text, 6, columns):
-                yield wrapped_text, DIM
+        for reason in _reasons(part, verbose=verbose):
+            for text in wrapped(reason, 6, columns):
+                yield text, DIM
 
 
 def _exact(part: FoundPart) -> str:
-    return "" if part.exact is None else write(part.exact, part.unit, 4) if part.exact else "none"
+    if part.exact is None:
+        return ""
+    return write(part.exact, part.unit, 4, trim=True) if part.exact else "none"
 
 
-def _make(part: FoundPart) -> str:
-    return GAP.join(filter(None, (part.characteristic, part.size, part.kind if not part.unit else "")))
+def _kind(part: FoundPart) -> str:
+    return GAP.join(filter(None, (part.characteristic, part.size))) if part.unit else part.kind
 
 
-def _reasons(part: FoundPart, verbose: bool) -> Iterator[str]:
-    if part.formula and (part.unit or verbose):
+def _reasons(part: FoundPart, *, verbose: bool) -> Iterator[str]:
+    if part.formula and part.unit:
         yield part.formula
-    if verbose:
-        if part.source:
-            yield f"source: {part.source}"
-        if part.stress:
-            yield f"sees {loads_text(part.stress)}; needs {loads_text(part.required_rating) or 'no rating that is made'}"
+    if verbose and part.source:
+        yield f"source: {part.source}"
+    if verbose and loads_text(part.stress):
+        needs = loads_text(part.required_rating)
+        yield f"sees {loads_text(part.stress)} at worst; " + (f"needs {needs}" if needs else "no rating made is high enough")
 
 
-def _figures(result: Result, columns: int | None) -> Iterator[Line]:
-    rows = [("Figures", "nominal", "low", "high", "", "")]
+def _figures(result: Result) -> Iterator[Line]:
+    rows = [("Figures", "nominal", "low", "high", "")]
     for figure in result.figures:
         values = (figure.nominal, figure.low, figure.high)
-        beside = decibel_text(figure.name, figure.nominal)
-        texts = [figure_text(figure.name, value) for value in values]
-        rows.append((f"  {figure.name}", *texts, beside, FIGURES[figure.name].convention))
-    head, *lines = _under_heading(rows, "lrrrrl")
+        rows.append((f"  {figure.name}", *(figure_text(figure.name, value) for value in values), _decibels(figure.name, values)))
+    head, *lines = aligned(rows, "lrrrl", indent=0)
     yield head, BOLD
-    last = min((width(line) - width(row[-1]) for line, row in zip(lines, rows[1:], strict=True)), default=0)
-    for line in lines:
-        for text in hanging(line, last, columns):
-            yield text, ""
+    yield from ((line, "") for line in lines)
 
 
-def _rounding(result: Result, columns: int | None) -> Iterator[Line]:
+def _decibels(name: str, values: Sequence[float]) -> str:
+    """Nominal, low and high in decibels, where the figure is stated that way too."""
+    nominal, low, high = (decibel_text(name, value) for value in values)
+    return f"{nominal}, {low} to {high}" if nominal and low and high else nominal
+
+
+def _roundings(result: Result) -> Iterator[Line]:
     moved = [
-        f"{row.figure} {before} -> {after}"
+        f"{row.figure} {before} to {after}"
         for row in result.roundings
         if (before := figure_text(row.figure, row.exact)) != (after := figure_text(row.figure, row.preferred))
     ]
-    yield "Rounding, from exact to preferred values at nominal", BOLD
-    for text in wrapped(", ".join(moved) or "no figure moves by as much as is printed", 2, columns):
-        yield text, ""
+    nothing = ["no figure by as much as is printed"] if result.roundings else []
+    return _list("Rounding to preferred values moved, at nominal", moved or nothing)
 
 
-def _input_capacitance(result: Result, columns: int | None) -> Iterator[Line]:
-    if not result.input_capacitance:
-        return
+def _input_capacitance(result: Result) -> Iterator[Line]:
     total = write(sum(result.input_capacitance.values()), "F")
-    yield f"Input capacitance, {total} nominal", BOLD
-    parts = ", ".join(f"{name} {write(value, 'F')}" for name, value in result.input_capacitance.items())
-    for text in wrapped(parts, 2, columns):
-        yield text, ""
+    return _list(
+        f"Input capacitance, {total} nominal", [f"{name} {write(value, 'F')}" for name, value in result.input_capacitance.items()]
+    )
 
 
-def _noise(result: Result, verbose: bool, columns: int | None) -> Iterator[Line]:
-    if not result.noise:
-        return
+def _noise(result: Result) -> Iterator[Line]:
     total = next((figure.nominal for figure in result.figures if figure.name == "output_noise"), None)
+    summed = "shares of the output power" if total is None else f"{write(total, 'V')} rms out"
     low, high = (write(frequency, "Hz", trim=True) for frequency in result.noise_band)
-    summed = f"{write(total, 'V')} rms out" if total is not None else "share of the output power"
-    yield f"Noise, {summed}, {low} to {high}, nominal", BOLD
-    if verbose:
-        rows = [(row.generator, write(row.output_rms, "V"), percent(row.share, 2)) for row in result.noise]
-        yield from ((line, "") for line in aligned(rows, "lrr"))
-        return
-    for text in wrapped(", ".join(f"{row.generator} {percent(row.share, 2)}" for row in result.noise), 2, columns):
-        yield text, ""
+    return _list(
+        f"Noise, {summed}, {low} to {high}, nominal", [f"{row.generator} {percent(row.share, 2)}" for row in result.noise]
+    )
 
 
-def _heat(result: Result, columns: int | None) -> Iterator[Line]:
+def _heat(result: Result) -> Iterator[Line]:
     if not result.heat:
         return
     rows = [("Heat, worst", "power", "reaches", "limit", "", "at")]
     for row in result.heat:
         reached, limit = write(row.temperature, "°C"), write(row.limit, "°C")
-        rows.append((f"  {row.ref}", write(row.power, "W"), reached, limit, "ok" if row.ok else "too hot", describe(row.at)))
-    head, *lines = _under_heading(rows, "lrrrll")
+        rows.append((f"  {row.ref}", write(row.power, "W"), reached, limit, "ok" if row.ok else "too hot", ""))
+    head, *lines = aligned(rows, "lrrrll", indent=0)
     yield head, BOLD
     for row, line in zip(result.heat, lines, strict=True):
-        for text in hanging(line, width(head) - width("at"), columns):
+        for text in _with_list(line, head, describe(row.at)):
             yield text, "" if row.ok else BAD
 
 
@@ -198,18 +193,41 @@ def _faults(result: Result, columns: int | None) -> Iterator[Line]:
     yield "Faults, worst corner of each", BOLD
     longest = max(width(fault.case) for fault in result.faults)
     for fault in result.faults:
-        line = f"  {padded(fault.case, longest)}  {'ok        ' if fault.ok else 'over limit'}  {fault.result}"
-        for text in hanging(line, longest + 16, columns):
-            yield text, "" if fault.ok else BAD
+        before = f"  {padded(fault.case, longest)}  {'ok        ' if fault.ok else 'over limit'}  "
+        first, *others = wrapped(fault.result, width(before), columns)
+        colour = "" if fault.ok else BAD
+        yield before + first[width(before) :], colour
+        for text in others:
+            yield text, colour
 
 
-def _listed(heading: str, entries: Sequence[str], columns: int | None, *, joined: bool = False) -> Iterator[Line]:
-    if not entries:
-        return
-    yield heading, BOLD
-    for entry in [", ".join(entries)] if joined else entries:
-        for text in wrapped(entry, 2, columns):
+def _cautions(result: Result, columns: int | None) -> Iterator[Line]:
+    if result.cautions:
+        yield "Cautions", BOLD
+        for caution in result.cautions:
+            first, *others = wrapped(caution, 4, columns)
+            yield f"  - {first[4:]}", ""
+            for text in others:
+                yield text, ""
+
+
+def _list(heading: str, entries: Sequence[str]) -> Iterator[Line]:
+    if entries:
+        yield heading, BOLD
+        for text in packed(entries, 2, PAGE):
             yield text, ""
+
+
+def _conventions(result: Result, columns: int | None) -> Iterator[Line]:
+    if not result.figures:
+        return
+    yield "What the figures mean", BOLD
+    longest = max(width(figure.name) for figure in result.figures)
+    for figure in result.figures:
+        first, *others = wrapped(FIGURES[figure.name].convention, longest + 4, columns)
+        yield f"  {padded(figure.name, longest)}  {first[longest + 4 :]}", DIM
+        for text in others:
+            yield text, DIM
 
 
 def _derivation(result: Result, columns: int | None) -> Iterator[Line]:

@@ -66,7 +66,8 @@ def describe(corner: Corner, limits: Limits | None = None, labels: Mapping[str, 
     >>> describe({})
     'nominal'
     """
-    settings = [_setting(name, level, limits or {}, labels or {}) for name, level in corner.items() if level != "nominal"]
+    moved = [(name, level) for name, level in corner.items() if level != "nominal"]
+    settings = [_setting(name, level, limits or {}, labels or {}) for name, level in moved]
     if not settings:
         return "nominal"
     left = len(settings) - SHOWN

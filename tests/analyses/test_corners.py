@@ -108,7 +108,8 @@ def test_a_typical_figure_is_spread_as_assumed():
 
 
 def test_the_engineer_overrides_what_is_assumed():
-    found = limits_of(RECEIVER, request(assumed={"gain_bandwidth": {"low": "50 %", "high": "10 %"}}))["U1.gain_bandwidth"]
+    changed = request(assumed={"gain_bandwidth": {"low": "50 %", "high": "10 %"}})
+    found = limits_of(RECEIVER, changed)["U1.gain_bandwidth"]
     assert (found.low, found.high) == pytest.approx((115e6, 253e6))
     assert found.assumed
 
@@ -129,8 +130,9 @@ def test_every_figure_of_the_model_that_is_no_current_or_light_has_a_limit():
 
 def test_surroundings_span_temperature_and_supplies():
     limits = limits_of(RECEIVER, request())
-    celsius = (25 + ZERO_CELSIUS, -20 + ZERO_CELSIUS, 60 + ZERO_CELSIUS)
-    assert (limits["temperature"].nominal, limits["temperature"].low, limits["temperature"].high) == pytest.approx(celsius)
+    ambient = limits["temperature"]
+    kelvins = [celsius + ZERO_CELSIUS for celsius in (25, -20, 60)]
+    assert [ambient.nominal, ambient.low, ambient.high] == pytest.approx(kelvins)
     assert limits["supply.positive"] == Limit(5.0, 4.75, 5.25)
     assert limits["supply.negative"] == Limit(-5.0, -5.25, -4.75)
 
@@ -289,15 +291,26 @@ def test_a_worst_value_between_the_ends_is_found():
 
 
 def test_a_limit_that_has_to_go_back_to_nominal_goes_back():
-    """Alone, `a` is worst at its high end; beside the worst `b` it is worst at nominal."""
+    """Alone, either end of `a` raises the figure; beside the worst `b` and `c`, nominal is where it is highest."""
 
     def evaluate(v):
-        a, b = np.asarray(v["a"]), np.asarray(v["b"])
-        return {"figure": 3 * b - 0.2 * a**2 + (a**2) * (1 - b)}
+        a, b, c = (np.asarray(v[name]) for name in "abc")
+        return {"figure": 3 * b + 3 * c - 0.2 * a**2 + (a**2) * (1 - b)}
 
-    limits: Limits = {"a": Limit(0.0, -1.0, 1.0), "b": Limit(0.0, 0.0, 1.0)}
+    limits: Limits = {"a": Limit(0.0, -1.0, 1.0), "b": Limit(0.0, 0.0, 1.0), "c": Limit(0.0, 0.0, 1.0)}
     found = extremes(evaluate, limits, {}, ["figure"])["figure"]
-    assert (found.high, found.at_high) == (3.0, {"b": "high"})
+    assert (found.high, found.at_high) == (6.0, {"b": "high", "c": "high"})
+
+
+def test_a_limit_that_matters_only_at_the_corner_is_found_there():
+    """While `b` and `c` are alike, `d` makes no difference."""
+
+    def evaluate(v):
+        return {"figure": v["b"] - v["c"] + v["d"] * (v["b"] - v["c"])}
+
+    limits: Limits = {name: Limit(0.5, -1.0, 1.0) for name in "abcd"}
+    found = extremes(evaluate, limits, {}, ["figure"])["figure"]
+    assert (found.low, found.at_low) == (-4.0, {"b": "low", "c": "high", "d": "high"})
 
 
 def test_a_figure_flat_around_nominal_is_found_on_the_corners_of_others():

@@ -7,7 +7,7 @@ import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
 
-from opto_ckt.analyses import response, stability
+from opto_ckt.analyses import noise, response, stability
 from opto_ckt.analyses.network import Expansion, Network, NoiseGenerator, Primitive
 from tests.analyses.direct import Direct, return_ratio
 from tests.analyses.networks import (
@@ -41,14 +41,12 @@ def test_receiver_agrees_with_plain_nodal_analysis(seed):
 
 def test_every_noise_transfer_agrees_with_plain_nodal_analysis():
     evaluation = Network(receiver()).evaluate(RECEIVER)
-    generators = evaluation.generators
-    for generator, place in zip(receiver().generators, generators.places, strict=True):
+    for generator, white in zip(receiver().generators, evaluation.generators.white, strict=True):
+        density = generator.density(RECEIVER)
         for frequency in FREQUENCIES:
             x = (2 * np.pi * frequency / evaluation.frequency_scale) ** 2
-            above, below = (
-                np.polyval(power[::-1, 0], x) for power in (generators.powers[place], evaluation.denominator_power)
-            )
-            expected = abs(Direct(receiver(), RECEIVER, frequency).output(generator.nodes)) ** 2
+            above, below = (np.polyval(power[::-1, 0], x) for power in (white, evaluation.denominator_power))
+            expected = density * abs(Direct(receiver(), RECEIVER, frequency).output(generator.nodes)) ** 2
             assert above / below == pytest.approx(expected, rel=1e-9), generator.label
 
 
@@ -264,7 +262,7 @@ def test_network_of_order_zero():
     assert response.peaking(evaluation)[0] == 0
 
 
-def test_generators_of_one_label_and_place():
+def test_generators_at_one_place_share_a_transfer():
     expansion = Expansion(
         (R,),
         (NoiseGenerator("a", ("a", "0"), lambda v: 2.0), NoiseGenerator("b", ("a", "0"), lambda v: 3.0)),
@@ -272,9 +270,11 @@ def test_generators_of_one_label_and_place():
         lambda v: 1.0,
         ("a", "0"),
     )
-    generators = Network(expansion).evaluate({"R": 10.0}).generators
-    assert generators.places.tolist() == [0, 0]
-    assert generators.white[0, 0] == pytest.approx(5 * generators.powers[0][0, 0])
+    evaluation = Network(expansion).evaluate({"R": 10.0})
+    assert noise.output_density(evaluation, 1.0)[0] == pytest.approx(500)
+    apart = noise.density_by_generator(evaluation, 1.0)
+    assert apart["a"][0] == pytest.approx(200)
+    assert apart["b"][0] == pytest.approx(300)
 
 
 def test_loop_of_poles_is_what_it_says():

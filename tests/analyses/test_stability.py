@@ -14,7 +14,7 @@ from tests.analyses.networks import RECEIVER, loop_of_poles, low_pass, receiver,
 
 
 def test_exact_second_order():
-    """A 130 MHz op amp, 1 kΩ, 49 pF, 8 pF: receiver check RX-ST-01, its figures from an ngspice run and closed forms."""
+    """A 130 MHz op amp, 1 kΩ, 49 pF, 8 pF: receiver check RX-ST-01, by an ngspice run and by closed forms."""
     values = {
         "gain_bandwidth": 130e6,
         "R1": 1e3,

@@ -69,13 +69,15 @@ def test_symbolic_noise_transfer_agrees_with_the_engine():
     network = symbolic.SymbolicNetwork(receiver())
     nodes = ("sum", "amp")
     transfer = numeric(network.transfer_from(nodes), RECEIVER)
-    place = generators.places[[generator.nodes for generator in receiver().generators].index(nodes)]
+    number = [generator.nodes for generator in receiver().generators].index(nodes)
+    density = receiver().generators[number].density(RECEIVER)
     for frequency in FREQUENCIES:
         x = (2 * np.pi * frequency / evaluation.frequency_scale) ** 2
         above, below = (
-            np.polyval(power[::-1, 0], x) for power in (generators.powers[place], evaluation.denominator_power)
+            np.polyval(power[::-1, 0], x) for power in (generators.white[number], evaluation.denominator_power)
         )
-        assert abs(complex(transfer(2j * np.pi * frequency))) ** 2 == pytest.approx(above / below, rel=1e-9)
+        expected = density * abs(complex(transfer(2j * np.pi * frequency))) ** 2
+        assert above / below == pytest.approx(expected, rel=1e-9)
 
 
 def test_symbolic_transfer_is_readable():

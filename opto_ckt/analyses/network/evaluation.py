@@ -17,27 +17,19 @@ from opto_ckt.analyses.network.scan import scan_points
 
 @dataclass(frozen=True)
 class Generators:
-    """Noise generators of one evaluation; those between the same nodes share a place, so a transfer.
+    """What each noise generator of a network does at its output.
 
     Parameters
     ----------
     labels : one a generator.
-    places : for each generator, the index of its place.
-    powers : for each place, |transfer numerator|² from a current there to the output, a polynomial in x; shape
-        (orders, lanes). [V²/A²]
-    densities : white power density of each generator; shape (generators, lanes). [A²/Hz]
+    white : for each generator its white density × |transfer numerator|², a polynomial in x, the square of scaled ω;
+        over |D|² this is its white noise at the output. [V²/Hz]
     corners : 1/f corner of each generator, zero where it is white; shape (generators, lanes). [Hz]
-    white : sum over generators of density × power, a polynomial in x; shape (orders, lanes). [V²/Hz]
-    flicker : sum over generators of density × corner × power, a polynomial in x; shape (orders, lanes). [V²]
     """
 
     labels: tuple[str, ...]
-    places: NDArray[np.intp]
-    powers: tuple[Array, ...]
-    densities: Array
+    white: tuple[Array, ...]
     corners: Array
-    white: Array
-    flicker: Array
 
 
 @dataclass(frozen=True, eq=False)
@@ -55,7 +47,8 @@ class Evaluation:
     denominator_power, numerator_power, loop_excess : |D|², |N|² and |D - D0|² - |D0|² as polynomials in x, the square
         of scaled ω.
     gain : current of the input source for an input signal of 1. [A per unit of input]
-    read_generators : gives the noise generators.
+    read_noise : gives the sums over all generators of white and of 1/f noise.
+    read_generators : gives the noise generators one by one.
     """
 
     lanes: int
@@ -69,12 +62,19 @@ class Evaluation:
     numerator_power: Array
     loop_excess: Array | None
     gain: Array
+    read_noise: Callable[[], list[Array]]
     read_generators: Callable[[], Generators]
 
     @property
     def order(self) -> int:
         """Order of D, the largest of any lane."""
         return len(self.denominator) - 1
+
+    @cached_property
+    def noise(self) -> tuple[Array, Array]:
+        """White noise [V²/Hz] and 1/f noise × f [V²] at the output, times |D|²: polynomials in x."""
+        white, flicker = self.read_noise()
+        return white, flicker
 
     @cached_property
     def generators(self) -> Generators:

@@ -10,7 +10,8 @@ from numpy.typing import NDArray
 
 Array = NDArray[np.float64]
 Complex = NDArray[np.complex128]
-Lanes = slice | NDArray[np.intp]
+Index = NDArray[np.intp]
+Lanes = slice | Index
 
 EVERY_LANE = slice(None)
 
@@ -46,9 +47,10 @@ def horner(coefficients: Array, at: Any) -> Any:
     return value
 
 
-def over_points(polynomial: Array, points: Array) -> Array:
-    """Values of a polynomial in x at every point, for every lane; shape (points, lanes)."""
-    return np.asarray(np.vander(points, len(polynomial), increasing=True) @ polynomial)
+def over_points(polynomial: Array, points: Array, weight: Array | float = 1.0) -> Array:
+    """Values of a polynomial times a weight at every point, for every lane; shape (points, lanes)."""
+    powers = np.vander(points, len(polynomial), increasing=True)
+    return np.asarray((powers.T * weight).T @ polynomial)
 
 
 def difference(left: Array, right: Array) -> Array:
@@ -66,14 +68,11 @@ def root_extent(coefficients: Array) -> tuple[float, float]:
     """
     smallest, largest = np.inf, 0.0
     for low, high, lanes in by_order(coefficients):
-        if low == high:
-            continue
+        own = np.abs(coefficients[low : high + 1, lanes])
+        if np.isnan(own[0]).any():
+            own = own[:, ~np.isnan(own[0])]
         with np.errstate(divide="ignore"):
-            logs = np.log(np.abs(coefficients[low : high + 1, lanes]))
-        logs = logs[:, ~np.isnan(logs[0])]
-        if not logs.size:
-            continue
-        steps = np.arange(1, high - low + 1)[:, None]
-        smallest = min(smallest, float(np.exp(np.min((logs[0] - logs[1:]) / steps))))
-        largest = max(largest, float(np.exp(np.max((logs[:-1] - logs[-1]) / steps[::-1]))))
+            for step in range(1, high - low + 1):
+                smallest = min(smallest, float((own[0] / own[step]).min(initial=np.inf)) ** (1 / step))
+                largest = max(largest, float((own[-1 - step] / own[-1]).max(initial=0.0)) ** (1 / step))
     return smallest / 2, largest * 2

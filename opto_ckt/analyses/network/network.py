@@ -18,6 +18,11 @@ from opto_ckt.analyses.network.program import Node, Program, Values
 from opto_ckt.analyses.network.stamps import CONDUCTANCE_SCALE, FREQUENCY_SCALE, Stamp, merge_parallel, stamps_of
 from opto_ckt.analyses.network.tape import Tape
 
+np.empty(1 << 21)  # given back at once: the C library then keeps smaller tables instead of returning them to the system
+
+NEAR = 1e3
+"""A frequency scale is left as it is if the middle of the poles lies no further from it than this factor."""
+
 
 class Network:
     """Transfer function, loop gain and noise transfers of an expansion, as programs of its named values.
@@ -88,30 +93,37 @@ class Network:
 
     @cached_property
     def _noise(self) -> _Polynomials:
-        """Program of densities and corners; then of the squared transfer from each place, and of their sums, in x."""
-        program, output = self._program, self.expansion.output
-        scale = 1.0 / program.input(CONDUCTANCE_SCALE)
-        powers = {
-            nodes: squared_magnitude_of(self._determinants.derivative(nodes[::-1], output, scale))
-            for nodes in self._places
-        }
+        """Program of Σ density |N|² and of Σ density corner |N|² over all generators, in x."""
         white: Polynomial = ()
         flicker: Polynomial = ()
-        for nodes, power in powers.items():
+        for nodes, power in self._noise_powers.items():
             own = [
-                strengths
-                for generator, strengths in zip(self.expansion.generators, self._strengths, strict=True)
+                strength
+                for generator, strength in zip(self.expansion.generators, self._strengths, strict=True)
                 if generator.nodes == nodes
             ]
             white = sum_of(white, product_of((_total([density for density, _ in own]),), power))
             flicker = sum_of(flicker, product_of((_total([density * corner for density, corner in own]),), power))
-        densities = tuple(density for density, _ in self._strengths)
-        corners = tuple(corner for _, corner in self._strengths)
-        return _Polynomials(program, (), (white, flicker, *powers.values()), (densities, corners))
+        return _Polynomials(self._program, (), (white, flicker))
 
     @cached_property
-    def _places(self) -> tuple[tuple[str, str], ...]:
-        return tuple(dict.fromkeys(generator.nodes for generator in self.expansion.generators))
+    def _noise_apart(self) -> _Polynomials:
+        """Program of density |N|² of each generator, in x, and of their corners."""
+        alone = [
+            product_of((density,), self._noise_powers[generator.nodes])
+            for generator, (density, _) in zip(self.expansion.generators, self._strengths, strict=True)
+        ]
+        return _Polynomials(self._program, (), alone, [tuple(corner for _, corner in self._strengths)])
+
+    @cached_property
+    def _noise_powers(self) -> dict[tuple[str, str], Polynomial]:
+        """|N|² from a current between the nodes of each generator to the output, in x."""
+        places = dict.fromkeys(generator.nodes for generator in self.expansion.generators)
+        scale = 1.0 / self._program.input(CONDUCTANCE_SCALE)
+        output = self.expansion.output
+        return {
+            nodes: squared_magnitude_of(self._determinants.derivative(nodes[::-1], output, scale)) for nodes in places
+        }
 
     def evaluate(self, values: Mapping[str, Any]) -> Evaluation:
         """Every network function at the given values.
@@ -134,6 +146,7 @@ class Network:
         table = self._signal.run(given, lanes)
         low, high = root_extent(self._signal.split(table)[0])
         centre = (low * high) ** 0.5 if 0 < low < high < inf else 1.0
+        centre = 1.0 if 1 / NEAR < centre < NEAR else centre
         given[FREQUENCY_SCALE] = frequency * centre
         denominator, numerator, returned, opened, *powers = map(trimmed, self._signal.split(table, centre))
         return Evaluation(
@@ -148,22 +161,14 @@ class Network:
             numerator_power=powers[1],
             loop_excess=powers[2] if self._loop else None,
             gain=np.broadcast_to(np.asarray(self.expansion.gain(given), dtype=float), (lanes,)),
+            read_noise=lambda: self._noise.split(self._noise.run(given, lanes)),
             read_generators=lambda: self._generators(given, lanes),
         )
 
     def _generators(self, given: Mapping[str, Any], lanes: int) -> Generators:
-        table = self._noise.run(given, lanes)
-        white, flicker, *powers, densities, corners = self._noise.split(table)
-        generators = self.expansion.generators
-        return Generators(
-            labels=tuple(generator.label for generator in generators),
-            places=np.array([self._places.index(generator.nodes) for generator in generators], dtype=np.intp),
-            powers=tuple(powers),
-            densities=densities[: len(generators)],
-            corners=corners[: len(generators)],
-            white=white,
-            flicker=flicker,
-        )
+        labels = tuple(generator.label for generator in self.expansion.generators)
+        *white, corners = self._noise_apart.split(self._noise_apart.run(given, lanes))
+        return Generators(labels, tuple(white), corners[: len(labels)])
 
     def _scales(self, first: Mapping[str, float]) -> tuple[float, float]:
         """Geometric means of the conductances [S] and of the corner frequencies [rad/s] in the first lane."""
@@ -201,7 +206,7 @@ class _Polynomials:
     def run(self, values: Mapping[str, Any], lanes: int) -> Array:
         """All coefficients, one a row; a lane in which one of them is not finite is nan altogether."""
         table = self._tape.run_lanes(values, lanes)
-        if not np.isfinite(table).all():
+        if not isfinite(table.sum()):
             table[:, ~np.isfinite(table).all(axis=0)] = np.nan
         return table
 

@@ -7,15 +7,18 @@ Nodes and weights are those of QUADPACK's qk15 (R. Piessens et al., QUADPACK, Sp
 from __future__ import annotations
 
 from collections.abc import Sequence
+from dataclasses import dataclass
 from math import ceil, log
 
 import numpy as np
+from numpy.typing import NDArray
 
-from opto_ckt.analyses.network.lanes import Array, horner, over_points
+from opto_ckt.analyses.network.lanes import Array, Index, horner, over_points
 
 TOLERANCE = 1e-6  #: error allowed in a shared panel, as a part of the lane's integral
 FINER = 1e-7  #: error allowed in a panel that was halved
-PANEL = log(10)  #: width of the first panels in ln ω
+OUTER = 3 * log(10)  #: widest panel beside the roots of D, in ln ω
+BESIDE = 3.0  #: how far past the extent of the roots "beside" begins
 HALVINGS = 40
 AT_ONCE = 16384  #: values computed at a time, so that they stay in the cache
 
@@ -32,76 +35,114 @@ GAUSS = np.zeros(15)
 GAUSS[1::2] = (*_GAUSS, 0.417959183673469, *reversed(_GAUSS))
 
 
+@dataclass(frozen=True)
+class Density:
+    """A power density over ω: (white(ω²) + flicker(ω²)/ω) / |D|², as numerators of shape (orders, lanes) or None."""
+
+    white: Array | None
+    flicker: Array | None
+
+    def over_points(self, omega: Array) -> Array:
+        """Numerator × ω at points that all lanes share; shape (points, lanes)."""
+        parts = []
+        if self.white is not None:
+            parts.append(over_points(self.white, omega**2, omega))
+        if self.flicker is not None:
+            parts.append(over_points(self.flicker, omega**2))
+        return parts[0] if len(parts) == 1 else np.asarray(sum(parts))
+
+    def at(self, omega: Array, lanes: Index) -> Array:
+        """Numerator × ω at points of their own for some lanes; shape (points, lanes)."""
+        total = np.zeros_like(omega)
+        if self.white is not None:
+            total += horner(self.white[:, None, lanes], omega**2) * omega
+        if self.flicker is not None:
+            total += horner(self.flicker[:, None, lanes], omega**2)
+        return total
+
+
 def band_integrals(
-    numerators: Sequence[Array], denominator: Array, low: float, high: float, power: int, beside: Array | float = 0.0
+    densities: Sequence[Density], denominator: Array, edges: Array, beside: Array | float = 0.0
 ) -> Array:
-    r"""Integral over ω from low to high of numerator(ω²)/denominator(ω²) · ω^power.
+    r"""Integrals of densities over ω, from the first edge to the last.
 
     Parameters
     ----------
-    numerators : polynomials in x = ω², each of shape (orders, lanes).
-    denominator : polynomial in x, positive at x > 0; shape (orders, lanes).
-    low, high : ends of the band in the unit of ω, 0 < low < high.
-    power : 0 for a white density, -1 for one that falls as 1/f.
-    beside : what each integral is to be added to; the error is judged against the sum. Shape (polynomials, lanes).
+    densities : what to integrate.
+    denominator : |D|², a polynomial in x = ω², positive at x > 0; shape (orders, lanes).
+    edges : ln ω at the ends of the panels to begin with.
+    beside : what each integral is to be added to; the error is judged against the sum. Shape (densities, lanes).
 
     Returns
     -------
-    Shape (polynomials, lanes), to about 1e-7 of each sum, 1e-6 at very sharp resonances; nan where halving
-    panels does not get there.
+    Shape (densities, lanes), to about 1e-7 of each sum, 1e-6 at very sharp resonances; nan where halving panels does
+    not get there.
     """
-    lanes = denominator.shape[1]
-    panels = max(1, ceil(log(high / low) / PANEL))
-    edges = np.linspace(log(low), log(high), panels + 1)
-    half = (edges[1] - edges[0]) / 2
+    lanes, panels = denominator.shape[1], len(edges) - 1
+    half = np.diff(edges) / 2
     parts: list[tuple[Array, Array]] = []
     together = max(1, AT_ONCE // (15 * lanes))
     for first in range(0, panels, together):
-        some = edges[first : min(first + together, panels)]
-        points = np.exp((some + half)[:, None] + half * NODES)
-        parts.append(_shared_panels(numerators, denominator, points, half, power))
+        some = slice(first, min(first + together, panels))
+        parts.append(_shared_panels(densities, denominator, edges[:-1][some], half[some]))
     fine, coarse = (np.concatenate(part, axis=1) for part in zip(*parts, strict=True))
     size = fine.sum(axis=1) + beside
     missed = _missed(fine, coarse, size[:, None], TOLERANCE)
+    if not missed.any():
+        return np.asarray(fine.sum(axis=1))
     total = np.asarray(np.where(missed, 0.0, fine).sum(axis=1))
-    polynomial, panel, lane = np.nonzero(missed)
-    start = edges[panel]
+    which, panel, lane = np.nonzero(missed)
+    start, width = edges[panel], half[panel]
     for _ in range(HALVINGS):
         if not len(lane):
             return total
-        start = np.concatenate((start, start + half))
-        polynomial, lane = np.tile(polynomial, 2), np.tile(lane, 2)
-        half /= 2
-        at = np.exp(start + half + half * NODES[:, None])
-        values = np.empty_like(at)
-        for index, numerator in enumerate(numerators):
-            own = polynomial == index
-            values[:, own] = horner(numerator[:, None, lane[own]], at[:, own] ** 2)
-        values *= at ** (power + 1) / horner(denominator[:, None, lane], at**2)
-        closer, rough = (KRONROD * half) @ values, (GAUSS * half) @ values
-        again = _missed(closer, rough, size[polynomial, lane], FINER)
-        np.add.at(total, (polynomial[~again], lane[~again]), closer[~again])
-        polynomial, lane, start = polynomial[again], lane[again], start[again]
-    np.add.at(total, (polynomial, lane), np.nan)
+        start = np.concatenate((start, start + width))
+        which, lane, width = np.tile(which, 2), np.tile(lane, 2), np.tile(width, 2) / 2
+        omega = np.exp(start + width + width * NODES[:, None])
+        values = np.empty_like(omega)
+        for index, density in enumerate(densities):
+            own = which == index
+            values[:, own] = density.at(omega[:, own], lane[own])
+        values *= width / horner(denominator[:, None, lane], omega**2)
+        closer, rough = KRONROD @ values, GAUSS @ values
+        again = _missed(closer, rough, size[which, lane], FINER)
+        np.add.at(total, (which[~again], lane[~again]), closer[~again])
+        which, lane, start, width = which[again], lane[again], start[again], width[again]
+    np.add.at(total, (which, lane), np.nan)
     return total
 
 
-def _shared_panels(
-    numerators: Sequence[Array], denominator: Array, points: Array, half: float, power: int
-) -> tuple[Array, Array]:
-    """Integral over each panel of points by the 15- and the 7-point rule; shape (polynomials, panels, lanes)."""
-    flat = points.ravel()
-    weight = (flat ** (power + 1))[:, None] / over_points(denominator, flat**2)
-    rules = np.stack((KRONROD, GAUSS)) * half
-    shape = (*points.shape, denominator.shape[1])
-    stacked = np.array([rules @ (over_points(numerator, flat**2) * weight).reshape(shape) for numerator in numerators])
+def panel_edges(low: float, high: float, extent: tuple[float, float], decades: float = 1) -> Array:
+    """ln ω at the ends of panels from low to high: some decades each where D has its roots, wider where it has none."""
+    inner = np.clip((extent[0] / BESIDE, extent[1] * BESIDE), low, high)
+    stretches = ((low, inner[0], OUTER), (inner[0], inner[1], decades * log(10)), (inner[1], high, OUTER))
+    edges = [log(low)]
+    for start, end, width in stretches:
+        if end > start:
+            count = ceil(log(end / start) / width)
+            edges += [log(start) + log(end / start) * step / count for step in range(1, count + 1)]
+    return np.array(edges)
+
+
+def _shared_panels(densities: Sequence[Density], denominator: Array, start: Array, half: Array) -> tuple[Array, Array]:
+    """Integral over each panel by the 15- and the 7-point rule; shape (densities, panels, lanes)."""
+    omega = np.exp((start + half)[:, None] + half[:, None] * NODES).ravel()
+    below = over_points(denominator, omega**2)
+    rules = np.stack((KRONROD, GAUSS)) * half[:, None, None]
+    stacked = np.empty((len(densities), len(start), 2, denominator.shape[1]))
+    for index, density in enumerate(densities):
+        values = density.over_points(omega)
+        values /= below
+        np.matmul(rules, values.reshape(len(start), 15, -1), out=stacked[index])
     return stacked[:, :, 0], stacked[:, :, 1]
 
 
-def _missed(
-    fine: Array, coarse: Array, total: Array, tolerance: float
-) -> np.ndarray[tuple[int, ...], np.dtype[np.bool_]]:
-    """Where the 15-point rule is too far off: its error is about the 3/2 power of what the 7-point rule differs by."""
+def _missed(fine: Array, coarse: Array, total: Array, tolerance: float) -> NDArray[np.bool_]:
+    """Where the 15-point rule is off by more than a part of the total.
+
+    Relative to the panel its error is about the 3/2 power of that by which the 7-point rule differs.
+    """
+    apart = np.abs(fine - coarse)
     with np.errstate(divide="ignore", invalid="ignore"):
-        difference = np.abs(fine - coarse) / total
-    return np.asarray((difference > tolerance ** (2 / 3)) & (total > 0))
+        error = apart * np.sqrt(apart / np.abs(fine))
+    return np.asarray((error > tolerance * total) & (total > 0))

@@ -8,15 +8,17 @@ from math import log10, pi
 import numpy as np
 from numpy.typing import NDArray
 
-from opto_ckt.analyses.network.lanes import EVERY_LANE, Array, Lanes
+from opto_ckt.analyses.network.lanes import EVERY_LANE, Array, Index, Lanes
 
 POINTS_A_DECADE = 10
 LOWEST, HIGHEST = 1e-6, 1e13
 """Frequencies past which a network of lumped parts means nothing. [Hz]"""
 
+STEPS = 5
+"""Newton steps before a lane is bracketed."""
+
 Mask = NDArray[np.bool_]
-Index = NDArray[np.intp]
-Derivative = Callable[[Array, Index | slice], tuple[Array, Array]]
+Derivative = Callable[[Array, Lanes], tuple[Array, Array]]
 """Value and slope at a point of each of the lanes given."""
 
 
@@ -34,30 +36,24 @@ def falls(above: Mask) -> Mask:
 
 
 def first_of(changes: Mask) -> tuple[Index, Mask]:
-    """Index of the first change of each lane, and whether there is one."""
-    position, lane = np.nonzero(changes)
-    index = np.full(changes.shape[1], -1, dtype=np.intp)
-    index[lane[::-1]] = position[::-1]
-    return np.maximum(index, 0), index >= 0
+    """Index of the first change of each lane (the last row where there is none), and whether there is one."""
+    rank = np.arange(len(changes), 0, -1, dtype=np.uint8 if len(changes) < 256 else np.uint16)
+    highest = (changes * rank[:, None]).max(axis=0, initial=0).astype(np.intp)
+    return np.minimum(len(changes) - highest, len(changes) - 1), highest > 0
 
 
 def last_of(changes: Mask) -> tuple[Index, Mask]:
-    """Index of the last change of each lane, and whether there is one."""
-    position, lane = np.nonzero(changes)
-    index = np.full(changes.shape[1], -1, dtype=np.intp)
-    index[lane] = position
-    return np.maximum(index, 0), index >= 0
+    """Index of the last change of each lane (the first row where there is none), and whether there is one."""
+    index, found = first_of(changes[::-1])
+    return len(changes) - 1 - index, found
 
 
 def every(changes: Mask) -> tuple[Index, Lanes]:
     """Every change as its index and its lane; the lanes as a slice where each has just one."""
+    number = np.add.reduce(changes.view(np.uint8), axis=0, dtype=np.uint16)
+    if (number == 1).all():
+        return first_of(changes)[0], EVERY_LANE
     position, lane = np.nonzero(changes)
-    lanes = changes.shape[1]
-    if len(lane) == lanes:
-        index = np.full(lanes, -1, dtype=np.intp)
-        index[lane] = position
-        if index.min(initial=0) >= 0:
-            return index, EVERY_LANE
     return position, lane
 
 
@@ -73,45 +69,50 @@ def value_and_slope(polynomial: Array, at: Array) -> tuple[Array, Array]:
     return value, slope
 
 
-def refine(function: Derivative, low: Array, high: Array, closeness: float = 1e-7) -> Array:
-    """Root of a function that falls through zero between low and high, by Newton steps kept inside the bracket.
+def refine(function: Derivative, low: Array, high: Array, start: Array, closeness: float = 1e-7) -> Array:
+    """Root of a function that falls through zero between low and high.
 
-    A step that would leave the bracket is replaced by its geometric mean. Lanes leave the iteration once a step is
-    smaller than `closeness` of the root, which leaves an error of about its square.
+    A few Newton steps for all lanes; those whose last step is not below `closeness` of the root (which leaves an
+    error of about its square) are bracketed.
     """
-    low, high = low.copy(), high.copy()
-    at = np.sqrt(low * high)
-    root = at
-    active: Index | slice = slice(None)
+    at = start
     with np.errstate(divide="ignore", invalid="ignore", over="ignore"):
-        for _ in range(100):
-            value, slope = function(at, active)
-            positive = value > 0
-            np.copyto(low, at, where=positive)
-            np.copyto(high, at, where=~positive)
-            after = at - value / slope
-            inside = (after >= low) & (after <= high)
-            if not inside.all():
-                after = np.where(inside, after, np.sqrt(low * high))
-            moving = np.abs(after - at) > closeness * after
-            at = after
-            if isinstance(active, slice):
-                root = after
-            else:
-                root[active] = after
-            count = np.count_nonzero(moving)
-            if not count:
-                break
-            if count < len(moving) / 2:
-                active = np.flatnonzero(moving) if isinstance(active, slice) else active[moving]
-                at, low, high = at[moving], low[moving], high[moving]
-    return root
+        for _ in range(STEPS):
+            value, slope = function(at, EVERY_LANE)
+            value /= slope
+            at = at - value
+            np.maximum(at, low, out=at)
+            np.minimum(at, high, out=at)
+            far = np.abs(value) > closeness * at
+            if not far.any():
+                return at
+        far |= np.isnan(value)
+        lanes = np.flatnonzero(far)
+        at[lanes] = _bracketed(function, low[lanes], high[lanes], lanes, closeness)
+    return at
+
+
+def _bracketed(function: Derivative, low: Array, high: Array, lanes: Index, closeness: float) -> Array:
+    """The same by Newton steps that are replaced by the geometric mean of the bracket where they would leave it."""
+    at = np.sqrt(low * high)
+    for _ in range(100):
+        value, slope = function(at, lanes)
+        positive = value > 0
+        low, high = np.where(positive, at, low), np.where(positive, high, at)
+        after = at - value / slope
+        after = np.where((after >= low) & (after <= high), after, np.sqrt(low * high))
+        moving = np.abs(after - at) > closeness * after
+        at = after
+        if not moving.any():
+            break
+    return at
 
 
 def crossing(polynomial: Array, points: Array, index: Index) -> Array:
     """Where a polynomial in x goes from positive to negative between a scan point and the next, lane by lane."""
 
-    def function(at: Array, lanes: Index | slice) -> tuple[Array, Array]:
+    def function(at: Array, lanes: Lanes) -> tuple[Array, Array]:
         return value_and_slope(polynomial[:, lanes], at)
 
-    return refine(function, points[index], points[index + 1])
+    low, high = points[index], points[index + 1]
+    return refine(function, low, high, np.sqrt(low * high))

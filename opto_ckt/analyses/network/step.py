@@ -7,9 +7,9 @@ from math import ceil
 
 import numpy as np
 
-from opto_ckt.analyses.network.lanes import Array
+from opto_ckt.analyses.network.lanes import Array, Lanes
 from opto_ckt.analyses.network.modes import Modes
-from opto_ckt.analyses.network.scan import Index, first_of, refine
+from opto_ckt.analyses.network.scan import first_of, refine
 
 POINTS_A_DECADE = 40
 EARLIEST, LATEST = 0.02, 40.0
@@ -70,11 +70,12 @@ def _reached(modes: Modes, time: Array, relative: Array, level: Array, part: flo
     lanes = np.arange(len(level))
     low = np.where(index > 0, time[index - 1, lanes], time[0] * 1e-6)
 
-    def missing(at: Array, active: Index | slice) -> tuple[Array, Array]:
+    def missing(at: Array, active: Lanes) -> tuple[Array, Array]:
         some = modes.lanes(active)
         return part - some.response(at) / level[active], -some.response(at, 1) / level[active]
 
-    at = refine(missing, low, time[index, lanes])
+    high = time[index, lanes]
+    at = refine(missing, low, high, (low + high) / 2)
     at = np.where(modes.response(np.zeros_like(level)) / level >= part, 0.0, at)
     return np.where(found, at, np.nan)
 
@@ -87,10 +88,10 @@ def _excess(modes: Modes, time: Array, relative: Array, level: Array) -> Array:
     if len(inner):
         some, own, near = modes.lanes(inner), level[inner], index[inner]
 
-        def slope(at: Array, active: Index | slice) -> tuple[Array, Array]:
+        def slope(at: Array, active: Lanes) -> tuple[Array, Array]:
             part = some.lanes(active)
             return part.response(at, 1) / own[active], part.response(at, 2) / own[active]
 
-        at = refine(slope, time[near - 1, inner], time[near + 1, inner], closeness=1e-6)
+        at = refine(slope, time[near - 1, inner], time[near + 1, inner], time[near, inner], closeness=1e-6)
         largest[inner] = some.response(at) / own
     return np.where(largest > 1 + 1e-9, largest - 1, np.where(np.isnan(largest), np.nan, 0.0))

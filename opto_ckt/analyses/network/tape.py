@@ -10,7 +10,7 @@ import numpy as np
 from opto_ckt.analyses.network.lanes import Array
 from opto_ckt.analyses.network.program import Node, Operation, Program
 
-BLOCK = 2048
+BLOCK = 8192
 """Lanes that run through a program at a time, so that its registers stay in the cache."""
 
 

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Mapping, Sequence
 from itertools import product
 from math import inf, isfinite
 
@@ -59,13 +59,14 @@ def feedback_capacitor(
     total = max(float(np.nan_to_num(closed_form)), stray)
     found = bench.evaluate({"R1": r1, "C1": total * SCAN - stray, **others})
     wanted = _where_quality(total * SCAN, found["quality_factor"], quality)
-    low, high, overshoots = _window(request, bench, r1, total, others)
+    corners = _Corners(request, bench, r1, others)
+    low, high = _window(request, corners, total * COARSE)
     stable = _largest_stable(bench, capacitance)
     if low > stable and isfinite(low):
         raise _unstable(bench, capacitance, low, stable)
     high = min(high, stable)
-    aim = min(max(wanted, low), high) if low <= high else float(np.sqrt(low * high)) if isfinite(low) else high
-    overshoot = float(np.interp(aim, total * COARSE, overshoots))
+    aim = min(max(wanted, low), high) if low <= high else min(low if isfinite(low) else wanted, stable)
+    overshoot = min(float(corners.worst(np.array([aim]), ("overshoot",))["overshoot"][1][0]), 1.0)
     if "C1" in request.fixed:
         derivation.note("C1", "fixed in the design file")
         return Fitted("C1", request.fixed["C1"], series, fixed=True), overshoot
@@ -93,12 +94,13 @@ def _reason(
 ) -> str:
     wanted, closed_form, aim = totals
     low, high = (write(max(edge - stray, 0.0), "F") if isfinite(edge) else "open" for edge in window)
+    ends = f"{low} … {high}" if window[1] > 0 else f"{low} … none that keeps the bandwidth"
     said = f"Q = {quality:.3g}"
     if abs(wanted / closed_form - 1) > 0.02:
         said += f" ({write(wanted, 'F')} in all with second pole and load, {write(closed_form, 'F')} with one pole)"
     if abs(aim / wanted - 1) > 0.02:
         said += ", moved into its window"
-    said += f"; window over corners {low} … {high}; {write(stray, 'F')} more is stray"
+    said += f"; window over corners {ends}; {write(stray, 'F')} more is stray"
     if aim - stray < BUILDABLE:
         said += "; no more than bare pads: not to be built as a part"
     return said if window[0] <= window[1] else said + "; the window is empty"
@@ -116,39 +118,49 @@ def _unstable(bench: Bench, capacitance: float, low: float, stable: float) -> In
     )
 
 
-def _window(
-    request: ReceiverRequest, bench: Bench, r1: float, total: float, others: Mapping[str, float]
-) -> tuple[float, float, Lanes]:
-    """Least total C_f that damps and largest that keeps the bandwidth, over corners; worst overshoot along `COARSE`."""
-    totals = total * COARSE
-    stray, spread = bench.nominal("CS"), bench.high("CS") - bench.nominal("CS")
-    fitted = np.maximum(totals - stray, 0.0)
-    stock = request.preferred.capacitors
-    deviation = np.where(fitted < 10e-12, stock.tolerance_below_10pF, stock.tolerance * fitted) + spread
-    corners = list(product(*((bench.low(name), bench.high(name)) for name in DECIDES)))
-    ends = np.array([np.maximum(totals - deviation - stray, -stray * 0.99), totals + deviation - stray])
-    lanes = {name: np.repeat([corner[i] for corner in corners], ends.size) for i, name in enumerate(DECIDES)}
-    found = bench.evaluate({"R1": r1, **others, **lanes, "C1": np.tile(ends.ravel(), len(corners))})
-    shape = (len(corners), 2, len(totals))
+class _Corners:
+    """The circuit at every combination of the limits that decide, C1 and strays at both ends of their spread."""
 
-    def worst(name: str, *, smallest: bool) -> Lanes:
-        figure = np.nan_to_num(found[name], nan=-inf if smallest else inf).reshape(shape)
-        return np.asarray(figure.min(axis=(0, 1)) if smallest else figure.max(axis=(0, 1)))
+    def __init__(self, request: ReceiverRequest, bench: Bench, r1: float, others: Mapping[str, float]) -> None:
+        self._bench, self._stock = bench, request.preferred.capacitors
+        self._fixed = {"R1": r1, **others}
+        self._stray, self._spread = bench.nominal("CS"), bench.high("CS") - bench.nominal("CS")
+        self._settings = list(product(*((bench.low(name), bench.high(name)) for name in DECIDES)))
 
+    def worst(self, totals: Lanes, names: Sequence[str]) -> dict[str, tuple[Lanes, Lanes]]:
+        """Least and greatest of each figure over the corners, for each total C_f."""
+        fitted = np.maximum(totals - self._stray, 0.0)
+        tolerance = np.where(fitted < 10e-12, self._stock.tolerance_below_10pF, self._stock.tolerance * fitted)
+        deviation = np.minimum(tolerance, fitted) + self._spread
+        ends = np.array([totals - deviation - self._stray, totals + deviation - self._stray])
+        lanes = {name: np.repeat([s[i] for s in self._settings], ends.size) for i, name in enumerate(DECIDES)}
+        found = self._bench.evaluate({**self._fixed, **lanes, "C1": np.tile(ends.ravel(), len(self._settings))})
+        shape = (2 * len(self._settings), len(totals))
+        return {
+            name: (
+                np.nan_to_num(found[name], nan=-inf).reshape(shape).min(axis=0),
+                np.nan_to_num(found[name], nan=inf).reshape(shape).max(axis=0),
+            )
+            for name in names
+        }
+
+
+def _window(request: ReceiverRequest, corners: _Corners, totals: Lanes) -> tuple[float, float]:
+    """Least total C_f that damps, and largest that keeps the bandwidth, over the corners. [F]"""
+    worst = corners.worst(totals, ("peaking", "phase_margin", "bandwidth"))
     require = request.require
     peaking = require["peaking"].max if "peaking" in require else None
     margin = require["phase_margin"].min if "phase_margin" in require else None
     damped = np.flatnonzero(
-        (worst("peaking", smallest=False) <= (ALLOWED_PEAKING if peaking is None else peaking))
-        & (worst("phase_margin", smallest=True) >= (margin or 0.0))
+        (worst["peaking"][1] <= (ALLOWED_PEAKING if peaking is None else peaking))
+        & (worst["phase_margin"][0] >= (margin or 0.0))
     )
-    bandwidth = wanted_bandwidth(request)
-    wide = np.flatnonzero(worst("bandwidth", smallest=True) >= (bandwidth or 0.0))
-    overshoots = np.minimum(worst("overshoot", smallest=False), 1.0)
     low = float(totals[damped[0]]) if len(damped) else inf
+    bandwidth = wanted_bandwidth(request)
     if bandwidth is None:
-        return low, inf, overshoots
-    return low, float(totals[wide[-1]]) if len(wide) else float(totals[0]), overshoots
+        return low, inf
+    wide = np.flatnonzero(worst["bandwidth"][0] >= bandwidth)
+    return low, float(totals[wide[-1]]) if len(wide) else 0.0
 
 
 def _largest_stable(bench: Bench, capacitance: float) -> float:
