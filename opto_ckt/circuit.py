@@ -133,3 +133,4 @@ class Circuit:
     not_checked: tuple[str, ...]
     formulas: tuple[Callable[..., Any], ...]  #: sizing relations, for the page of formulas
     starter: str  #: values of a design file to start from, as TOML
+    input_capacitance: Callable[[Any, Bench], Mapping[str, float]] | None = None  #: itemised, of a summing node [F]

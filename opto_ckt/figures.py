@@ -77,7 +77,8 @@ _ALL = (
         "extinction_ratio", "W/W", "extinction ratio", "one level over zero level, as a ratio; 10 log in dB", 1.0, 10.0
     ),
     Figure("compliance_margin", "V", "compliance margin", "supply left over at the current, at its worst", 0.1),
-    Figure("loop_bandwidth", "Hz", "loop bandwidth", "where the loop gain is one", 1.0),
+    Figure("loop_bandwidth", "Hz", "loop bandwidth", "current over set voltage, loop closed, -3 dB electrical", 1.0),
+    Figure("startup_time", "s", "start-up time", "supply or enable there to 95 % of the current", 1e-6),
     Figure("harmonic_2", "dB", "second harmonic", "re the fundamental, electrical: 20 log of the photocurrents", 1.0),
     Figure("harmonic_3", "dB", "third harmonic", "re the fundamental, electrical: 20 log of the photocurrents", 1.0),
     Figure("dissipation", "W", "dissipation", "total taken from the supplies", 1e-3),

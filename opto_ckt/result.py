@@ -7,7 +7,7 @@ from dataclasses import dataclass, field
 from typing import Literal
 
 from opto_ckt.derivation import Derivation
-from opto_ckt.limits import Corner, Requirement
+from opto_ckt.limits import Corner, Limits, Requirement
 from opto_ckt.topology import Topology
 
 
@@ -150,6 +150,7 @@ class Result:
     noise_frequency: float  #: where densities are stated [Hz]
     noise_band: tuple[float, float]  #: [Hz]
     input_capacitance: Mapping[str, float] = field(default_factory=dict)  #: itemised, of the summing node [F]
+    limits: Limits = field(default_factory=dict)  #: of every value, so that corners can be told in figures
 
     @property
     def verdict(self) -> Literal["met", "missed", "none"]:

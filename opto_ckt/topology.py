@@ -106,6 +106,8 @@ class Inductor(TwoTerminal):
 
     kind: ClassVar[str] = "inductor"
     stocked: ClassVar[str] = "inductors"
+    figures: ClassVar[tuple[str, ...]] = ("resistance",)
+    absent: ClassVar[Mapping[str, float]] = {"resistance": SHORT}
 
 
 @dataclass(frozen=True)

@@ -275,10 +275,10 @@ def many_parts():
 
     def evaluate(v):
         r = [v[f"R{i}"] for i in range(6)]
-        return {"a": r[0] * r[1] / r[2] * v["x"], "b": r[3] * r[4] / (r[5] * r[0])}
+        return {"a": r[0] * r[1] / r[2] * v["x"], "b": r[3] * r[4] / (r[5] * r[0]), "c": r[1] * r[3] * r[5] / r[2]}
 
     nominal = evaluate({**{part.ref: part.exact for part in fitted}, "x": 1.0})
-    sides = (("min", 0.97), ("max", 1.03))
+    sides = (("min", 0.5), ("max", 0.8))
     bounds = [Requirement(name, side, f * value, 1e-9) for name, value in nominal.items() for side, f in sides]
     return fitted, evaluate, bounds, limits
 

@@ -72,10 +72,10 @@ class _Search:
         self.steps: Steps = alone[:0]
         self.figures: Lanes = np.empty((len(names), 0))
         self.signed: Lanes = np.empty((2 * len(names), 0))
+        self.noise: Lanes = np.zeros(2 * len(names))  #: what is rounding of each target
         self.lane: dict[bytes, int] = {}
         self.visit(alone)
         self.alone = self.figures.copy()
-        self.noise = np.array([rounding(figure) for figure in self.alone] * 2)
         self.effects = np.array([effects(figure) for figure in self.alone] * 2)
         self.matters = self.effects > self.noise[:, None]
         up = self.signed[:, 1:] > self.signed[:, :1]
@@ -93,19 +93,28 @@ class _Search:
             fresh = [target for target, centre in enumerate(centres) if centre not in explored[target]]
             if not fresh:
                 break
-            around = [self.around(target, self.steps[centres[target]]) for target in fresh]
-            probes = [self.probes(target, self.steps[centres[target]]) for target in fresh]
-            self.visit(np.concatenate([*around, *probes]))
-            jumps = []
-            for target, rows, probing in zip(fresh, around, probes, strict=True):
-                centre, lanes = int(centres[target]), self.lanes(rows)
-                jumps.append(self.jump(target, centre, lanes))
-                if self.telling(target, centre, self.lanes(probing)).any():
-                    self.matters[target] = True
-                else:
-                    explored[target][centre] = lanes
+            around = self.explore({target: int(centres[target]) for target in fresh})
+            jumps = [self.jump(target, int(centres[target]), lanes) for target, lanes in around.items()]
+            for target, lanes in around.items():
+                explored[target][int(centres[target])] = lanes
         self.visit(np.array(jumps))
+        centres = self.worst()
+        left = {target: int(centre) for target, centre in enumerate(centres) if centre not in explored[target]}
+        for target, lanes in self.explore(left).items() if left else ():
+            explored[target][left[target]] = lanes
         return self.found(explored)
+
+    def explore(self, centres: Mapping[int, int]) -> dict[int, Indices]:
+        """Lanes around the centre of each target, evaluated."""
+        probes = {target: self.probes(target, self.steps[lane]) for target, lane in centres.items()}
+        around = {target: self.around(target, self.steps[lane]) for target, lane in centres.items()}
+        self.visit(np.concatenate([*around.values(), *probes.values()]))
+        for target, lane in centres.items():
+            if self.telling(target, lane, self.lanes(probes[target])).any():
+                self.matters[target] = True
+                around[target] = self.around(target, self.steps[lane])
+        self.visit(np.concatenate([*around.values()]))
+        return {target: self.lanes(rows) for target, rows in around.items()}
 
     def visit(self, steps: Steps) -> None:
         """Evaluate the corners that have not been evaluated yet, all in one call."""
@@ -120,6 +129,7 @@ class _Search:
             self.steps = np.concatenate([self.steps, steps[new]])
             self.figures = np.concatenate([self.figures, figures], axis=1)
             self.signed = np.concatenate([self.signed, signed], axis=1)
+            self.noise = np.tile(np.maximum(self.noise[: len(figures)], [rounding(figure) for figure in figures]), 2)
 
     def lanes(self, steps: Steps) -> Indices:
         """Where corners stand among the lanes."""
@@ -169,25 +179,24 @@ class _Search:
         return jumped
 
     def found(self, explored: Sequence[Mapping[int, Indices]]) -> dict[str, Extreme]:
-        """Extremes with their corners, without settings of limits that make no difference there."""
+        """Extremes with their corners: what weighs most there first, what makes no difference there left out."""
         worst = self.worst()
         rows = self.steps[worst]
-        for target, (centre, row) in enumerate(zip(worst, rows, strict=True)):
-            lanes = explored[target].get(int(centre), np.empty(0, dtype=np.intp))
-            telling = self.telling(target, int(centre), lanes)
-            moved = self.steps[lanes] != row
-            row[moved[~telling].any(axis=0) & ~moved[telling].any(axis=0)] = 0
+        weights = self.effects.copy()
+        for target, centre in enumerate(worst):
+            lanes = explored[target].get(int(centre), worst[:0])
+            if len(lanes):
+                weights[target] = self.weights(target, int(centre), lanes)
+                rows[target, weights[target] <= self.noise[target]] = 0
         self.visit(rows)
-        targets = np.arange(len(worst))
         trimmed = self.lanes(rows)
+        targets = np.arange(len(worst))
         kept = self.signed[targets, trimmed] <= self.signed[targets, worst] + self.noise
-        lanes = np.where(kept, trimmed, worst)
+        at = np.where(kept, trimmed, worst)
         half = len(self.names)
-        values = self.figures[targets % half, lanes]
-        corners = [
-            corner_of(varying(self.limits), self.steps[lane], weights)
-            for lane, weights in zip(lanes, self.effects, strict=True)
-        ]
+        values = self.figures[targets % half, at]
+        names = varying(self.limits)
+        corners = [corner_of(names, self.steps[lane], weights[target]) for target, lane in enumerate(at)]
         return {
             name: Extreme(
                 nominal=float(self.figures[low, 0]),
@@ -198,3 +207,10 @@ class _Search:
             )
             for low, name in enumerate(self.names)
         }
+
+    def weights(self, target: int, centre: int, lanes: Indices) -> Lanes:
+        """By how much each limit, moved away alone, changes a target at a centre; nothing for those not moved."""
+        found = np.zeros(len(self.steps[centre]))
+        columns = (self.steps[lanes] != self.steps[centre]).argmax(axis=1)
+        np.maximum.at(found, columns, np.abs(self.signed[target, lanes] - self.signed[target, centre]))
+        return found

@@ -20,8 +20,8 @@ Band = tuple[float, float]
 FLICKER_FROM = 10.0
 """Lowest frequency counted in 1/f noise where no band is given: it has no finite total. Common practice. [Hz]"""
 
-BEYOND = 1e3
-"""How far past the last root of D the 1/f noise is followed; what is left out is below 1e-6 of it."""
+BEYOND = 1e2
+"""How far past the last root of D the 1/f noise is followed; what is left out is below 1e-4 of its highest density."""
 
 
 def output_density(evaluation: Evaluation, frequency: Array | float) -> Array:
@@ -74,7 +74,7 @@ def output_rms(evaluation: Evaluation, band: Band | None = None, flicker_from: f
 
     Notes
     -----
-    Closed form to rounding; bands and 1/f noise to about 1e-7.
+    Closed form to rounding; bands and 1/f noise to about 1e-6.
     """
     (power,) = _powers(evaluation, [evaluation.noise], band, flicker_from)
     return _root(evaluation, power)

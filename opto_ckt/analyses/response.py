@@ -162,7 +162,7 @@ def _highest(evaluation: Evaluation, lanes: Index, index: Index) -> tuple[Array,
         return n1 * d - n * d1, n2 * d - n * d2
 
     points = evaluation.scan
-    x = refine(slope_of_ratio, points[index - 1], points[index + 1], _summit(evaluation, lanes, index), closeness=1e-4)
+    x = refine(slope_of_ratio, points[index - 1], points[index + 1], _summit(evaluation, lanes, index), closeness=3e-3)
     return x, value_and_slope(above, x)[0] / value_and_slope(below, x)[0]
 
 

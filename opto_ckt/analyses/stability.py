@@ -50,7 +50,8 @@ def crossover_frequency(evaluation: Evaluation) -> Array:
 def phase_margin(evaluation: Evaluation) -> Array:
     """Angle between T and -1 where |T| = 1, the smallest where there are several such frequencies. [°]
 
-    Negative where the closed network is unstable; infinite where |T| never passes 1.
+    Negative where the closed network is unstable (-180° if |T| never passes 1 there); infinite where it is stable and
+    |T| never passes 1; nan where the values are.
 
     Raises
     ------
@@ -60,14 +61,15 @@ def phase_margin(evaluation: Evaluation) -> Array:
     index, lanes = every(above[:-1] != above[1:])
     downward = np.where(above[:, lanes][index, np.arange(len(index))], 1.0, -1.0)
     x = crossing(polynomial[:, lanes] * downward, evaluation.scan, index)
-    ratio = _at(evaluation, 1j * np.sqrt(x), lanes)
+    real, imaginary = _ratio(evaluation, x, lanes)
     margin = np.full(evaluation.lanes, np.inf)
-    angle = np.abs(np.degrees(np.angle(-ratio)))
+    angle = np.degrees(np.abs(np.arctan2(imaginary, -real)))
     if isinstance(lanes, slice):
         margin = angle
     else:
         np.minimum.at(margin, lanes, angle)
-    return np.where(evaluation.stable, margin, -margin)
+    margin = np.where(evaluation.stable, margin, -np.minimum(margin, 180.0))
+    return np.where(np.isnan(evaluation.denominator[0]), np.nan, margin)
 
 
 def gain_margin(evaluation: Evaluation) -> Array:
@@ -85,7 +87,8 @@ def gain_margin(evaluation: Evaluation) -> Array:
     index, lanes = np.nonzero(positive[:-1] != positive[1:])
     downward = np.where(positive[index, lanes], 1.0, -1.0)
     x = crossing(imaginary[:, lanes] * downward, evaluation.scan, index)
-    ratio = _at(evaluation, 1j * np.sqrt(x), lanes).real
+    returned, opened = (each[:, lanes] for each in _loop(evaluation))
+    ratio = (horner(returned, 1j * np.sqrt(x)) / horner(opened, 1j * np.sqrt(x))).real
     distance = np.full(evaluation.lanes, np.inf)
     counts = (ratio < 0) & (ratio > -1)
     np.minimum.at(distance, lanes[counts], -20 * np.log10(-ratio[counts]))
@@ -106,9 +109,12 @@ def _excess(evaluation: Evaluation) -> tuple[Array, Mask]:
     return polynomial, over_points(polynomial, evaluation.scan) > 0
 
 
-def _at(evaluation: Evaluation, s: Complex, lanes: Lanes) -> Complex:
-    returned, opened = _loop(evaluation)
-    return np.asarray(horner(returned[:, lanes], s) / horner(opened[:, lanes], s))
+def _ratio(evaluation: Evaluation, x: Array, lanes: Lanes) -> tuple[Array, Array]:
+    """Real and imaginary part of T |D0|² at a point x of each lane."""
+    returned, opened = (each[:, lanes] for each in _loop(evaluation))
+    even, odd = horner(_even(returned), x), horner(_odd(returned), x)
+    other_even, other_odd = horner(_even(opened), x), horner(_odd(opened), x)
+    return even * other_even + x * odd * other_odd, np.sqrt(x) * (odd * other_even - even * other_odd)
 
 
 def _even(polynomial: Array) -> Array:
@@ -116,7 +122,7 @@ def _even(polynomial: Array) -> Array:
 
 
 def _odd(polynomial: Array) -> Array:
-    return _alternating(polynomial[1::2])
+    return _alternating(polynomial[1::2]) if len(polynomial) > 1 else np.zeros_like(polynomial)
 
 
 def _alternating(part: Array) -> Array:

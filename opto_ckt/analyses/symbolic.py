@@ -5,7 +5,9 @@ Nothing here is on the way of sizing a design; sympy and lcapy are imported by t
 
 from __future__ import annotations
 
+import re
 from collections.abc import Callable, Iterator, Mapping
+from fractions import Fraction
 from functools import cached_property
 from inspect import signature
 from types import FunctionType
@@ -192,20 +194,35 @@ def formula_expression(formula: Callable[..., Any]) -> Any:
     return sympy.nsimplify(_rebound(formula)(**symbols), rational=True)
 
 
+def coefficients(expression: Any) -> tuple[list[Any], list[Any]]:
+    """Numerator and denominator of a network function by powers of s, lowest first, each factored, with π as such."""
+    above, below = (sympy.Poly(part, S) for part in sympy.fraction(expression))
+    every = [factor for part in (above, below) for factor in _numbers(part)]
+    scale = max(map(abs, every)) * (-1 if all(factor < 0 for factor in _numbers(below)) else 1)
+    return _by_power(above, scale), _by_power(below, scale)
+
+
+def renamed(expression: Any, names: Mapping[str, str]) -> Any:
+    """The expression with symbols called by other names."""
+    symbols = expression.free_symbols - {S}
+    return expression.xreplace({one: sympy.Symbol(names.get(one.name, one.name), positive=True) for one in symbols})
+
+
 def latex(expression: Any, names: Mapping[str, str] | None = None) -> str:
     """An expression in LaTeX; `names` gives the LaTeX of symbols by their name."""
     written = {sympy.Symbol(name, positive=True): text for name, text in (names or {}).items()}
-    return str(sympy.latex(expression, symbol_names=written))
+    return str(sympy.latex(_shortened(expression), symbol_names=written))
 
 
 def readable(expression: Any) -> str:
-    """An expression as one line of plain text.
+    """An expression as one line of plain text; numbers that are no short fraction to six digits.
 
     >>> x, y = sympy.symbols("x y")
     >>> readable(x**2 * y / 3)
     'x^2·y/3'
     """
-    return str(sympy.sstr(expression)).replace("**", "^").replace("*", "·")
+    written = str(sympy.sstr(_shortened(expression))).replace("**", "^").replace("*", "·")
+    return re.sub(r"\bpi\b", "π", written)
 
 
 def _rebound(formula: Callable[..., Any]) -> Callable[..., Any]:
@@ -228,3 +245,32 @@ def _fraction(primitive: Primitive, symbols: Symbols) -> tuple[Any, Any]:
 
 def _collected(expression: Any) -> Any:
     return sympy.Poly(sympy.expand(expression), S).as_expr()
+
+
+def _numbers(polynomial: Any) -> list[Any]:
+    """Factors of all products that a polynomial in s is a sum of."""
+    symbols = sorted(polynomial.free_symbols_in_domain, key=str) or [S]
+    return [factor for part in polynomial.all_coeffs() if part for factor in sympy.Poly(part, *symbols).coeffs()]
+
+
+def _by_power(polynomial: Any, scale: Any) -> list[Any]:
+    def with_pi(part: Any) -> Any:
+        terms = sympy.Poly(part, *(sorted(part.free_symbols, key=str) or [S])).as_expr().as_ordered_terms()
+        split = [term.as_coeff_Mul() for term in terms]
+        return sympy.factor(sympy.Add(*(_circular(number / scale) * rest for number, rest in split)))
+
+    return [with_pi(part) for part in reversed(polynomial.all_coeffs())]
+
+
+def _circular(number: Any) -> Any:
+    """A number as a short fraction times the power of 2π that leaves one; as it is where none does."""
+    for power in range(13):
+        fraction = sympy.Rational(Fraction(float(number) * (2 * np.pi) ** power).limit_denominator(64))
+        if abs(float(number) * (2 * np.pi) ** power - float(fraction)) <= 1e-9 * abs(float(fraction)):
+            return fraction / (2 * sympy.pi) ** power
+    return number
+
+
+def _shortened(expression: Any) -> Any:
+    long = [number for number in expression.atoms(sympy.Rational) if number.q > 10_000]
+    return expression.xreplace({number: sympy.Float(number, 6) for number in long})

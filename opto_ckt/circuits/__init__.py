@@ -3,8 +3,10 @@
 from __future__ import annotations
 
 from importlib import import_module
+from typing import TYPE_CHECKING
 
-from opto_ckt.circuit import Circuit
+if TYPE_CHECKING:
+    from opto_ckt.circuit import Circuit
 
 CIRCUITS: dict[str, str] = {
     "tia": "opto_ckt.circuits.receivers.tia",

@@ -13,7 +13,9 @@ SEPARATORS = {",": ",", ";": ";", "tab": "\t"}
 @click.argument("designs", metavar="DESIGN...", nargs=-1, required=True, type=click.Path(allow_dash=True))
 @click.option("--boards", type=click.IntRange(min=1), default=1, show_default=True, help="Boards of each design.")
 @click.option("--csv", "as_csv", is_flag=True, help="Print CSV instead of the sheet.")
-@click.option("--separator", type=click.Choice(list(SEPARATORS)), default=",", show_default=True, help="Between cells of the CSV.")
+@click.option(
+    "--separator", type=click.Choice(list(SEPARATORS)), default=",", show_default=True, help="Between cells of the CSV."
+)
 @click.option("--bom-mark", is_flag=True, help="Begin the CSV with a byte-order mark, as some spreadsheets want.")
 @options.out("sheet and CSV")
 @options.force

@@ -5,6 +5,7 @@ from __future__ import annotations
 import sys
 from collections.abc import Callable
 
+from opto_ckt.circuit import Circuit
 from opto_ckt.circuits import CIRCUITS, load
 from opto_ckt.design.files import LARGEST
 from opto_ckt.design.reading import ReadDesign, read_request, read_text
@@ -23,6 +24,11 @@ def read_design(path: str) -> ReadDesign:
         return read_request(path, circuit_of=_request_of, circuits=CIRCUITS)
     content = sys.stdin.buffer.read(LARGEST + 1) if sys.stdin is not None else b""
     return read_text(content, STREAM_NAME, circuit_of=_request_of, circuits=CIRCUITS)
+
+
+def read_starter(circuit: Circuit) -> ReadDesign:
+    """The design that a circuit is begun from."""
+    return read_text(circuit.starter, circuit.name, circuit_of=_request_of, circuits=CIRCUITS)
 
 
 def sized(path: str) -> Result:

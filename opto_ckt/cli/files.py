@@ -30,5 +30,5 @@ def every_file(result: Result) -> dict[str, str]:
 
 def write(folder: str, texts: Mapping[str, str], *, force: bool, quiet: bool) -> None:
     """Write them all or none, and say which."""
-    write_files(folder, texts, force)
+    write_files(folder, texts, force=force)
     talk(f"wrote {', '.join(texts)} into {folder}", quiet=quiet)

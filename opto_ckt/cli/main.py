@@ -72,7 +72,9 @@ class LazyGroup(click.Group):
         with formatter.section("Commands"):
             formatter.write_dl(list(COMMANDS.items()))
 
-    def resolve_command(self, ctx: click.Context, args: list[str]) -> tuple[str | None, click.Command | None, list[str]]:
+    def resolve_command(
+        self, ctx: click.Context, args: list[str]
+    ) -> tuple[str | None, click.Command | None, list[str]]:
         """Refuse an unknown command with the one that was probably meant."""
         if args[0] not in COMMANDS and not args[0].startswith("-"):
             from opto_ckt.cli.suggestions import meant  # loaded for this message alone
@@ -82,7 +84,9 @@ class LazyGroup(click.Group):
         return super().resolve_command(ctx, args)
 
 
-@click.group(cls=LazyGroup, epilog=EPILOG, context_settings={"help_option_names": ["-h", "--help"], "max_content_width": 100})
+@click.group(
+    cls=LazyGroup, epilog=EPILOG, context_settings={"help_option_names": ["-h", "--help"], "max_content_width": 100}
+)
 @click.version_option(__version__, message="opto-ckt %(version)s")
 def program() -> None:
     """Size LED and laser drivers and photodiode receivers from data sheets, exactly and at their corners."""
@@ -117,13 +121,14 @@ def _run(arguments: Sequence[str] | None) -> int:
     except Exception as error:
         if os.environ.get(DEBUG, "") not in ("", "0"):
             raise
-        _say(f"opto-ckt: fault of this program, not of the design: {type(error).__name__}; {DEBUG}=1 shows where it arose")
+        _say(f"opto-ckt: fault of this program, not of the design: {type(error).__name__}; {DEBUG}=1 shows where")
         return INTERNAL
 
 
 def _told(error: OptoCktError) -> str:
     if isinstance(error, InfeasibleError) and error.remedies:
-        return "\n".join([f"No values exist: {error.reason}.", "Any one of these would do:", *(f"  {way}" for way in error.remedies)])
+        ways = [f"  {way}" for way in error.remedies]
+        return "\n".join([f"No values exist: {error.reason}.", "Any one of these would do:", *ways])
     return str(error)
 
 
@@ -142,4 +147,3 @@ def _no_output(error: OSError) -> int:
     if not isinstance(error, BrokenPipeError):
         _say(f"opto-ckt: output cannot be written: {error.strerror or error}")
     return NO_OUTPUT
-

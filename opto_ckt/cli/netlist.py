@@ -23,7 +23,9 @@ def command(design: str, analysis: str | None, out: str | None, force: bool, qui
     if analysis is not None:
         names = {name.removeprefix(f"{result.head.stem}.").removesuffix(".cir"): name for name in found}
         if analysis not in names:
-            raise click.BadParameter(f"there is no deck '{analysis}'; there are {', '.join(names)}", param_hint="--analysis")
+            raise click.BadParameter(
+                f"there is no deck '{analysis}'; there are {', '.join(names)}", param_hint="--analysis"
+            )
         found = {names[analysis]: found[names[analysis]]}
     if out is None:
         streams.put("".join(found.values()))

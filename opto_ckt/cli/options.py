@@ -24,26 +24,24 @@ force = click.option("--force", is_flag=True, help="Overwrite files that opto-ck
 
 def out(what: str) -> Callable[[Command], Command]:
     """The folder that files are written into."""
-    return click.option("--out", metavar="DIR", type=click.Path(file_okay=False), help=f"Write {what} into this folder.")
+    return click.option(
+        "--out", metavar="DIR", type=click.Path(file_okay=False), help=f"Write {what} into this folder."
+    )
 
 
-class Word(click.ParamType):
-    """One of a few words, which are looked up when they are needed; the completion of a shell knows them too."""
+def word(
+    name: str, what: str, words: Callable[[], list[str]], metavar: str | None = None
+) -> Callable[[Command], Command]:
+    """An argument that is one of a few words, looked up when they are needed; a completing shell has them too."""
 
-    def __init__(self, what: str, words: Callable[[], list[str]]) -> None:
-        self.name = what
-        self.words = words
+    def checked(ctx: click.Context, param: click.Parameter, value: str) -> str:
+        known = words()
+        if value not in known:
+            hint = meant(value, known) or f"; there are {', '.join(known)}"
+            raise click.BadParameter(f"there is no {what} '{value}'{hint}", ctx, param)
+        return value
 
-    def convert(self, value: Any, param: click.Parameter | None, ctx: click.Context | None) -> str:
-        """The word, or a refusal that names those allowed."""
-        words = self.words()
-        if value not in words:
-            hint = meant(str(value), words) or f"; there are {', '.join(words)}"
-            self.fail(f"there is no {self.name} '{value}'{hint}", param, ctx)
-        return str(value)
+    def completed(ctx: click.Context, param: click.Parameter, incomplete: str) -> list[str]:
+        return [known for known in words() if known.startswith(incomplete)]
 
-    def shell_complete(self, ctx: click.Context, param: click.Parameter, incomplete: str) -> list[Any]:
-        """The words that begin like what was typed."""
-        from click.shell_completion import CompletionItem  # needed by a completing shell alone
-
-        return [CompletionItem(word) for word in self.words() if word.startswith(incomplete)]
+    return click.argument(name, metavar=metavar, callback=checked, shell_complete=completed)

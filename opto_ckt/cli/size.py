@@ -18,7 +18,7 @@ from opto_ckt.cli import options, streams
 def command(
     design: str, out: str | None, force: bool, as_json: bool, verbose: bool, quiet: bool, colour: streams.Colour
 ) -> int:
-    """Size the circuit of DESIGN, check it at its corners and print verdict, parts, figures, noise, heat, faults, cautions."""
+    """Size the circuit of DESIGN, check it at its corners, print what was found."""
     from opto_ckt.cli.designs import sized
     from opto_ckt.outputs.report import page
     from opto_ckt.outputs.result_json import result_json

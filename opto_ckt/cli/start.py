@@ -16,7 +16,7 @@ def words() -> list[str]:
 
 
 @click.command("start")
-@click.argument("what", metavar="CIRCUIT|RECORD", type=options.Word("circuit or part record", words))
+@options.word("what", "circuit or part record", words, metavar="CIRCUIT|RECORD")
 def command(what: str) -> int:
     """Print a commented design file of CIRCUIT, ready to be sized, or a part RECORD to fill from a data sheet."""
     from opto_ckt.circuits import CIRCUITS, load

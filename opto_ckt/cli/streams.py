@@ -4,7 +4,6 @@ from __future__ import annotations
 
 import io
 import os
-import shutil
 import signal
 import sys
 import warnings
@@ -17,7 +16,7 @@ LEAST_COLUMNS = 60  #: a narrower terminal is left to wrap by itself
 
 
 def prepare() -> None:
-    """Write UTF-8 with plain line feeds, end quietly when a reader of the output goes, keep warnings of libraries back."""
+    """Write UTF-8 with plain line feeds, end quietly when the reader of a pipe goes, hold back libraries' warnings."""
     if hasattr(signal, "SIGPIPE"):
         signal.signal(signal.SIGPIPE, signal.SIG_DFL)
     for stream in (sys.stdout, sys.stderr):
@@ -58,10 +57,13 @@ def coloured(wanted: Colour) -> bool:
 
 
 def columns() -> int | None:
-    """Width of the terminal that standard output goes to; None where it goes elsewhere, or is too narrow to wrap for."""
+    """Width of the terminal that standard output goes to; None where there is none, or one too narrow to wrap for."""
     if not on_terminal():
         return None
-    wide = shutil.get_terminal_size().columns
+    try:
+        wide = os.get_terminal_size(sys.stdout.fileno()).columns
+    except OSError:
+        return None
     return wide if wide >= LEAST_COLUMNS else None
 
 

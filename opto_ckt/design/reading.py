@@ -8,14 +8,12 @@ from dataclasses import dataclass
 from hashlib import sha256
 from typing import Any
 
-from pydantic import ValidationError
-
 from opto_ckt.design.catalogue import Catalogue, Entry
-from opto_ckt.design.examination import Examined, examine
+from opto_ckt.design.examination import Examined, chosen, examine
 from opto_ckt.design.files import Source, load, parse
 from opto_ckt.design.merging import Merged, merge
 from opto_ckt.errors import InputError, Problem
-from opto_ckt.parts.record import FROM_FILE, Finding, Record, facts, shown
+from opto_ckt.parts.record import Finding, FindingsError, Record, shown
 from opto_ckt.parts.sections import records_of
 from opto_ckt.request.reading import meant
 from opto_ckt.request.request import Request
@@ -90,19 +88,12 @@ def read_part_file(path: str) -> list[tuple[str, str, Record]]:
 
 
 def _part(entry: Entry) -> Examined:
-    kinds = records_of(entry.section)
-    by_kind = {word: kind for kind in kinds if "kind" in facts(kind) for word in facts(kind)["kind"].words}
-    kind = by_kind.get(str(entry.fields.get("kind"))) if by_kind else kinds[0]
-    if kind is None:
-        return Examined(None, (_kind_wanted(entry.fields.get("kind"), by_kind),))
-    return examine(kind, {**entry.fields, "part": entry.name})
-
-
-def _kind_wanted(kind: Any, by_kind: Mapping[str, Any]) -> Finding:
-    if kind is None:
-        return Finding(("kind",), f"is missing; allowed are {', '.join(by_kind)}")
-    hint = meant(kind, by_kind) if isinstance(kind, str) else ""
-    return Finding(("kind",), f"{shown(kind)} is not allowed; allowed are {', '.join(by_kind)}{hint}")
+    fields = dict(entry.fields)
+    try:
+        kind = chosen(records_of(entry.section), fields)
+    except FindingsError as error:
+        return Examined(None, error.findings)
+    return examine(kind, {**fields, "part": entry.name})
 
 
 def _assemble(
@@ -127,25 +118,15 @@ def _assemble(
     merged = data | {table: fields.data for table, fields in tables.items()}
     lost = {table: fields.lost for table, fields in tables.items() if fields.lost is not None}
     problems += [tables[table].problem(source, table, *finding) for table, finding in lost.items()]
-    request = None if problems else _validated(kind, merged)
-    if request is None:
-        findings = examine(kind, {table: fields for table, fields in merged.items() if table not in lost}).findings
-        problems += [
-            _located(source, tables, finding) for finding in findings if not (finding.path and finding.path[0] in lost)
-        ]
-        if not problems:
-            raise RuntimeError("the design was refused, and examining it found no reason")
+    request, findings = examine(kind, {table: fields for table, fields in merged.items() if table not in lost})
+    problems += [
+        _located(source, tables, finding) for finding in findings if not (finding.path and finding.path[0] in lost)
+    ]
+    if problems or not isinstance(request, Request):
         raise InputError(_in_order(problems, sources))
     digest = sha256(b"".join(one.content for one in sources)).hexdigest()
     stem = os.path.splitext(os.path.basename(source.name))[0].strip("-") or "design"
     return ReadDesign(request, f"sha256:{digest}", stem, source, catalogue)
-
-
-def _validated(kind: type[Request], data: Mapping[str, Any]) -> Request | None:
-    try:
-        return kind.model_validate(data, context=dict(FROM_FILE))
-    except ValidationError:
-        return None
 
 
 def _located(source: Source, tables: Mapping[str, Merged], finding: Finding) -> Problem:

@@ -90,6 +90,8 @@ def size(read: ReadDesign, circuit: Circuit) -> Result:
         scenes=scenes,
         noise_frequency=circuit.noise_frequency(request),
         noise_band=circuit.noise_band(request),
+        limits=sized.limits,
+        input_capacitance=circuit.input_capacitance(request, model.bench()) if circuit.input_capacitance else {},
     )
 
 

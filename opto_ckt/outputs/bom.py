@@ -49,7 +49,7 @@ class BomLine:
 class Bom:
     """The lines of all designs, for a number of boards of each."""
 
-    heads: tuple[DesignHead, ...]
+    designs: Mapping[str, DesignHead]  #: by the name under which places refer to them
     lines: tuple[BomLine, ...]
     boards: int
 
@@ -61,9 +61,10 @@ class Bom:
         """Designators in order, behind the name of their design where there are several."""
         designs = dict.fromkeys(place.design for place in line.places)
         lists = {
-            design: ", ".join(sorted((p.ref for p in line.places if p.design == design), key=in_order)) for design in designs
+            design: ", ".join(sorted((p.ref for p in line.places if p.design == design), key=in_order))
+            for design in designs
         }
-        if len(self.heads) == 1:
+        if len(self.designs) == 1:
             return "".join(lists.values())
         return "; ".join(f"{design} {refs}" for design, refs in lists.items())
 
@@ -74,11 +75,12 @@ def bill_of_materials(results: Sequence[Result], boards: int = 1) -> Bom:
     Of equal value, tolerance, characteristic, size and class of rating: the smallest rating made that carries the load.
     """
     groups: dict[tuple[object, ...], list[tuple[Place, FoundPart]]] = {}
-    for design, result in zip(_names([result.head for result in results]), results, strict=True):
+    names = _names([result.head for result in results])
+    for design, result in zip(names, results, strict=True):
         for part in result.parts:
             groups.setdefault(_same(part), []).append((Place(design, part.ref, part.role), part))
     lines = sorted((_line(group) for group in groups.values()), key=_line_order)
-    return Bom(tuple(result.head for result in results), tuple(lines), boards)
+    return Bom(dict(zip(names, (result.head for result in results), strict=True)), tuple(lines), boards)
 
 
 def in_order(ref: str) -> tuple[str, int, str]:
@@ -94,11 +96,11 @@ def in_order(ref: str) -> tuple[str, int, str]:
 
 def _names(heads: Sequence[DesignHead]) -> list[str]:
     """A name for each design: its stem, numbered where two are alike."""
-    names: list[str] = []
-    for head in heads:
-        same = sum(name == head.stem or name.startswith(f"{head.stem}#") for name in names)
-        names.append(f"{head.stem}#{same + 1}" if same else head.stem)
-    return names
+    stems = [head.stem for head in heads]
+    return [
+        f"{stem}#{stems[: place + 1].count(stem)}" if stems.count(stem) > 1 else stem
+        for place, stem in enumerate(stems)
+    ]
 
 
 def _same(part: FoundPart) -> tuple[object, ...]:
@@ -107,8 +109,19 @@ def _same(part: FoundPart) -> tuple[object, ...]:
         return (part.kind, part.part, part.fitted)
     if not part.fitted:
         return (part.kind, "", part.characteristic, part.size, part.fitted)
-    rating = tuple(sorted((name, _rating_class(part.kind, name, value)) for name, value in part.required_rating.items()))
-    return (part.kind, part.value, part.tolerance, part.absolute_tolerance, part.characteristic, part.size, rating, part.fitted)
+    rating = tuple(
+        sorted((name, _rating_class(part.kind, name, value)) for name, value in part.required_rating.items())
+    )
+    return (
+        part.kind,
+        part.value,
+        part.tolerance,
+        part.absolute_tolerance,
+        part.characteristic,
+        part.size,
+        rating,
+        part.fitted,
+    )
 
 
 def _rating_class(kind: str, name: str, value: float) -> float | None:
@@ -148,7 +161,11 @@ def _code(part: FoundPart) -> str:
 
 def _largest(loads: Iterable[Mapping[str, float]]) -> dict[str, float]:
     every = list(loads)
-    return {name: max(load[name] for load in every if name in load) for name in LOAD_UNITS if any(name in load for load in every)}
+    return {
+        name: max(load[name] for load in every if name in load)
+        for name in LOAD_UNITS
+        if any(name in load for load in every)
+    }
 
 
 def _line_order(line: BomLine) -> tuple[object, ...]:

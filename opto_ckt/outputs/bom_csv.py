@@ -9,11 +9,12 @@ import re
 from opto_ckt import __version__
 from opto_ckt.outputs.bom import Bom, BomLine
 from opto_ckt.outputs.ratings import loads_text
+from opto_ckt.result import DesignHead
 
 HEADINGS = (
     "Item", "Fit", "Quantity", "References", "Kind", "Value", "Code", "Tolerance", "Characteristic", "Size",
     "Required rating", "Worst stress", "Chosen rating", "Maker", "Part number", "Function", "Fitted", "Design",
-    "opto-ckt version",
+    "opto-ckt",
 )  # fmt: skip
 BYTE_ORDER_MARK = "\ufeff"
 SEPARATORS = (",", ";", "\t")
@@ -21,7 +22,7 @@ SEPARATORS = (",", ";", "\t")
 _COMPUTED = "=+-@\uff1d\uff0b\uff0d\uff20|%"  #: begin a formula somewhere; the wide forms do so in eastern editions
 _MONTHS = "jan|feb|mar|apr|may|jun|jul|aug|sep|oct|nov|dec|mär|mai|okt|dez"
 _TAKEN_FOR_MORE = re.compile(
-    rf"\W*\d[\d\s.,:/\-']*(e[+-]?\d+)?\s*(%|[ap]m?)?|(\d+\W*)?({_MONTHS})\w*(\W*\d+)*(\W*\d+)?|true|false|wahr|falsch",
+    rf"[\s(+\-.,$€£¥]*\d[\d\s.,:/\-']*(e[+-]?\d+)?\s*(%|[ap]m?|\))?|(\d+\W*)?({_MONTHS})\w*(\W*\d+)*(\W*\d+)?|true|false|wahr|falsch",
     re.IGNORECASE,
 )
 """Texts that a spreadsheet would turn into a number, a date, a time or a truth value."""
@@ -32,17 +33,22 @@ def bom_csv(bom: Bom, *, separator: str = ",", byte_order_mark: bool = False) ->
     text = io.StringIO(newline="")
     writer = csv.writer(text, delimiter=separator, lineterminator="\n")
     writer.writerow(HEADINGS)
-    designs = "; ".join(f"{harmless_head(head.title or head.stem)} rev {head.revision or 'none'} {head.digest}" for head in bom.heads)
+    designs = "; ".join(dict.fromkeys(_design(head) for head in bom.designs.values()))
     for item, line in enumerate(bom.lines, 1):
         writer.writerow(_row(bom, item, line, designs))
     return BYTE_ORDER_MARK * byte_order_mark + text.getvalue()
+
+
+def _design(head: DesignHead) -> str:
+    revision = f" rev {head.revision}" if head.revision else ""
+    return f"{head.title or head.stem}{revision} {head.digest}"
 
 
 def _row(bom: Bom, item: int, line: BomLine, designs: str) -> list[str | int]:
     texts = (
         bom.references(line), line.kind, line.value, line.code, line.tolerance, line.characteristic,
         _size(line.size), loads_text(line.required_rating), loads_text(line.stress), "", "", line.part_number,
-        ", ".join(line.functions), "yes" if line.fitted else "do not fit", designs, __version__,
+        ", ".join(line.functions), "yes" if line.fitted else "do not fit", designs, f"version {__version__}",
     )  # fmt: skip
     return [item, "", bom.quantity(line), *map(harmless, texts)]
 
@@ -52,16 +58,11 @@ def _size(size: str) -> str:
     return f"{size} inch" if size.isdecimal() else size
 
 
-def harmless_head(text: str) -> str:
-    """A text within a cell: on one line."""
-    return "".join(letter if letter.isprintable() else " " for letter in text).strip()
-
-
 def harmless(text: str) -> str:
     """The text as a cell that stays a text: on one line, and behind an apostrophe where a spreadsheet would convert it.
 
     >>> harmless("=1+1"), harmless("MAR-7"), harmless("24.3 kΩ"), harmless("0603")
     ("'=1+1", "'MAR-7", '24.3 kΩ', "'0603")
     """
-    line = harmless_head(text)
-    return f"'{line}" if line[:1] in _COMPUTED and line or _TAKEN_FOR_MORE.fullmatch(line) else line
+    line = "".join(letter if letter.isprintable() else " " for letter in text).strip()
+    return f"'{line}" if (line and line[0] in _COMPUTED) or _TAKEN_FOR_MORE.fullmatch(line) else line

@@ -12,6 +12,8 @@ from opto_ckt.outputs.ratings import loads_text
 PAGE = 100  #: columns
 LINES = 60  #: of a page
 FORM_FEED = "\f"
+INDENT = 10  #: of the lines below a part's first
+LONGEST = 30  #: columns of a value; a longer name stands on a line of its own
 BLANKS = "rating ____________  maker ____________________  number ______________________"
 
 Entry = list[str]  #: lines of one part; never torn apart
@@ -31,39 +33,45 @@ def bom_sheet(bom: Bom) -> str:
 
 
 def _title(bom: Bom, number: str) -> str:
-    boards = f"{bom.boards} board{'s' * (bom.boards != 1)}" + (" of each design" if len(bom.heads) > 1 else "")
+    boards = f"{bom.boards} board{'s' * (bom.boards != 1)}" + (" of each design" if len(bom.designs) > 1 else "")
     left = f"Bill of materials, {boards}"
     right = f"opto-ckt {__version__}   {number}"
     return left + " " * max(len(GAP), PAGE - width(left) - width(right)) + right
 
 
 def _designs(bom: Bom) -> Iterator[str]:
-    for head in bom.heads:
+    for name, head in bom.designs.items():
         revision = f", rev {head.revision}" if head.revision else ""
-        name = f"{head.stem}: " if len(bom.heads) > 1 else ""
-        yield from wrapped(f"{name}{head.title or head.stem}{revision}, {head.circuit}", 0, PAGE)
-        yield f"{head.digest}"
+        before = f"{name}: " if len(bom.designs) > 1 else ""
+        yield from wrapped(f"{before}{head.title or head.stem}{revision}, {head.circuit}", 0, PAGE)
+        yield head.digest
 
 
 def _entries(bom: Bom) -> tuple[str, list[Entry]]:
-    rows = [("     item", "qty", "value", "code", "tolerance", "characteristic", "size", "needs", "sees")]
+    rows: list[Sequence[str]] = [("     item", "qty", "value", "code", "tolerance", "characteristic", "size")]
     rows += [_row(bom, item, line) for item, line in enumerate(bom.lines, 1)]
-    heading, *lines = aligned(rows, "rrlllllll", indent=0)
+    heading, *lines = aligned(rows, "rrlllll", indent=0)
     return heading, [[text, *_below(bom, line), ""] for text, line in zip(lines, bom.lines, strict=True)]
 
 
 def _row(bom: Bom, item: int, line: BomLine) -> tuple[str, ...]:
-    needs, sees = (loads_text(line.required_rating), loads_text(line.stress)) if line.fitted else ("", "")
+    value = line.value if width(line.value) <= LONGEST else line.kind
     box = f"[ ] {padded(str(item), 5, 'r')}"
-    return (box, str(bom.quantity(line)), line.value, line.code, line.tolerance, line.characteristic, line.size, needs, sees)
+    return (box, str(bom.quantity(line)), value, line.code, line.tolerance, line.characteristic, line.size)
 
 
 def _below(bom: Bom, line: BomLine) -> Iterator[str]:
-    """Designators with what they are for; then room for what buying decides."""
+    """What did not fit above; designators with what they are for, loads; then room for what buying decides."""
+    if width(line.value) > LONGEST:
+        yield from wrapped(line.value, INDENT, PAGE)
     what = ", ".join(filter(None, (line.kind, *line.functions)))
-    yield from wrapped(f"{bom.references(line)}: {what}{'' if line.fitted else '; DO NOT FIT'}", 10, PAGE)
-    if line.fitted:
-        yield " " * 10 + BLANKS
+    if not line.fitted:
+        yield from wrapped(f"{bom.references(line)}: {what}; DO NOT FIT", INDENT, PAGE)
+        return
+    needs, sees = loads_text(line.required_rating), loads_text(line.stress)
+    loads = [f"{word} {text}" for word, text in (("needs", needs), ("sees", sees)) if text]
+    yield from wrapped("; ".join([f"{bom.references(line)}: {what}", *loads]), INDENT, PAGE)
+    yield " " * INDENT + BLANKS
 
 
 def _paged(entries: Sequence[Entry], room: int) -> list[list[Entry]]:

@@ -20,7 +20,8 @@ def width(text: str) -> int:
     if text.isascii():
         return len(text)
     return sum(
-        0 if unicodedata.combining(letter) else 2 if unicodedata.east_asian_width(letter) in "WF" else 1 for letter in text
+        0 if unicodedata.combining(letter) else 2 if unicodedata.east_asian_width(letter) in "WF" else 1
+        for letter in text
     )
 
 
@@ -44,7 +45,7 @@ def aligned(rows: Sequence[Sequence[str]], sides: str, indent: int = 2) -> list[
 
 
 def wrapped(text: str, indent: int, columns: int | None) -> list[str]:
-    """One sentence in lines of at most so many columns, no number torn from its unit; a single line where there is no limit.
+    """One sentence in lines of at most so many columns, no number torn from its unit; one line where there is no limit.
 
     >>> wrapped("2 V over 97 µA", 2, 22)
     ['  2 V over 97 µA']
@@ -55,7 +56,7 @@ def wrapped(text: str, indent: int, columns: int | None) -> list[str]:
 
 
 def packed(items: Sequence[str], indent: int, columns: int, before: str = "") -> list[str]:
-    """A list with commas in lines of at most so many columns, no item torn; ``before`` stands in front of the first line.
+    """A list with commas in lines of at most so many columns, no item torn; ``before`` stands ahead of the first line.
 
     >>> packed(["R1 high", "C1 low", "hottest"], 4, 24, before="at  ")
     ['at  R1 high, C1 low,', '    hottest']

@@ -114,7 +114,7 @@ class Frame:
 
 
 _SHIFTS = (0.0, 0.25, -0.25, 0.5, -0.5, 0.75, -0.75, 1.0, -1.0)
-_GAPS = (0.1, 0.2, 0.35, 0.55, 0.8)
+_GAPS = (0.13, 0.2, 0.35, 0.55, 0.8)
 _NEAR_GAPS = 3  #: how many of them keep a text close
 
 

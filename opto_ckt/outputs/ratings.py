@@ -33,5 +33,7 @@ def loads_text(loads: Mapping[str, float]) -> str:
     '160 µW, 2 V'
     """
     return ", ".join(
-        write(loads[name], unit, trim=True) for name, unit in LOAD_UNITS.items() if abs(loads.get(name, 0.0)) > NEGLIGIBLE[name]
+        write(loads[name], unit, trim=True)
+        for name, unit in LOAD_UNITS.items()
+        if abs(loads.get(name, 0.0)) > NEGLIGIBLE[name]
     )

@@ -73,13 +73,13 @@ def _requirements(result: Result, columns: int | None) -> Iterator[Line]:
     if not result.requirements:
         return
     labels = labels_of(result.topology)
-    rows = [("Requirements", "asked", "nominal", "worst found", "", "at")]
+    rows: list[Sequence[str]] = [("Requirements", "asked", "nominal", "worst found", "", "at")]
     rows += [_requirement(row) for row in result.requirements]
     head, *lines = aligned(rows, "lrrrll", indent=0)
     yield head, BOLD
     for row, line in zip(result.requirements, lines, strict=True):
         colour = "" if row.met else BAD
-        for text in _with_list(line, head, describe(row.at, labels=labels)):
+        for text in _with_list(line, head, describe(row.at, result.limits, labels)):
             yield text, colour
         if row.remedies:
             for text in wrapped(f"would do: {', or '.join(row.remedies)}", 6, columns):
@@ -101,7 +101,7 @@ def _with_list(line: str, head: str, items: str) -> Iterator[str]:
 
 def _parts(result: Result, columns: int | None, *, verbose: bool) -> Iterator[Line]:
     rows = [("Parts", "", "fitted", "exact", "tolerance", "kind")]
-    rows += [(f"  {part.ref}", part.role, value_text(part), _exact(part), tolerance_text(part), _kind(part)) for part in result.parts]
+    rows += [(f"  {part.ref}", part.role, _fitted(part), _exact(part), tolerance_text(part), _kind(part)) for part in result.parts]
     head, *lines = aligned(rows, "llrrll", indent=0)
     yield head, BOLD
     for part, line in zip(result.parts, lines, strict=True):
@@ -111,6 +111,10 @@ def _parts(result: Result, columns: int | None, *, verbose: bool) -> Iterator[Li
                 yield text, DIM
 
 
+def _fitted(part: FoundPart) -> str:
+    return value_text(part) if part.unit or not part.fitted else ""
+
+
 def _exact(part: FoundPart) -> str:
     if part.exact is None:
         return ""
@@ -118,7 +122,8 @@ def _exact(part: FoundPart) -> str:
 
 
 def _kind(part: FoundPart) -> str:
-    return GAP.join(filter(None, (part.characteristic, part.size))) if part.unit else part.kind
+    """What a chosen part is made of, or which part is bought."""
+    return GAP.join(filter(None, (part.characteristic, part.size))) if part.unit else f"{part.part}, {part.kind}"
 
 
 def _reasons(part: FoundPart, *, verbose: bool) -> Iterator[str]:
@@ -128,14 +133,17 @@ def _reasons(part: FoundPart, *, verbose: bool) -> Iterator[str]:
         yield f"source: {part.source}"
     if verbose and loads_text(part.stress):
         needs = loads_text(part.required_rating)
-        yield f"sees {loads_text(part.stress)} at worst; " + (f"needs {needs}" if needs else "no rating made is high enough")
+        yield f"sees {loads_text(part.stress)} at worst; " + (
+            f"needs {needs}" if needs else "no rating made is high enough"
+        )
 
 
 def _figures(result: Result) -> Iterator[Line]:
-    rows = [("Figures", "nominal", "low", "high", "")]
+    rows: list[Sequence[str]] = [("Figures", "nominal", "low", "high", "")]
     for figure in result.figures:
         values = (figure.nominal, figure.low, figure.high)
-        rows.append((f"  {figure.name}", *(figure_text(figure.name, value) for value in values), _decibels(figure.name, values)))
+        texts = (figure_text(figure.name, value) for value in values)
+        rows.append((f"  {figure.name}", *texts, _decibels(figure.name, values)))
     head, *lines = aligned(rows, "lrrrl", indent=0)
     yield head, BOLD
     yield from ((line, "") for line in lines)
@@ -159,18 +167,16 @@ def _roundings(result: Result) -> Iterator[Line]:
 
 def _input_capacitance(result: Result) -> Iterator[Line]:
     total = write(sum(result.input_capacitance.values()), "F")
-    return _list(
-        f"Input capacitance, {total} nominal", [f"{name} {write(value, 'F')}" for name, value in result.input_capacitance.items()]
-    )
+    items = [f"{name} {write(value, 'F')}" for name, value in result.input_capacitance.items()]
+    return _list(f"Input capacitance, {total} nominal", items)
 
 
 def _noise(result: Result) -> Iterator[Line]:
     total = next((figure.nominal for figure in result.figures if figure.name == "output_noise"), None)
     summed = "shares of the output power" if total is None else f"{write(total, 'V')} rms out"
     low, high = (write(frequency, "Hz", trim=True) for frequency in result.noise_band)
-    return _list(
-        f"Noise, {summed}, {low} to {high}, nominal", [f"{row.generator} {percent(row.share, 2)}" for row in result.noise]
-    )
+    shares = [f"{row.generator} {percent(row.share, 2)}" for row in result.noise]
+    return _list(f"Noise, {summed}, {low} to {high}, nominal", shares)
 
 
 def _heat(result: Result) -> Iterator[Line]:
@@ -183,7 +189,7 @@ def _heat(result: Result) -> Iterator[Line]:
     head, *lines = aligned(rows, "lrrrll", indent=0)
     yield head, BOLD
     for row, line in zip(result.heat, lines, strict=True):
-        for text in _with_list(line, head, describe(row.at)):
+        for text in _with_list(line, head, describe(row.at, result.limits)):
             yield text, "" if row.ok else BAD
 
 

@@ -75,7 +75,12 @@ def _requirement(row: FoundRequirement) -> dict[str, Any]:
 
 
 def _figure(figure: FoundFigure) -> dict[str, Any]:
-    return {"nominal": number(figure.nominal), "low": number(figure.low), "high": number(figure.high), "unit": figure.unit}
+    return {
+        "nominal": number(figure.nominal),
+        "low": number(figure.low),
+        "high": number(figure.high),
+        "unit": figure.unit,
+    }
 
 
 def _part(part: FoundPart) -> dict[str, Any]:

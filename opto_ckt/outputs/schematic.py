@@ -16,7 +16,7 @@ from opto_ckt.units import write
 
 GRID = 36.0  #: one step of the grid [pt]
 MARGIN = 0.35  #: around the drawing [grid]
-WIDEST = 510.0  #: between the margins of an A4 page [pt]; a wider drawing is scaled down
+WIDEST = 750.0  #: between the margins of an A4 page on its side [pt]; a wider drawing is scaled down
 LINE = 1.1  #: width of all lines [pt]
 MARKER = "written by opto-ckt"
 
@@ -79,7 +79,8 @@ def _strokes(sheet: Sheet) -> ElementTree.Element:
     for shape in sheet.shapes:
         fill = "black" if shape.filled else "none"
         figure.poly(shape.points, closed=shape.closed, lw=LINE, ls="", fill=fill)
-    picture: ElementTree.Element = figure.getsvg()
+    picture = ElementTree.Element("svg", {"xmlns": "http://www.w3.org/2000/svg"})
+    picture.extend(list(figure.getsvg()))
     return picture
 
 
@@ -93,7 +94,6 @@ def _page(frame: Frame, caption: str) -> Frame:
 def _write_texts(picture: ElementTree.Element, sheet: Sheet, page: Frame, caption: str) -> None:
     width, height = (page.right - page.left) * GRID, (page.top - page.bottom) * GRID
     scale = min(1.0, WIDEST / width)
-    picture.attrib.clear()
     picture.set("width", f"{_figure(width * scale)}pt")
     picture.set("height", f"{_figure(height * scale)}pt")
     picture.set("viewBox", " ".join(map(_figure, (page.left * GRID, -page.top * GRID, width, height))))

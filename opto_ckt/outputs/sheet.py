@@ -8,8 +8,8 @@ from itertools import combinations
 from math import hypot
 
 from opto_ckt.outputs.lettering import Frame, Label, TextBox, place_labels, spots_around, spots_beyond, spots_in_corners
-from opto_ckt.outputs.symbols import Segment, Shape, disc, drawn, ground_mark, port_mark, rail_mark, symbol
-from opto_ckt.outputs.wiring import junctions, lies_on, marks, pins, rails, snapped, touched_points, wires
+from opto_ckt.outputs.symbols import Segment, Shape, disc, drawn, ground_mark, port_mark, rail_mark, snapped, symbol
+from opto_ckt.outputs.wiring import junctions, lies_on, marks, pins, rails, touched_points, wires, written
 from opto_ckt.topology import GROUND, Element, OpAmp, Point, Terminal, Topology
 
 Labels = Mapping[str, tuple[str, ...]]
@@ -62,11 +62,11 @@ def lay_out(topology: Topology, labels: Labels) -> Sheet:
     touched = touched_points(topology)
     elements = [e for e in topology if drawn(e) and e.pin_points()]
     symbols = [Drawn(e.ref, symbol(e, touched)) for e in elements]
-    lines = [Drawn(f"wire {one}–{other}", (Shape((one, other)),)) for one, other in wires(topology)]
+    lines = [Drawn(f"wire from {written(one)} to {written(to)}", (Shape((one, to)),)) for one, to in wires(topology)]
     strokes = [segment for one in (*symbols, *lines) for segment in one.segments]
     wanted = [_element_label(e, one, labels) for e, one in zip(elements, symbols, strict=True) if one.shapes]
     rail_nodes = rails(topology)
-    signs = [(f"{node} at {point}", point, node) for point, node in dict.fromkeys(marks(topology))]
+    signs = [(f"{node} at {written(point)}", point, node) for point, node in dict.fromkeys(marks(topology))]
     signs += [(e.ref, snapped(e.at), e.ref) for e in elements if isinstance(e, Terminal)]
     terminals = {e.ref for e in elements if isinstance(e, Terminal)}
     for owner, point, name in signs:
@@ -74,7 +74,7 @@ def lay_out(topology: Topology, labels: Labels) -> Sheet:
         shapes, label = _mark(owner, point, name, leaving, labels, rails=rail_nodes, ring=name in terminals)
         symbols.append(Drawn(owner, shapes))
         wanted += label
-    dots = tuple(Drawn(f"joint at {point}", (disc(point, _DOT, filled=True),)) for point in junctions(topology))
+    dots = tuple(Drawn(f"joint at {written(p)}", (disc(p, _DOT, filled=True),)) for p in junctions(topology))
     obstacles = [segment for one in (*symbols, *lines, *dots) for segment in one.segments]
     placed = place_labels(wanted, obstacles)
     return Sheet(tuple(symbols), tuple(lines), dots, tuple(placed[label.owner] for label in wanted))

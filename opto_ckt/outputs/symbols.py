@@ -100,14 +100,15 @@ def _between(element: Element, to: Point) -> tuple[Shape, ...]:
     (x, y), length = element.at, hypot(to[0] - element.at[0], to[1] - element.at[1])
     along = ((to[0] - x) / length, (to[1] - y) / length)
     across = (along[1], -along[0]) if element.flipped else (-along[1], along[0])
-    half = half_length(element)
-    scale = min(1.0, 0.45 * length / half)
+    half, shapes = half_length(element), outline(element)
+    reach = max(abs(point[0]) for shape in shapes for point in shape.points)
+    scale = min(1.0, 0.45 * length / reach)
 
     def place(point: Point) -> Point:
         u, v = length / 2 + scale * point[0], scale * point[1]
         return (x + u * along[0] + v * across[0], y + u * along[1] + v * across[1])
 
-    body = tuple(shape.mapped(place) for shape in outline(element))
+    body = tuple(shape.mapped(place) for shape in shapes)
     return (line(element.at, place((-half, 0))), line(place((half, 0)), to), *body)
 
 

@@ -73,6 +73,11 @@ def touched_points(topology: Topology) -> frozenset[Point]:
     return frozenset(ends | passed | {point for point, count in counted.items() if count > 1})
 
 
+def written(point: Point) -> str:
+    """A point as messages name it."""
+    return f"({point[0]:g}, {point[1]:g})"
+
+
 def lies_on(point: Point, wire: tuple[Point, Point]) -> bool:
     """Whether a point lies on a straight wire, its ends included."""
     (x, y), (ax, ay), (bx, by) = point, *wire
@@ -148,7 +153,7 @@ def drawing_faults(topology: Topology) -> list[str]:
         if len(nodes) > 1:
             found.append(f"{' and '.join(nodes)} are joined: {', '.join(map(str, members))}")
         if len(members) == 1 and not net.names and not net.wires:
-            found.append(f"{members[0]} at {members[0].point} touches nothing")
+            found.append(f"{members[0]} at {written(members[0].point)} touches nothing")
         for node in sorted({pin.node for pin in members}):
             seen[node].append(", ".join(str(pin) for pin in members if pin.node == node))
     apart = {node: parts for node, parts in seen.items() if len(parts) > 1}
@@ -162,10 +167,10 @@ def _places(topology: Topology) -> Iterator[str]:
         if lacking:
             yield f"{element.ref} has no place for {', '.join(lacking)}"
         if element.to is not None and not _straight(element.at, element.to):
-            yield f"{element.ref} from {element.at} to {element.to} is neither level nor upright"
+            yield f"{element.ref} from {written(element.at)} to {written(element.to)} is neither level nor upright"
     for one, other in topology.wires:
         if not _straight(one, other):
-            yield f"wire from {one} to {other} is neither level nor upright"
+            yield f"wire from {written(one)} to {written(other)} is neither level nor upright"
 
 
 def _straight(one: Point, other: Point) -> bool:
@@ -178,6 +183,6 @@ def _loose_ends(topology: Topology) -> Iterator[str]:
     for index, wire in enumerate(lines):
         for end in wire:
             if end not in held and not any(lies_on(end, other) for other in lines[:index] + lines[index + 1 :]):
-                yield f"wire end at {end} touches nothing"
+                yield f"wire end at {written(end)} touches nothing"
 
 

@@ -86,8 +86,7 @@ class Limits(NamedTuple):
     assumed: bool
 
 
-@dataclass(frozen=True)
-class Assumed:
+class Assumed(NamedTuple):
     """Relative spread taken for a figure that the sheet gives as typical only: -low, +high."""
 
     low: float = 0.0
@@ -101,8 +100,7 @@ class Assumed:
         return Limits(spread.nominal, spread.nominal * (1 - down), spread.nominal * (1 + up), assumed=True)
 
 
-@dataclass(frozen=True)
-class Sheet:
+class Sheet(NamedTuple):
     """The words and symbols by which data sheets call a figure."""
 
     words: str

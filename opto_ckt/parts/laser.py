@@ -63,7 +63,7 @@ class LaserData(Record):
     ]
     slope_temperature: Annotated[
         Coefficient | None,
-        EitherUnit((Unit("K", "200 K"), Unit("1/K", "-0.4 %/K", "any"))),
+        EitherUnit(Unit("K", "200 K"), Unit("1/K", "-0.4 %/K", "any")),
         Sheet("T1, or temperature coefficient of the slope"),
     ] = None
     turn_on_voltage: Annotated[Spread | None, Unit("V", "0.9 V"), Assumed(0.1, 0.1), Sheet("knee of the V-I curve")] = (

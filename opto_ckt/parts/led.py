@@ -44,7 +44,7 @@ class LedData(Record):
     reverse_voltage_max: Annotated[float, Unit("V", "1.8 V"), Sheet("absolute maximum reverse voltage")]
     power_temperature: Annotated[
         Coefficient | None,
-        EitherUnit((Unit("1/K", "-0.5 %/K", "any"), Unit("dB/K", "-0.02 dB/K", "any"))),
+        EitherUnit(Unit("1/K", "-0.5 %/K", "any"), Unit("dB/K", "-0.02 dB/K", "any")),
         Sheet("temperature coefficient of the power"),
     ] = None
     forward_voltage_temperature: Annotated[float, Unit("V/K", "-2 mV/K", "any"), Sheet("dVF/dT")] = 0.0

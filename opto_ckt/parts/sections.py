@@ -5,8 +5,10 @@ from __future__ import annotations
 from collections.abc import Mapping
 from importlib import import_module
 from types import MappingProxyType
+from typing import TYPE_CHECKING
 
-from opto_ckt.parts.record import Record
+if TYPE_CHECKING:
+    from opto_ckt.parts.record import Record
 
 SECTIONS: Mapping[str, tuple[str, tuple[str, ...]]] = MappingProxyType(
     {

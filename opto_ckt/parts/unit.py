@@ -3,18 +3,13 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping
-from dataclasses import dataclass
-from typing import Any, Literal, get_args, get_origin
-
-from pydantic import GetCoreSchemaHandler
-from pydantic_core import CoreSchema, core_schema
+from typing import Any, Literal, NamedTuple
 
 from opto_ckt.parts.figure import Finding, FindingsError, Spread
+from opto_ckt.parts.reader import Alternatives, Reader, refusal, shown, words_in
 from opto_ckt.units import UnitError, read
 
 SIDES = ("min", "typ", "max")
-FROM_FILE: Mapping[str, bool] = {"from_file": True}
-"""Context of a validation that reads a file: there a number without a unit is refused; in Python it is SI."""
 
 Sign = Literal["positive", "not negative", "not positive", "any"]
 ALLOWS: Mapping[Sign, tuple[Callable[[float], bool], str]] = {
@@ -25,50 +20,37 @@ ALLOWS: Mapping[Sign, tuple[Callable[[float], bool], str]] = {
 }
 
 
-@dataclass(frozen=True)
-class Unit:
+class Unit(Reader):
     """Metadata of a field: the unit in which its text is read, an example, the sign that it may have.
 
-    The field is a `Spread`, a `float`, either of them or None, or a figure that may also be a tuple of points.
+    The field is a `Spread` or a `float`; it may be None or a word as well, or a tuple of points.
     """
 
-    text: str
-    example: str = ""
-    sign: Sign = "positive"
+    leaves_points = True
 
-    def __get_pydantic_core_schema__(self, source: Any, handler: GetCoreSchemaHandler) -> CoreSchema:
-        kinds = get_args(source) or (source,)
+    def __init__(self, text: str, example: str = "", sign: Sign = "positive") -> None:
+        self.text, self.example, self.sign = text, example, sign
+
+    def read(self, value: Any, kinds: Alternatives, *, from_file: bool) -> Spread | float | str:
+        """A spread where the field holds one, a number where it does not, or one of the words it may be."""
+        words = words_in(kinds)
+        if isinstance(value, str) and value in words:
+            return value
         reader = self.read_spread if Spread in kinds else self.read_number
-        words = tuple(word for kind in kinds if get_origin(kind) is Literal for word in get_args(kind))
-        points = next((kind for kind in kinds if get_origin(kind) is tuple), None)
-
-        def plain(value: Any, info: core_schema.ValidationInfo) -> Any:
-            if (value is None and type(None) in kinds) or (isinstance(value, str) and value in words):
-                return value
-            try:
-                return reader(value, from_file=bool(info.context and info.context.get("from_file")))
-            except FindingsError as error:
-                if not words:
-                    raise
-                hint = f"; {', '.join(words)} would do too"
-                raise FindingsError([Finding(path, message + hint) for path, message in error.findings]) from None
-
-        if points is None:
-            return core_schema.with_info_plain_validator_function(plain)
-
-        def either(value: Any, validate: Callable[[Any], Any], info: core_schema.ValidationInfo) -> Any:
-            return validate(tuple(value)) if isinstance(value, list | tuple) else plain(value, info)
-
-        return core_schema.with_info_wrap_validator_function(either, handler.generate_schema(points))
+        try:
+            return reader(value, from_file=from_file)
+        except FindingsError as error:
+            if not words:
+                raise
+            hint = f"; {', '.join(words)} would do too"
+            raise FindingsError([Finding(path, message + hint) for path, message in error.findings]) from None
 
     def read_number(self, value: Any, *, from_file: bool) -> float:
         """One SI number from text with its unit, or, outside files, from a number."""
         number = self._read(value, from_file=from_file)
         allows, wanted = ALLOWS[self.sign]
         if not allows(number):
-            raise FindingsError(
-                [Finding((), f"{shown(value)} is not {wanted}; a figure {wanted} is expected{self._such_as}")]
-            )
+            raise refusal(f"{shown(value)} is not {wanted}; a figure {wanted} is expected{self._such_as}")
         return number
 
     def read_spread(self, value: Any, *, from_file: bool) -> Spread:
@@ -113,67 +95,38 @@ class Unit:
         return f", such as '{self.example}'" if self.example else ""
 
     def _read(self, value: Any, *, from_file: bool) -> float:
-        if isinstance(value, bool) or not isinstance(value, str | int | float):
-            raise FindingsError([Finding((), f"expected a figure{self._such_as}, got {shown(value)}")])
+        if isinstance(value, bool) or not isinstance(value, str | int | float) or shown(value) == "a huge number":
+            raise refusal(f"expected a figure{self._such_as}, got {shown(value)}")
         if not from_file and not isinstance(value, str):
             return float(value)
         try:
             return read(value, self.text)
         except UnitError as error:
-            raise FindingsError([Finding((), str(error))]) from None
+            raise refusal(str(error)) from None
 
 
-NAMES: Mapping[type, str] = {bool: "true or false", dict: "a table", list: "a list"}
-
-
-@dataclass(frozen=True)
-class ReadBy:
-    """Metadata of a field that one function reads: `reader(value, from_file=...)`, `FindingsError` where it cannot."""
-
-    reader: Callable[..., Any]
-
-    def __get_pydantic_core_schema__(self, source: Any, handler: GetCoreSchemaHandler) -> CoreSchema:
-        reader = self.reader
-
-        def plain(value: Any, info: core_schema.ValidationInfo) -> Any:
-            return reader(value, from_file=bool(info.context and info.context.get("from_file")))
-
-        return core_schema.with_info_plain_validator_function(plain)
-
-
-@dataclass(frozen=True)
-class Coefficient:
+class Coefficient(NamedTuple):
     """A figure that sheets state in one of several units; `value` is in the SI unit of `unit`."""
 
     value: float
     unit: str
 
 
-@dataclass(frozen=True)
-class EitherUnit:
+class EitherUnit(Reader):
     """Metadata of a `Coefficient`: the units in which its text may stand."""
 
-    units: tuple[Unit, ...]
+    def __init__(self, *units: Unit) -> None:
+        self.units = units
 
-    def __get_pydantic_core_schema__(self, source: Any, handler: GetCoreSchemaHandler) -> CoreSchema:
-        return core_schema.no_info_plain_validator_function(self.read)
-
-    def read(self, value: Any) -> Coefficient | None:
+    def read(self, value: Any, kinds: Alternatives, *, from_file: bool) -> Coefficient:
         """The figure with the unit in which it was stated."""
-        if value is None or isinstance(value, Coefficient):
+        if isinstance(value, Coefficient):
             return value
-        for unit in self.units:
+        for unit in self.units if isinstance(value, str) else ():
             try:
                 read(value, unit.text)
-            except (UnitError, TypeError):
+            except UnitError:
                 continue
             return Coefficient(unit.read_number(value, from_file=True), unit.text)
         expected = " or ".join(f"in {unit.text} such as '{unit.example}'" for unit in self.units)
-        raise FindingsError([Finding((), f"expected a figure {expected}, got {shown(value)}")])
-
-
-def shown(value: Any) -> str:
-    """A value as the reader of a message knows it from the file."""
-    if isinstance(value, str):
-        return f"'{value[:60]}'"
-    return NAMES.get(type(value), str(value)[:60])
+        raise refusal(f"expected a figure {expected}, got {shown(value)}")

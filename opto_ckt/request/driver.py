@@ -10,7 +10,7 @@ from pydantic import Field
 from opto_ckt.parts.diode import DiodeData
 from opto_ckt.parts.laser import LaserData
 from opto_ckt.parts.opamp import OpAmpData
-from opto_ckt.parts.record import Check, Choice, Finding, Spread, Table, Unit
+from opto_ckt.parts.record import Check, Choice, Finding, Spread, Table, Unit, Whole
 from opto_ckt.parts.reference import ReferenceData
 from opto_ckt.parts.transistor import BipolarData, MosfetData
 from opto_ckt.request.receiver import amplifier_supplied
@@ -44,7 +44,7 @@ class DriveSignal(Table):
     bit_rate: Annotated[float | None, Unit("bit/s", "10 Mbit/s")] = None
     extinction_ratio: Annotated[float | None, Unit("W/W", "9 dB")] = None  #: one level over zero level
     mark_density: Annotated[float, Unit("1", "0.5", "not negative")] = 0.5  #: share of ones
-    run_length: Annotated[int, Field(ge=1)] = 72  #: equal bits in a row; 72 is that of scrambled telecom signals
+    run_length: Annotated[int, Whole(1)] = 72  #: equal bits in a row; 72 is that of scrambled telecom signals
     modulation_index: Annotated[float | None, Unit("1", "0.5")] = None  #: peak over standing current, analog
     enable: bool = False  #: whether a logic input switches the source
     startup_time: Annotated[float, Unit("s", "10 ms")] = 10e-3  #: to 95 % of the current after the supply is there
@@ -67,7 +67,7 @@ class DriverConditions(Conditions):
         0.0  #: case of the source to what `temperature` is of
     )
     temperature_of: Literal["air", "case"] = "air"
-    ageing: Ageing = Field(default_factory=Ageing)
+    ageing: Ageing = Field(default_factory=Ageing.model_construct)
 
 
 def _in_reach(source: LaserData, signal: DriveSignal, conditions: DriverConditions) -> Iterator[Finding]:

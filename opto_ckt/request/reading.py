@@ -3,17 +3,15 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping
-from dataclasses import dataclass
 from difflib import get_close_matches
-from typing import Any
+from typing import Any, NamedTuple
 
 from opto_ckt.figures import FIGURES
-from opto_ckt.parts.record import Assumed, Finding, FindingsError, ReadBy, Unit, plain_text, shown
+from opto_ckt.parts.record import Assumed, Finding, FindingsError, ReadBy, Unit, plain_text, refusal, shown
 from opto_ckt.preferred import SERIES, Series
 
 
-@dataclass(frozen=True)
-class Limit:
+class Limit(NamedTuple):
     """What is asked of one figure, in SI; at least one of the two."""
 
     min: float | None = None
@@ -29,7 +27,7 @@ def meant(word: str, words: Any) -> str:
 def collect(value: Any, what: str, read_entry: Callable[[str, Any], Any]) -> dict[str, Any]:
     """Each entry of a table by its own reader, every finding kept under its key."""
     if not isinstance(value, Mapping):
-        raise FindingsError([Finding((), f"expected a table of {what}, got {shown(value)}")])
+        raise refusal(f"expected a table of {what}, got {shown(value)}")
     entries: dict[str, Any] = {}
     findings: list[Finding] = []
     for key, entry in value.items():
@@ -48,14 +46,14 @@ def read_limits(value: Any, *, from_file: bool) -> dict[str, Limit]:
     def read_entry(name: str, entry: Any) -> Limit:
         figure = FIGURES.get(name)
         if figure is None:
-            raise FindingsError([Finding((), f"is no figure; allowed are {', '.join(FIGURES)}{meant(name, FIGURES)}")])
+            raise refusal(f"is no figure; allowed are {', '.join(FIGURES)}{meant(name, FIGURES)}")
         if isinstance(entry, Limit):
             return entry
         example = "{ min = ... }, { max = ... } or both"
         if not isinstance(entry, Mapping):
-            raise FindingsError([Finding((), f"expected {example}, got {shown(entry)}")])
+            raise refusal(f"expected {example}, got {shown(entry)}")
         if not entry:
-            raise FindingsError([Finding((), f"is an empty table; expected {example}")])
+            raise refusal(f"is an empty table; expected {example}")
         wrong = [
             Finding((str(key),), f"is not known here; allowed is {example}")
             for key in entry
@@ -122,7 +120,7 @@ def series_in(unit: Unit) -> ReadBy:
         if isinstance(value, list | tuple):
             drawer = [_in_drawer(unit, position, entry, from_file=from_file) for position, entry in enumerate(value)]
             if not drawer:
-                raise FindingsError([Finding((), "the list is empty; at least one value is needed")])
+                raise refusal("the list is empty; at least one value is needed")
             return tuple(sorted(set(drawer)))
         if not isinstance(value, str) or value not in SERIES:
             hint = meant(value, SERIES) if isinstance(value, str) else ""

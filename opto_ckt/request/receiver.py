@@ -10,7 +10,7 @@ from pydantic import Field
 
 from opto_ckt.parts.opamp import OpAmpData
 from opto_ckt.parts.photodiode import PhotodiodeData, WavelengthError
-from opto_ckt.parts.record import Check, Choice, Finding, FindingsError, ReadBy, Spread, Table, Unit
+from opto_ckt.parts.record import Check, Choice, Finding, FindingsError, ReadBy, Spread, Table, Unit, Whole
 from opto_ckt.request.request import Request
 from opto_ckt.request.tables import CAPACITANCE, RATIO, Band, Conditions, Load
 from opto_ckt.units import percent, write
@@ -108,7 +108,7 @@ class ReceivedSignal(Table):
     ambient: Annotated[Spread | AmbientLight, ReadBy(read_ambient)] = Spread(typ=0.0)
     bit_rate: Annotated[float | None, Unit("bit/s", "10 Mbit/s")] = None
     extinction_ratio: Annotated[float, Unit("W/W", "9 dB")] = 10.0  #: one level over zero level
-    run_length: Annotated[int, Field(ge=1)] = 72  #: equal bits in a row; 72 is that of scrambled telecom signals
+    run_length: Annotated[int, Whole(1)] = 72  #: equal bits in a row; 72 is that of scrambled telecom signals
     mark_density: Annotated[float, Unit("1", "0.5", "not negative")] = 0.5  #: share of ones
     bit_error_ratio: Annotated[float, Unit("1", "1e-9", "not negative")] = 1e-9
     band: Band | None = None
@@ -143,7 +143,7 @@ class BiasSupply(Table):
 class PostFilter(Table):
     """Low-pass behind the amplifier."""
 
-    order: Annotated[int, Field(ge=1, le=4)] = 2
+    order: Annotated[int, Whole(1, 4)] = 2
     cutoff: Annotated[float, Unit("Hz", "7.5 MHz")]
 
 
@@ -218,10 +218,10 @@ class ReceiverRequest(Request):
     detector: Detector
     amplifier: OpAmpData
     signal: ReceivedSignal
-    target: Target = Field(default_factory=Target)
-    load: Load = Field(default_factory=Load)
+    target: Target = Field(default_factory=Target.model_construct)
+    load: Load = Field(default_factory=Load.model_construct)
     bias: BiasSupply | None = None
-    blocks: ReceiverBlocks = Field(default_factory=ReceiverBlocks)
+    blocks: ReceiverBlocks = Field(default_factory=ReceiverBlocks.model_construct)
     conditions: ReceiverConditions
 
     checks = (

@@ -26,7 +26,7 @@ class Request(Table):
     circuit: Text
     parts: Annotated[tuple[str, ...], ReadBy(_read_paths)] = ()
     require: Annotated[Mapping[str, Limit], ReadBy(read_limits)] = Field(default_factory=dict)
-    preferred: Preferred = Field(default_factory=Preferred)
+    preferred: Preferred = Field(default_factory=Preferred.model_construct)
     assumed: Annotated[Mapping[str, Assumed], ReadBy(read_assumed)] = Field(default_factory=dict)
     fixed: Annotated[Mapping[str, float], ReadBy(read_fixed)] = Field(default_factory=dict)
 

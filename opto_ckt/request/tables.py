@@ -3,12 +3,12 @@
 from __future__ import annotations
 
 from collections.abc import Iterator
-from typing import Annotated, Literal
+from typing import Annotated, Any, Literal
 
-from pydantic import AfterValidator, Field
+from pydantic import Field
 
 from opto_ckt.constants import ROOM_TEMPERATURE, ZERO_CELSIUS
-from opto_ckt.parts.record import Check, Finding, Spread, Table, Unit
+from opto_ckt.parts.record import Check, Finding, ReadBy, Spread, Table, Unit
 from opto_ckt.preferred import CHIP_RESISTORS, DIELECTRICS, Series
 from opto_ckt.request.reading import one_of, series_in
 
@@ -16,14 +16,15 @@ RATIO = Unit("1", "5 %", "not negative")
 CAPACITANCE = Unit("F", "0.3 pF", "not negative")
 
 
-def at_room(temperature: Spread) -> Spread:
-    """The spread with 25 °C, or the end nearest to it, as typical value where none is given."""
+def read_temperature(value: Any, *, from_file: bool) -> Spread:
+    """A temperature; its typical value, where none is given, is 25 °C or the end nearest to that."""
+    temperature = Unit("°C", "25 °C", "any").read_spread(value, from_file=from_file)
     if temperature.typ is not None:
         return temperature
     return Spread(temperature.min, min(max(ROOM_TEMPERATURE, temperature.low), temperature.high), temperature.max)
 
 
-Temperature = Annotated[Spread, Unit("°C", "25 °C", "any"), AfterValidator(at_room)]
+Temperature = Annotated[Spread, ReadBy(read_temperature)]
 INDOORS = Spread(min=ZERO_CELSIUS, typ=ROOM_TEMPERATURE, max=ZERO_CELSIUS + 50)  #: 0 °C, 25 °C, 50 °C
 
 
@@ -115,8 +116,8 @@ class PreferredTrimmers(Table):
 class Preferred(Table):
     """What may be fitted."""
 
-    resistors: PreferredResistors = Field(default_factory=PreferredResistors)
-    capacitors: PreferredCapacitors = Field(default_factory=PreferredCapacitors)
-    bypass: PreferredBypass = Field(default_factory=PreferredBypass)
-    inductors: PreferredInductors = Field(default_factory=PreferredInductors)
-    trimmers: PreferredTrimmers = Field(default_factory=PreferredTrimmers)
+    resistors: PreferredResistors = Field(default_factory=PreferredResistors.model_construct)
+    capacitors: PreferredCapacitors = Field(default_factory=PreferredCapacitors.model_construct)
+    bypass: PreferredBypass = Field(default_factory=PreferredBypass.model_construct)
+    inductors: PreferredInductors = Field(default_factory=PreferredInductors.model_construct)
+    trimmers: PreferredTrimmers = Field(default_factory=PreferredTrimmers.model_construct)

@@ -14,7 +14,7 @@ from opto_ckt.analyses.corners import extremes, limits_of, tolerances_of
 from opto_ckt.analyses.network import Network
 from opto_ckt.analyses.network.expansion import expand
 from opto_ckt.constants import ZERO_CELSIUS
-from opto_ckt.limits import Limit, Limits, Tolerance, values_at, varying
+from opto_ckt.limits import Limit, Limits, Tolerance, least_favourable, one_at_a_time, values_at, varying
 from opto_ckt.parts.record import FROM_FILE
 from opto_ckt.request import ReceiverRequest
 from opto_ckt.topology import (
@@ -264,7 +264,8 @@ def test_search_finds_the_extremes_where_interactions_are_milder_than_effects(sl
 
 @settings(max_examples=60, deadline=None)
 @given(st.lists(st.floats(-1, 1), min_size=14, max_size=14))
-def test_extremes_lie_where_their_corners_say_and_no_single_end_beats_them(weights):
+def test_extremes_lie_where_their_corners_say_and_beat_single_and_composed_moves(weights):
+    """Interactions as strong as effects: four rounds may end short of the worst corner, never short of these."""
     limits: Limits = {name: Limit(0.5, -1.0, 1.0) for name in "abcd"}
 
     def evaluate(v):
@@ -275,11 +276,12 @@ def test_extremes_lie_where_their_corners_say_and_no_single_end_beats_them(weigh
     found = extremes(evaluate, limits, {}, ["figure"])["figure"]
     for value, at in ((found.low, found.at_low), (found.high, found.at_high)):
         assert evaluate(values_at(limits, [at], {}))["figure"][0] == pytest.approx(value)
-    for name, level in product("abcd", ("low", "high")):
-        around = [{**found.at_low, name: level}, {**found.at_high, name: level}]
-        low, high = evaluate(values_at(limits, around, {}))["figure"]
-        assert low >= found.low - 1e-8
-        assert high <= found.high + 1e-8
+    alone = one_at_a_time(limits)
+    singles = evaluate(values_at(limits, alone, {}))["figure"]
+    composed = [least_favourable(limits, singles, alone, smallest=smallest) for smallest in (True, False)]
+    seen = [*singles, *evaluate(values_at(limits, composed, {}))["figure"]]
+    assert found.low <= min(seen) + 1e-8
+    assert found.high >= max(seen) - 1e-8
 
 
 def test_a_worst_value_between_the_ends_is_found():
@@ -295,7 +297,7 @@ def test_a_limit_that_has_to_go_back_to_nominal_goes_back():
 
     def evaluate(v):
         a, b, c = (np.asarray(v[name]) for name in "abc")
-        return {"figure": 3 * b + 3 * c - 0.2 * a**2 + (a**2) * (1 - b)}
+        return {"figure": 3 * b + 3 * c + 0.05 * a - 0.2 * a**2 + (a**2) * (1 - b)}
 
     limits: Limits = {"a": Limit(0.0, -1.0, 1.0), "b": Limit(0.0, 0.0, 1.0), "c": Limit(0.0, 0.0, 1.0)}
     found = extremes(evaluate, limits, {}, ["figure"])["figure"]
@@ -303,14 +305,14 @@ def test_a_limit_that_has_to_go_back_to_nominal_goes_back():
 
 
 def test_a_limit_that_matters_only_at_the_corner_is_found_there():
-    """While `b` and `c` are alike, `d` makes no difference."""
+    """While `b` and `c` are alike, `d` to `f` make no difference."""
 
     def evaluate(v):
-        return {"figure": v["b"] - v["c"] + v["d"] * (v["b"] - v["c"])}
+        return {"figure": (v["b"] - v["c"]) * (4 - v["d"] + 2 * v["e"] - v["f"])}
 
-    limits: Limits = {name: Limit(0.5, -1.0, 1.0) for name in "abcd"}
+    limits: Limits = {name: Limit(0.5, -1.0, 1.0) for name in "abcdef"}
     found = extremes(evaluate, limits, {}, ["figure"])["figure"]
-    assert (found.low, found.at_low) == (-4.0, {"b": "low", "c": "high", "d": "high"})
+    assert (found.low, found.at_low) == (-16.0, {"b": "low", "c": "high", "d": "low", "e": "high", "f": "low"})
 
 
 def test_a_figure_flat_around_nominal_is_found_on_the_corners_of_others():
@@ -325,6 +327,17 @@ def test_a_figure_flat_around_nominal_is_found_on_the_corners_of_others():
     assert (found.low, found.high) == (0.0, 1.5)
     assert found.at_high == {"a": "low", "b": "low", "c": "low"}
     assert found.at_low == {}
+
+
+def test_of_a_figure_flat_around_nominal_the_weightiest_setting_at_its_corner_comes_first():
+    def evaluate(v):
+        damping = v["a"] + 3 * v["b"] + 2 * v["c"]
+        return {"damping": damping, "overshoot": np.maximum(-3.2 - damping, 0.0) * (2 - v["d"])}
+
+    limits: Limits = {name: Limit(0.0, -1.0, 1.0) for name in "abcde"}
+    found = extremes(evaluate, limits, {}, ["overshoot", "damping"])["overshoot"]
+    assert found.high == pytest.approx(8.4)
+    assert list(found.at_high.items()) == [("b", "low"), ("c", "low"), ("a", "low"), ("d", "low")]
 
 
 def test_an_undefined_figure_is_the_worst_in_both_directions():

@@ -1,5 +1,6 @@
 from __future__ import annotations
 
+from dataclasses import replace
 from math import atan, degrees, pi, sqrt
 
 import numpy as np
@@ -9,7 +10,7 @@ from hypothesis import strategies as st
 from scipy.optimize import brentq
 
 from opto_ckt.analyses import noise, response, stability
-from opto_ckt.analyses.network import Network
+from opto_ckt.analyses.network import Network, Primitive
 from tests.analyses.networks import RECEIVER, loop_of_poles, low_pass, receiver, scattered, single_pole_receiver
 
 
@@ -171,6 +172,18 @@ def test_integrator_has_infinite_return_ratio_at_dc():
     assert evaluation.loop_denominator is not None
     assert evaluation.loop_denominator[0, 0] == 0
     assert evaluation.stable.all()
+
+
+def test_margin_of_dead_values_and_of_instability_outside_the_loop():
+    expansion = loop_of_poles(2)
+    runaway = Primitive("G", "runaway", ("stage2", "0", "stage2", "0"), lambda v: -v["feedback"])
+    spoilt = replace(expansion, primitives=(*expansion.primitives, runaway))
+    values = {"gain": np.array([0.01, 0.01, np.nan]), "feedback": np.array([0.0, 1.5, 0.0])}
+    evaluation = Network(spoilt).evaluate(values)
+    assert evaluation.stable.tolist() == [True, False, False]
+    margin = stability.phase_margin(evaluation)
+    assert margin[:2].tolist() == [np.inf, -180.0]
+    assert np.isnan(margin[2])
 
 
 def test_network_without_loop_has_no_margin():

@@ -2,11 +2,17 @@
 
 from __future__ import annotations
 
+import re
 from pathlib import Path
 
 from opto_ckt.design.reading import ReadDesign, read_request, read_text
 from opto_ckt.errors import InputError
 from opto_ckt.request import LaserDriverRequest, ReceiverRequest, Request
+
+JARGON = re.compile(
+    r"Input should|Field required|Extra inputs|validation error|pydantic|type=|Value error|NoneType|dict\b"
+)
+"""Words of the machinery that no message may hold."""
 
 CIRCUITS: dict[str, type[Request]] = {"tia": ReceiverRequest, "laser-current": LaserDriverRequest}
 

@@ -71,6 +71,13 @@ def _(element: Resistor) -> Parts:
     )
 
 
+@_signal.register
+def _(element: Resistor) -> tuple[tuple[str, str], Value]:
+    """A voltage in series with the resistor, raising its second end."""
+    resistance = _named(element.ref)
+    return (element.a, element.b), lambda v: 1 / resistance(v)
+
+
 @_expand.register
 def _(element: Capacitor) -> Parts:
     return (Primitive("C", element.ref, (element.a, element.b), _named(element.ref)),), ()
@@ -78,7 +85,16 @@ def _(element: Capacitor) -> Parts:
 
 @_expand.register
 def _(element: Inductor) -> Parts:
-    return (Primitive("L", element.ref, (element.a, element.b), _named(element.ref)),), ()
+    """Inductance in series with the resistance of its winding."""
+    winding = f"{element.ref}.winding"
+    resistance = element.value_name("resistance")
+    return (
+        (
+            Primitive("L", element.ref, (element.a, winding), _named(element.ref)),
+            _own("R", element, "resistance", (winding, element.b)),
+        ),
+        (_thermal(f"{element.ref} winding", (winding, element.b), _named(resistance)),),
+    )
 
 
 @_expand.register

@@ -43,7 +43,8 @@ def horner(coefficients: Array, at: Any) -> Any:
     """Value of a polynomial at real or complex points that broadcast against the lanes."""
     value = coefficients[-1] + np.zeros_like(at)
     for row in coefficients[-2::-1]:
-        value = value * at + row
+        value *= at
+        value += row
     return value
 
 

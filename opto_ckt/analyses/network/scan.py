@@ -11,6 +11,7 @@ from numpy.typing import NDArray
 from opto_ckt.analyses.network.lanes import EVERY_LANE, Array, Index, Lanes
 
 POINTS_A_DECADE = 10
+MARGIN = 2.0  #: how far past the extent of the roots the scan goes, itself a factor of 2 or more past the roots
 LOWEST, HIGHEST = 1e-6, 1e13
 """Frequencies past which a network of lumped parts means nothing. [Hz]"""
 
@@ -24,8 +25,8 @@ Derivative = Callable[[Array, Lanes], tuple[Array, Array]]
 
 def scan_points(extent: tuple[float, float], frequency_scale: float) -> Array:
     """Squares x of scaled ω, evenly spaced in their logarithm, from below the lowest root to above the last."""
-    low = max(extent[0] / 5, 2 * pi * LOWEST / frequency_scale)
-    high = max(min(extent[1] * 5, 2 * pi * HIGHEST / frequency_scale), 10 * low)
+    low = max(extent[0] / MARGIN, 2 * pi * LOWEST / frequency_scale)
+    high = max(min(extent[1] * MARGIN, 2 * pi * HIGHEST / frequency_scale), 10 * low)
     count = int((log10(high) - log10(low)) * POINTS_A_DECADE) + 2
     return np.logspace(2 * log10(low), 2 * log10(high), count)
 

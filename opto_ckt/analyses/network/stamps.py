@@ -51,7 +51,7 @@ def merge_parallel(stamps: Iterable[Stamp]) -> list[Stamp]:
 
 def _resistor(primitive: Primitive, program: Program) -> tuple[Stamp, ...]:
     ends = _ends(primitive)
-    return (Stamp((1.0 / _value(primitive, program) / program.input(CONDUCTANCE_SCALE),), ends, ends),)
+    return (Stamp((1.0 / program.input(CONDUCTANCE_SCALE) / _value(primitive, program),), ends, ends),)
 
 
 def _capacitor(primitive: Primitive, program: Program) -> tuple[Stamp, ...]:
@@ -67,7 +67,7 @@ def _inductor(primitive: Primitive, program: Program) -> tuple[Stamp, ...]:
 
 
 def _transconductance(primitive: Primitive, program: Program) -> tuple[Stamp, ...]:
-    weight = _value(primitive, program) / program.input(CONDUCTANCE_SCALE)
+    weight = _value(primitive, program) * (1.0 / program.input(CONDUCTANCE_SCALE))
     return (Stamp((weight,), _ends(primitive), _control(primitive)),)
 
 

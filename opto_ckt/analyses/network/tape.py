@@ -8,10 +8,12 @@ from typing import Any
 import numpy as np
 
 from opto_ckt.analyses.network.lanes import Array
-from opto_ckt.analyses.network.program import Node, Operation, Program
+from opto_ckt.analyses.network.program import ADD, DIVIDE, MULTIPLY, SUBTRACT, Node, Operation, Program
 
 BLOCK = 8192
 """Lanes that run through a program at a time, so that its registers stay in the cache."""
+
+UFUNCS: dict[Operation, np.ufunc] = {ADD: np.add, SUBTRACT: np.subtract, MULTIPLY: np.multiply, DIVIDE: np.divide}
 
 
 class Tape:
@@ -69,6 +71,7 @@ class Tape:
         Where a division by zero or an overflow occurs the table holds inf or nan.
         """
         table = np.empty((len(self._outputs), lanes))
+        scratch = np.empty((len(self._start), min(lanes, BLOCK))) if lanes > 1 else None
         with np.errstate(all="ignore"):
             for start in range(0, lanes, BLOCK):
                 part = slice(start, start + BLOCK)
@@ -77,12 +80,31 @@ class Tape:
                     for name, _ in self.inputs
                 }
                 try:
-                    columns = self.run(within)
+                    self._fill(table[:, part], within, scratch)
                 except ArithmeticError:  # floats raise where arrays give inf or nan
-                    columns = self.run({name: np.atleast_1d(value) for name, value in within.items()})
-                for row, column in enumerate(columns):
-                    table[row, part] = column
+                    self._fill(table[:, part], {name: np.atleast_1d(value) for name, value in within.items()}, scratch)
         return table
+
+    def _fill(self, table: Array, values: Mapping[str, Any], scratch: Array | None) -> None:
+        """Compute one block into its table, in place as far as possible."""
+        if scratch is None:
+            table[:, 0] = [float(np.squeeze(value)) for value in self.run(values)]
+            return
+        rows, places = list(table), list(scratch[:, : table.shape[1]])
+        for row, register in zip(rows, self._outputs, strict=True):
+            places[register] = row
+        registers = self._start.copy()
+        for name, register in self.inputs:
+            registers[register] = values[name]
+        for operation, target, left, right in self._steps:
+            first, second = registers[left], registers[right]
+            if type(first) is np.ndarray or type(second) is np.ndarray:
+                registers[target] = UFUNCS[operation](first, second, places[target])
+            else:
+                registers[target] = operation(first, second)
+        for row, register in zip(rows, self._outputs, strict=True):
+            if registers[register] is not row:
+                row[:] = registers[register]
 
     def run_rows(self, rows: Array) -> Array:
         """The same for inputs that are named by the number of their row."""

@@ -19,7 +19,7 @@ import numpy as np
 
 from opto_ckt.analyses.network import Evaluation
 from opto_ckt.circuit import Bench, Circuit, Fitted, Heat, OnDemand, Stress
-from opto_ckt.circuits.receivers import tia_faults, tia_sizing
+from opto_ckt.circuits.receivers import tia_faults, tia_sizing, tia_window
 from opto_ckt.circuits.receivers.detector import (
     POLARITY,
     detected,
@@ -345,4 +345,5 @@ CIRCUIT = Circuit(
     ),
     formulas=tia_sizing.FORMULAS,
     starter=STARTER,
+    input_capacitance=tia_window.input_capacitance,
 )

@@ -1,0 +1,36 @@
+"""``opto-ckt formula``: the symbolic model."""
+
+from __future__ import annotations
+
+import click
+
+from opto_ckt.cli import options, streams
+
+
+def circuits() -> list[str]:
+    """Names of the registry."""
+    from opto_ckt.circuits import CIRCUITS
+
+    return list(CIRCUITS)
+
+
+@click.command("formula")
+@options.word("circuit", "circuit", circuits)
+@click.option("--latex", "as_latex", is_flag=True, help="Write LaTeX instead of plain text.")
+@options.quiet
+def command(circuit: str, as_latex: bool, quiet: bool) -> int:
+    """Print transfer function, loop gain and every sizing relation of CIRCUIT with its source.
+
+    The network is that of the design that `opto-ckt start CIRCUIT` writes.
+    """
+    streams.progress("deriving ...", quiet=quiet)
+    from opto_ckt.circuits import load
+    from opto_ckt.cli.designs import read_starter
+    from opto_ckt.outputs.formula_page import formula_page
+
+    chosen = load(circuit)
+    topology = chosen.topology(read_starter(chosen).request).with_blocks({})
+    page = formula_page(f"{chosen.name}: {chosen.title}", topology, chosen.formulas, as_latex=as_latex)
+    streams.progress("", quiet=quiet)
+    streams.put(page)
+    return 0
