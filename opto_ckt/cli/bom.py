@@ -44,7 +44,7 @@ def command(
     if out is None:
         streams.put(cells if as_csv else sheet)
     else:
-        from opto_ckt.cli.files import write
+        from opto_ckt.cli.writing import write
 
         stem = "-".join(dict.fromkeys(result.head.stem for result in results))
         write(out, {f"{stem}.bom.txt": sheet, f"{stem}.bom.csv": cells}, force=force, quiet=quiet)

@@ -2,13 +2,9 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
-
-from opto_ckt.cli.streams import talk
 from opto_ckt.outputs.bom import bill_of_materials
 from opto_ckt.outputs.bom_csv import bom_csv
 from opto_ckt.outputs.bom_sheet import bom_sheet
-from opto_ckt.outputs.files import write_files
 from opto_ckt.outputs.result_json import result_json
 from opto_ckt.outputs.schematic import schematic
 from opto_ckt.outputs.spice import decks
@@ -26,9 +22,3 @@ def every_file(result: Result) -> dict[str, str]:
         f"{stem}.svg": schematic(result),
         f"{stem}.json": result_json(result),
     }
-
-
-def write(folder: str, texts: Mapping[str, str], *, force: bool, quiet: bool) -> None:
-    """Write them all or none, and say which."""
-    write_files(folder, texts, force=force)
-    talk(f"wrote {', '.join(texts)} into {folder}", quiet=quiet)

@@ -30,7 +30,7 @@ def command(design: str, analysis: str | None, out: str | None, force: bool, qui
     if out is None:
         streams.put("".join(found.values()))
     else:
-        from opto_ckt.cli.files import write
+        from opto_ckt.cli.writing import write
 
         write(out, found, force=force, quiet=quiet)
     return ended([result], lambda text: streams.talk(text, quiet=quiet))

@@ -22,7 +22,7 @@ def command(design: str, out: str | None, force: bool, quiet: bool) -> int:
     if out is None:
         streams.put(drawing)
     else:
-        from opto_ckt.cli.files import write
+        from opto_ckt.cli.writing import write
 
         write(out, {f"{result.head.stem}.svg": drawing}, force=force, quiet=quiet)
     return ended([result], lambda text: streams.talk(text, quiet=quiet))

@@ -25,7 +25,8 @@ def command(
 
     result = sized(design)
     if out is not None:
-        from opto_ckt.cli.files import every_file, write
+        from opto_ckt.cli.files import every_file
+        from opto_ckt.cli.writing import write
 
         write(out, every_file(result), force=force, quiet=quiet)
     if as_json:

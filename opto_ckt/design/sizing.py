@@ -9,6 +9,7 @@ from typing import Literal
 
 import numpy as np
 
+from opto_ckt.analyses import noise, response
 from opto_ckt.analyses.corners import Extreme, extremes, tolerances_of
 from opto_ckt.analyses.faults import run_faults
 from opto_ckt.analyses.thermal import worst_heat
@@ -28,6 +29,7 @@ from opto_ckt.limits import (
     Level,
     Limits,
     Requirement,
+    Values,
     distinct,
     one_at_a_time,
     values_at,
@@ -165,17 +167,22 @@ def _scenes(sized: Sized, rows: Sequence[FoundRequirement], found: Mapping[str, 
     for name, corner in [("nominal", NOMINAL), *wanted]:
         named.setdefault(frozenset(corner.items()), (name, corner))
     chosen = list(named.values())[:3]
-    values = values_at(sized.limits, [corner for _, corner in chosen], sized.choice.values)
-    biased = sized.model.biased(values)
-    figures = sized.model.circuit.figures(biased, sized.model.evaluation(biased), sized.model.request)
+    model = sized.model
+    biased = model.biased(values_at(sized.limits, [corner for _, corner in chosen], sized.choice.values))
+    evaluation = model.evaluation(biased)
+    frequency = model.circuit.noise_frequency(model.request)
+    density = np.sqrt(noise.output_density(evaluation, frequency))
+    expected = {
+        **model.circuit.figures(biased, evaluation, model.request),
+        "output_noise_density": density,
+        "signal_noise_density": density / np.abs(response.transfer_at(evaluation, frequency)),
+    }
+
+    def lane(values: Values, index: int) -> dict[str, float]:
+        return {key: float(np.broadcast_to(value, len(chosen))[index]) for key, value in values.items()}
+
     return tuple(
-        Scene(
-            name,
-            corner,
-            {key: float(np.broadcast_to(value, len(chosen))[lane]) for key, value in biased.items()},
-            {key: float(np.broadcast_to(value, len(chosen))[lane]) for key, value in figures.items()},
-        )
-        for lane, (name, corner) in enumerate(chosen)
+        Scene(name, corner, lane(biased, index), lane(expected, index)) for index, (name, corner) in enumerate(chosen)
     )
 
 

@@ -174,6 +174,33 @@ def rise_time(*, bandwidth: Real) -> Real:
     return rise
 
 
+@source("derived: one pole, 10 % to 90 %; H. Kolimbiris, Fiber Optics Communications, Ex. 3.3, rounds it to 0.35/t")
+def bandwidth_of_rise_time(*, rise_time: Real) -> Real:
+    r"""Half-power frequency of one dominant pole from its rise time.
+
+    .. math:: f_{3dB} = \frac{\ln 9}{2 \pi t_r}
+
+    Parameters
+    ----------
+    rise_time : t_r, 10 % to 90 %. [s]
+
+    Returns
+    -------
+    f_3dB. [Hz]
+
+    Notes
+    -----
+    One pole.
+
+    Examples
+    --------
+    >>> print(f"{bandwidth_of_rise_time(rise_time=10e-9) / 1e6:.0f} MHz")
+    35 MHz
+    """
+    bandwidth: Real = log(9.0) / (2 * pi * rise_time)
+    return bandwidth
+
+
 @source("J. Wilson & J. F. B. Hawkes, Optoelectronics, Ex. 7.8")
 def diffusion_time(*, depth: Real, diffusivity: Real) -> Real:
     r"""Time that carriers from undepleted material take to diffuse in: the slow tail of a pulse.

@@ -123,7 +123,9 @@ def _exact(part: FoundPart) -> str:
 
 def _kind(part: FoundPart) -> str:
     """What a chosen part is made of, or which part is bought."""
-    return GAP.join(filter(None, (part.characteristic, part.size))) if part.unit else f"{part.part}, {part.kind}"
+    if part.unit:
+        return GAP.join(filter(None, (part.characteristic, part.size)))
+    return part.part if part.part.startswith(part.kind) else f"{part.part}, {part.kind}"
 
 
 def _reasons(part: FoundPart, *, verbose: bool) -> Iterator[str]:

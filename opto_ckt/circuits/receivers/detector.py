@@ -4,7 +4,8 @@ from __future__ import annotations
 
 import numpy as np
 
-from opto_ckt.constants import ROOM_TEMPERATURE
+from opto_ckt.constants import BOLTZMANN, ELEMENTARY_CHARGE, ROOM_TEMPERATURE
+from opto_ckt.formulas.transit import bandwidth_of_rise_time
 from opto_ckt.limits import Lanes, Limit, Values
 from opto_ckt.parts.photodiode import PhotodiodeData
 from opto_ckt.parts.record import Spread, facts
@@ -24,12 +25,19 @@ def detected(values: Values, request: ReceiverRequest, detector: str = "D1") -> 
         f"{detector}.capacitance": data.capacitance_at(
             values["detector.reverse_bias"], values.get(f"{detector}.capacitance")
         ),
-        f"{detector}.dark_current": data.dark_current_at(temperature, values[f"{detector}.dark_current"]),
+        f"{detector}.dark_current": data.dark_current_at(temperature, values[f"{detector}.dark_current"])
+        * _saturation(values["detector.reverse_bias"], temperature),
         f"{detector}.shunt_resistance": values[f"{detector}.shunt_resistance"]
         * 2.0 ** (-(np.asarray(temperature) - ROOM_TEMPERATURE) / data.dark_current_doubling),
         f"{detector}.signal_current": values[f"{detector}.responsivity"] * request.signal.power.nominal,
         f"{detector}.ambient_current": values["signal.ambient"],
     }
+
+
+def _saturation(reverse_bias: float | Lanes, temperature: float | Lanes) -> Lanes:
+    """Share of the dark current that flows at a reverse bias, 1 - exp(-V q/kT): none without bias."""
+    bias = np.maximum(np.asarray(reverse_bias, dtype=float), 0.0)
+    return np.asarray(-np.expm1(-bias * ELEMENTARY_CHARGE / (BOLTZMANN * np.asarray(temperature))))
 
 
 def level_factor(request: ReceiverRequest) -> float:
@@ -48,7 +56,13 @@ def detector_limits(request: ReceiverRequest, detector: str = "D1") -> dict[str,
         return Limit(*request.assumed.get(figure, spreads[figure].assumed).limits(spread))
 
     data = request.detector
+    speed = {}
+    if data.rise_time is not None:
+        rise = limit("rise_time", data.rise_time)
+        ends = (bandwidth_of_rise_time(rise_time=time) for time in (rise.nominal, rise.high, rise.low))
+        speed = {f"{detector}.transit_frequency": Limit(*map(float, ends), assumed=rise.assumed)}
     return {
+        **speed,
         f"{detector}.responsivity": limit("responsivity", data.responsivity_spread(request.signal.wavelength)),
         f"{detector}.capacitance": limit("capacitance", data.capacitance_figure),
     }

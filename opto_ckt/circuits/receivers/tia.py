@@ -192,12 +192,27 @@ def bias(values: Values, request: ReceiverRequest) -> dict[str, float | Lanes]:
         level = divided_voltage(voltage=values["supply.positive"], upper=values["R2"], lower=values["R3"])
     far_end = values.get(f"supply.{_bias_node(request)}", values["supply.bias"])
     reverse_bias = POLARITY[request.detector.output] * (level - far_end)
-    biased = {**values, "input_level": level, "supply.bias": far_end, "detector.reverse_bias": reverse_bias}
-    return {
-        **biased,
+    biased: dict[str, float | Lanes] = {**values, "input_level": level, "supply.bias": far_end, "detector.reverse_bias": reverse_bias}
+    offset = values["U1.offset_voltage"]
+    drift = values.get("U1.offset_drift", 0.0) * np.abs(values["temperature"] - ROOM_TEMPERATURE)
+    biased |= {
         **detected(biased, request),
         "U1.bias_current": _bias_current(values, request),
+        "U1.offset": offset + np.copysign(drift, offset),
     }
+    return {**biased, **_levels(biased, request)}
+
+
+def _levels(values: Values, request: ReceiverRequest) -> dict[str, float | Lanes]:
+    """Node voltages at the average light: the currents into the summing node balance, at finite open-loop gain."""
+    sign = POLARITY[request.detector.output]
+    light = values["D1.responsivity"] * values["signal.power"] + values["signal.ambient"] + values["D1.dark_current"]
+    shunt, level = 1 / values["D1.shunt_resistance"], values["input_level"]
+    inner = 1 / values["R1"] + 1 / values["RB"] + shunt
+    wanted = level + values["U1.offset"]
+    drawn = wanted * inner - level * shunt + values["U1.bias_current"] + sign * light
+    output = drawn / (1 / values["R1"] + inner / values["U1.open_loop_gain"])
+    return {"node.amp": output, "node.sum": wanted - output / values["U1.open_loop_gain"]}
 
 
 def _bias_current(values: Values, request: ReceiverRequest) -> float | Lanes:
@@ -262,9 +277,7 @@ def _dark(values: Values, request: ReceiverRequest) -> dict[str, Lanes]:
             )
         )
 
-    offset = values["U1.offset_voltage"]
-    drift = values.get("U1.offset_drift", 0.0) * np.abs(values["temperature"] - ROOM_TEMPERATURE)
-    offset = offset + np.copysign(drift, offset)
+    offset = values["U1.offset"]
     return {
         "offset": error(np.abs(offset), values["D1.dark_current"]),
         "output": np.asarray(values["input_level"] + sign * dark + np.copysign(1, offset) * error(np.abs(offset), 0.0)),

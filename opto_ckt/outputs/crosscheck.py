@@ -1,0 +1,176 @@
+"""Prediction beside simulation: every deck of every scene, run in an independent simulator."""
+
+from __future__ import annotations
+
+import json
+from collections.abc import Iterator, Sequence
+from dataclasses import asdict, dataclass
+
+import numpy as np
+
+from opto_ckt.analyses import noise, response, stability
+from opto_ckt.analyses.network import Evaluation, Network
+from opto_ckt.analyses.network.expansion import expand
+from opto_ckt.outputs.readings import falls_to, integrated, phase_margin_of, rise_time_of
+from opto_ckt.outputs.simulators import Vectors, run
+from opto_ckt.outputs.spice import deck_of, is_linear, levels, output_node
+from opto_ckt.result import Result, Scene
+from opto_ckt.units import percent, write
+
+SPOTS = (1e-3, 0.1, 0.5, 1.0, 2.0)  #: where gain is compared, as multiples of the bandwidth
+NOISE_SPOTS = (0.01, 0.1, 1.0)  #: where density is compared, as multiples of the top of the noise band
+LEAST_LEVEL = 0.05  #: levels below it are compared against it [V]
+
+
+@dataclass(frozen=True)
+class Bounds:
+    """How far prediction and simulation may lie apart."""
+
+    gain: float  #: [dB]
+    density: float
+    integrated: float
+    bandwidth: float
+    phase_margin: float  #: [°]
+    level: float
+    rise_time: float
+
+
+LINEAR = Bounds(1e-4, 1e-4, 1e-3, 1e-3, 0.05, 5e-3, 1e-2)  #: decks of linear elements
+DEVICES = Bounds(1e-2, 5e-3, 5e-3, 5e-3, 0.05, 5e-3, 1e-2)  #: decks with device models
+
+
+@dataclass(frozen=True)
+class Row:
+    """One quantity of one scene."""
+
+    scene: str
+    quantity: str
+    predicted: float
+    simulated: float
+    unit: str
+    deviation: float  #: relative, or in the unit of the bound
+    bound: float
+    bound_unit: str  #: "" for a share, dB or °
+
+    @property
+    def ok(self) -> bool:
+        """Whether the two agree within the bound."""
+        return bool(abs(self.deviation) <= self.bound)
+
+
+def crosscheck(result: Result, engine: str) -> list[Row]:
+    """Run the decks of nominal and of two corners and compare.
+
+    Raises
+    ------
+    OutsideProgramError : the engine is missing or fails.
+    """
+    network = Network(expand(result.topology))
+    bounds = LINEAR if is_linear(result.topology) else DEVICES
+    rows: list[Row] = []
+    for scene in result.scenes:
+        evaluation = network.evaluate(scene.values)
+        runs = {kind: run(deck_of(result, scene, kind), engine) for kind in ("ac", "noise", "step", "loop")}
+        rows += _levels(scene, runs["ac"]["op"], bounds)
+        rows += _response(result, scene, evaluation, runs["ac"]["ac"], bounds)
+        rows += _noise(result, scene, evaluation, runs["noise"]["noise"], bounds)
+        rows += _loop(scene, evaluation, runs["loop"]["ac"], bounds)
+        rows += _step(result, scene, evaluation, runs["step"]["tran"], bounds)
+    return rows
+
+
+def _levels(scene: Scene, plot: Vectors, bounds: Bounds) -> Iterator[Row]:
+    for node, predicted in levels(scene):
+        if f"v({node})" in plot:
+            simulated = float(plot[f"v({node})"][0])
+            share = (simulated - predicted) / max(abs(predicted), LEAST_LEVEL)
+            yield Row(scene.name, f"level of {node}", predicted, simulated, "V", share, bounds.level, "")
+
+
+def _response(result: Result, scene: Scene, evaluation: Evaluation, plot: Vectors, bounds: Bounds) -> Iterator[Row]:
+    frequency, answer = plot["frequency"], np.abs(plot[f"v({output_node(result.topology)})"])
+    corner = float(response.bandwidth(evaluation)[0])
+    middle = corner if np.isfinite(corner) else float(np.sqrt(frequency[0] * frequency[-1]))
+    for index in _nearest(frequency, [middle * spot for spot in SPOTS]):
+        predicted = abs(complex(response.transfer_at(evaluation, frequency[index])[0]))
+        apart = 20 * float(np.log10(answer[index] / predicted))
+        at = write(float(frequency[index]), "Hz")
+        yield Row(scene.name, f"gain at {at}", predicted, float(answer[index]), "1", apart, bounds.gain, "dB")
+    if np.isfinite(corner):
+        simulated = falls_to(frequency, answer, float(answer[0]) * 0.5**0.5)
+        yield _share(scene, "-3 dB frequency", corner, simulated, "Hz", bounds.bandwidth)
+
+
+def _noise(result: Result, scene: Scene, evaluation: Evaluation, plot: Vectors, bounds: Bounds) -> Iterator[Row]:
+    frequency, density = plot["frequency"], plot["onoise"]
+    top = result.noise_band[1]
+    spots = _nearest(frequency, [result.noise_frequency, *(top * spot for spot in NOISE_SPOTS)])
+    for index in spots:
+        predicted = float(np.sqrt(noise.output_density(evaluation, frequency[index])[0]))
+        at = write(float(frequency[index]), "Hz")
+        yield _share(scene, f"output noise at {at}", predicted, float(density[index]), "V/√Hz", bounds.density)
+    referred = float(np.sqrt(noise.signal_density(evaluation, frequency[spots[0]])[0]))
+    unit = "W/√Hz" if "signal.power" in scene.values else "V/√Hz"
+    name = f"input noise at {write(float(frequency[spots[0]]), 'Hz')}"
+    yield _share(scene, name, referred, float(plot["inoise"][spots[0]]), unit, bounds.density)
+    total = float(noise.output_rms(evaluation, result.noise_band)[0])
+    simulated = integrated(frequency, density, *result.noise_band)
+    yield _share(scene, "output noise in the band", total, simulated, "V", bounds.integrated)
+
+
+def _loop(scene: Scene, evaluation: Evaluation, plot: Vectors, bounds: Bounds) -> Iterator[Row]:
+    predicted = float(stability.phase_margin(evaluation)[0])
+    if np.isfinite(predicted):
+        crossing, margin = phase_margin_of(plot["frequency"], plot["v(ret)"])
+        crossover = float(stability.crossover_frequency(evaluation)[0])
+        yield _share(scene, "loop crossover", crossover, crossing, "Hz", bounds.bandwidth)
+        apart = margin - predicted
+        yield Row(scene.name, "phase margin", predicted, margin, "°", apart, bounds.phase_margin, "°")
+
+
+def _step(result: Result, scene: Scene, evaluation: Evaluation, plot: Vectors, bounds: Bounds) -> Iterator[Row]:
+    predicted = float(response.rise_time(evaluation)[0])
+    if np.isfinite(predicted):
+        simulated = rise_time_of(plot["time"], plot[f"v({output_node(result.topology)})"])
+        yield _share(scene, "rise time", predicted, simulated, "s", bounds.rise_time)
+
+
+def _share(scene: Scene, quantity: str, predicted: float, simulated: float, unit: str, bound: float) -> Row:
+    return Row(scene.name, quantity, predicted, simulated, unit, simulated / predicted - 1, bound, "")
+
+
+def _nearest(frequency: Vectors | np.ndarray, wanted: Sequence[float]) -> list[int]:
+    """Indices of the simulated frequencies next to those wanted, each once."""
+    distances = [np.abs(np.log(np.asarray(frequency) / each)) for each in wanted]
+    return list(dict.fromkeys(int(np.argmin(distance)) for distance in distances))
+
+
+def crosscheck_table(rows: Sequence[Row]) -> str:
+    """Aligned table, a block a scene, at most 100 columns."""
+    lines = []
+    for scene in dict.fromkeys(row.scene for row in rows):
+        lines += ["", f"{scene}"] if lines else [scene]
+        lines.append(f"  {'':<28}{'predicted':>16}{'simulated':>16}{'apart':>14}{'bound':>12}")
+        for row in rows:
+            if row.scene == scene:
+                apart, bound = _said(row.deviation, row), _said(row.bound, row)
+                predicted, simulated = _value(row.predicted, row), _value(row.simulated, row)
+                mark = "ok" if row.ok else "APART"
+                lines.append(f"  {row.quantity:<28}{predicted:>16}{simulated:>16}{apart:>14}{bound:>12}  {mark}")
+    apart_rows = sum(not row.ok for row in rows)
+    verdict = "all agree within their bounds" if not apart_rows else f"{apart_rows} apart by more than their bounds"
+    return "\n".join([*lines, "", f"{len(rows)} compared, {verdict}", ""])
+
+
+def _value(value: float, row: Row) -> str:
+    return f"{value:.6g}" if row.unit == "1" else write(value, row.unit, digits=6)
+
+
+def _said(value: float, row: Row) -> str:
+    return f"{value:.2g} {row.bound_unit}" if row.bound_unit else percent(value, digits=2)
+
+
+def to_json(rows: Sequence[Row]) -> str:
+    """The rows as JSON, SI units."""
+    records = [{**asdict(row), "ok": row.ok} for row in rows]
+    return json.dumps({"schema": 1, "rows": records}, ensure_ascii=False, indent=1, allow_nan=False) + "\n"
