@@ -9,7 +9,9 @@ from opto_ckt.cli import options, streams
 
 @click.command("crosscheck")
 @options.design
-@click.option("--engine", type=click.Choice(["ngspice", "neospice"]), help="Simulator; ngspice where it is on the PATH.")
+@click.option(
+    "--engine", type=click.Choice(["ngspice", "neospice"]), help="Simulator; ngspice where it is on the PATH."
+)
 @options.as_json
 @options.quiet
 def command(design: str, engine: str | None, as_json: bool, quiet: bool) -> int:

@@ -101,7 +101,10 @@ def _with_list(line: str, head: str, items: str) -> Iterator[str]:
 
 def _parts(result: Result, columns: int | None, *, verbose: bool) -> Iterator[Line]:
     rows = [("Parts", "", "fitted", "exact", "tolerance", "kind")]
-    rows += [(f"  {part.ref}", part.role, _fitted(part), _exact(part), tolerance_text(part), _kind(part)) for part in result.parts]
+    rows += [
+        (f"  {part.ref}", part.role, _fitted(part), _exact(part), tolerance_text(part), _kind(part))
+        for part in result.parts
+    ]
     head, *lines = aligned(rows, "llrrll", indent=0)
     yield head, BOLD
     for part, line in zip(result.parts, lines, strict=True):

@@ -29,7 +29,9 @@ def test_help_and_usage_errors_import_no_command_and_nothing_heavy(arguments: tu
     assert not {f"opto_ckt.cli.{command}" for command in COMMANDS} & found
 
 
-@pytest.mark.parametrize("arguments", [("size",), ("size", "--tea", "x"), ("start", "tea"), ("formula", "tea"), ("bom", "--help")])
+@pytest.mark.parametrize(
+    "arguments", [("size",), ("size", "--tea", "x"), ("start", "tea"), ("formula", "tea"), ("bom", "--help")]
+)
 def test_usage_errors_of_a_command_import_nothing_heavy(arguments: tuple[str, ...]) -> None:
     assert not modules(*arguments) & HEAVY
 
@@ -49,7 +51,11 @@ def on_terminal(*arguments: str, **env: str) -> str:
     leader, follower = pty.openpty()
     clean = {name: value for name, value in os.environ.items() if name != "NO_COLOR"}
     process = subprocess.Popen(
-        (*PROGRAM, *arguments), stdout=follower, stderr=subprocess.DEVNULL, env={**clean, "TERM": "xterm", **env}, cwd=ROOT
+        (*PROGRAM, *arguments),
+        stdout=follower,
+        stderr=subprocess.DEVNULL,
+        env={**clean, "TERM": "xterm", **env},
+        cwd=ROOT,
     )
     os.close(follower)
     seen = b""
@@ -122,7 +128,9 @@ def fault() -> None:
     raise ZeroDivisionError("by design")
 
 
-def test_a_fault_of_the_program_is_one_plain_sentence(monkeypatch: pytest.MonkeyPatch, capsys: pytest.CaptureFixture[str]) -> None:
+def test_a_fault_of_the_program_is_one_plain_sentence(
+    monkeypatch: pytest.MonkeyPatch, capsys: pytest.CaptureFixture[str]
+) -> None:
     monkeypatch.setattr(program, "prepare", lambda: None)
     monkeypatch.setattr(program.LazyGroup, "get_command", lambda *_: click.Command("size", callback=fault))
     monkeypatch.delenv("OPTO_CKT_DEBUG", raising=False)
@@ -130,7 +138,9 @@ def test_a_fault_of_the_program_is_one_plain_sentence(monkeypatch: pytest.Monkey
         program.main(["size"])
     assert ended.value.code == 70
     said = capsys.readouterr().err
-    assert said == "opto-ckt: fault of this program, not of the design: ZeroDivisionError; OPTO_CKT_DEBUG=1 shows where\n"
+    assert (
+        said == "opto-ckt: fault of this program, not of the design: ZeroDivisionError; OPTO_CKT_DEBUG=1 shows where\n"
+    )
 
 
 def test_where_a_fault_arose_is_shown_on_demand(monkeypatch: pytest.MonkeyPatch) -> None:
@@ -149,10 +159,16 @@ def test_completion_scripts(shell: str) -> None:
 
 
 def completed(*words: str) -> list[str]:
-    typed = {"COMP_WORDS": " ".join(("opto-ckt", *words)), "COMP_CWORD": str(len(words)), "_OPTO_CKT_COMPLETE": "bash_complete"}
+    typed = {
+        "COMP_WORDS": " ".join(("opto-ckt", *words)),
+        "COMP_CWORD": str(len(words)),
+        "_OPTO_CKT_COMPLETE": "bash_complete",
+    }
     # the installed script and the module are one program; completion asks for it by the script's name
     code = "import sys; sys.argv = ['opto-ckt']; from opto_ckt.cli.main import main; main()"
-    found = subprocess.run((sys.executable, "-c", code), capture_output=True, cwd=ROOT, env={**os.environ, **typed}, check=False)
+    found = subprocess.run(
+        (sys.executable, "-c", code), capture_output=True, cwd=ROOT, env={**os.environ, **typed}, check=False
+    )
     return [line.split(",")[1] for line in found.stdout.decode().splitlines()]
 
 

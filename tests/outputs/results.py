@@ -80,7 +80,10 @@ def result(**changes: Any) -> Result:
         parts=(R1, C1, U1),
         noise=(FoundNoise("R1 thermal", 1.6e-4, 0.6), FoundNoise("U1 voltage", 1.3e-4, 0.4)),
         heat=(FoundHeat("U1", 0.12, 351.15, 423.15, {"temperature": "high"}),),
-        faults=(FoundFault("detector open", "output 0 V", True), FoundFault("R1 short", "U1 beyond its current", False)),
+        faults=(
+            FoundFault("detector open", "output 0 V", True),
+            FoundFault("R1 short", "U1 beyond its current", False),
+        ),
         roundings=(
             Rounding("bandwidth", 9.22e6, 9.31e6, "Hz"),
             Rounding("overshoot", 0.0430001, 0.0430002, "1"),

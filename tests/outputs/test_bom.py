@@ -46,7 +46,9 @@ def test_parts_that_differ_in_anything_bought_do_not_share_a_line(change: dict[s
 
 
 def test_loads_within_one_class_of_rating_share_a_line_that_states_the_larger() -> None:
-    other = replace(R1, ref="R2", stress={"power": 3e-4, "voltage": 1.0}, required_rating={"power": 6e-4, "voltage": 1.0})
+    other = replace(
+        R1, ref="R2", stress={"power": 3e-4, "voltage": 1.0}, required_rating={"power": 6e-4, "voltage": 1.0}
+    )
     (line,) = bill_of_materials([with_parts(R1, other)]).lines
     assert line.required_rating == {"power": 6e-4, "voltage": 2.0}
     assert line.stress == {"power": 3e-4, "voltage": 2.0}
@@ -85,7 +87,12 @@ def test_designators_sort_by_number() -> None:
 def test_csv_comes_back_as_it_was() -> None:
     row, *_ = rows(bom_csv(bill_of_materials([with_parts(R1, U1)], boards=3)))
     assert (row["Quantity"], row["References"], row["Value"], row["Code"]) == ("3", "R1", "24.3 kΩ", "24K3")
-    assert (row["Tolerance"], row["Size"], row["Function"], row["Chosen rating"]) == ("±1 %", "0603 inch", "feedback", "")
+    assert (row["Tolerance"], row["Size"], row["Function"], row["Chosen rating"]) == (
+        "±1 %",
+        "0603 inch",
+        "feedback",
+        "",
+    )
     assert row["Required rating"] == "330 µW, 2 V"
     assert row["Worst stress"] == "160 µW, 2 V"
     assert HEAD.digest in row["Design"]
@@ -117,7 +124,8 @@ def test_what_a_spreadsheet_would_convert_is_marked_as_text(text: str) -> None:
 
 
 @pytest.mark.parametrize(
-    "text", ["24.3 kΩ", "±1 %", "R47", "4K7", "1p5", "100 ppm/K", "HB-OA-400", "0603 inch", "160 µW, 2 V", "C1, C2", "", "C0G"]
+    "text",
+    ["24.3 kΩ", "±1 %", "R47", "4K7", "1p5", "100 ppm/K", "HB-OA-400", "0603 inch", "160 µW, 2 V", "C1, C2", "", "C0G"],
 )
 def test_what_is_text_already_is_left_alone(text: str) -> None:
     assert harmless(text) == text

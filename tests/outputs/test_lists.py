@@ -7,7 +7,10 @@ from tests.outputs.records import filled
 
 
 def test_circuits_have_name_and_title() -> None:
-    assert circuits_list({"tia": "amplifier", "laser-current": "driver"}) == "tia            amplifier\nlaser-current  driver\n"
+    assert (
+        circuits_list({"tia": "amplifier", "laser-current": "driver"})
+        == "tia            amplifier\nlaser-current  driver\n"
+    )
 
 
 def test_the_table_of_figures_tells_unit_circuits_and_meaning() -> None:

@@ -52,12 +52,26 @@ def test_colour_adds_nothing_but_colour() -> None:
     plain, coloured = page(result()), page(result(), colour=True)
     assert "\x1b" not in plain
     assert re.sub(r"\x1b\[[0-9;]*m", "", coloured) == plain
-    assert next(line for line in coloured.splitlines() if "missed" in line and "peaking" in line).startswith("\x1b[1;31m")
+    assert next(line for line in coloured.splitlines() if "missed" in line and "peaking" in line).startswith(
+        "\x1b[1;31m"
+    )
 
 
 def test_parts_show_fitted_beside_exact_and_the_reason() -> None:
     text = page(result())
-    assert line_of(text, "R1").split() == ["R1", "feedback", "24.3", "kΩ", "24.5", "kΩ", "±1", "%", "100", "ppm/K", "0603"]
+    assert line_of(text, "R1").split() == [
+        "R1",
+        "feedback",
+        "24.3",
+        "kΩ",
+        "24.5",
+        "kΩ",
+        "±1",
+        "%",
+        "100",
+        "ppm/K",
+        "0603",
+    ]
     assert line_of(text, "C1").split()[2:8] == ["0.36", "pF", "0.35", "pF", "±0.1", "pF"]
     assert "      2.00 V / 81.6 µA\n" in text
     assert line_of(text, "U1").endswith("HB-OA-400, op amp")

@@ -57,6 +57,7 @@ from opto_ckt.topology import (
 
 OFFERS = (*RECEIVER_OFFERS, "dc_offset", "dark_output")
 SUM: Point = (3, 2.5)
+LEAST_MARGIN = 45.0  #: of the phase, where no other bound is asked for; common practice [°]
 
 
 def topology(request: ReceiverRequest) -> Topology:
@@ -141,6 +142,8 @@ def _bias_node(request: ReceiverRequest) -> str:
     if request.bias is not None:
         return "bias"
     rails = {supply.negative: "negative", supply.positive: "positive", 0.0: GROUND}
+    if request.conditions.input_level > 0:
+        rails[request.conditions.input_level] = "level"
     return next((node for volts, node in rails.items() if abs(bias - volts) < 1e-9), "bias")
 
 
@@ -190,7 +193,8 @@ def bias(values: Values, request: ReceiverRequest) -> dict[str, float | Lanes]:
     level: float | Lanes = 0.0
     if "R2" in values:
         level = divided_voltage(voltage=values["supply.positive"], upper=values["R2"], lower=values["R3"])
-    far_end = values.get(f"supply.{_bias_node(request)}", values["supply.bias"])
+    node = _bias_node(request)
+    far_end = level if node == "level" else values.get(f"supply.{node}", values["supply.bias"])
     reverse_bias = POLARITY[request.detector.output] * (level - far_end)
     biased: dict[str, float | Lanes] = {**values, "input_level": level, "supply.bias": far_end, "detector.reverse_bias": reverse_bias}
     offset = values["U1.offset_voltage"]
@@ -286,8 +290,9 @@ def _dark(values: Values, request: ReceiverRequest) -> dict[str, Lanes]:
 
 
 def implied(request: ReceiverRequest) -> tuple[Requirement, ...]:
-    """The output must not reach its limit at the most light asked for."""
-    return (Requirement("overload", "min", request.signal.power.high, request.signal.power.high),)
+    """The output must not reach its limit at the most light asked for, and the loop must not ring."""
+    most = request.signal.power.high
+    return (Requirement("overload", "min", most, most), Requirement("phase_margin", "min", LEAST_MARGIN, LEAST_MARGIN))
 
 
 def stresses(values: Values, request: ReceiverRequest) -> tuple[Stress, ...]:

@@ -59,10 +59,9 @@ def propose(request: ReceiverRequest, derivation: Derivation, bench: Bench) -> t
         r1 = _fixed(request, derivation, "R1") or _feedback_resistance(request, derivation, bench, quality, overshoot)
         c1, overshoot = tia_window.feedback_capacitor(request, derivation, bench, r1, quality, others)
     parts = [Fitted("R1", r1, resistors, high=r1, fixed="R1" in request.fixed), c1]
-    parts += [
-        Fitted(ref, value, bypass if ref == "C2" else resistors, fixed=ref in request.fixed)
-        for ref, value in others.items()
-    ]
+    for ref, value in others.items():
+        series, low = (bypass, value) if ref == "C2" else (resistors, 0.0)
+        parts.append(Fitted(ref, value, series, low=low, fixed=ref in request.fixed))
     for ref in ("C8", "C9") if request.conditions.supply.negative else ("C8",):
         derivation.note(ref, "common practice: 100 nF close to each supply pin")
         value = request.fixed.get(ref, BYPASS)
