@@ -48,11 +48,11 @@ def parts_list(
 
 def _bought(element: Element, stress: Mapping[str, float], model: Model) -> FoundPart:
     record = getattr(model.request, element.table, None)
-    name = record.part if record is not None and record.part else f"{element.kind} as in the design file"
+    name = "" if record is None else record.part
     return FoundPart(
         ref=element.ref, kind=element.kind, role=element.role, unit="", exact=None, value=None, tolerance=None,
         absolute_tolerance=None, characteristic="", size="", part=name, stress=stress, required_rating=dict(stress),
-        formula="named in the design file", source="",
+        formula="named in the design file" if name else "figures in the design file", source="",
     )  # fmt: skip
 
 

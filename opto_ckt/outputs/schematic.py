@@ -31,7 +31,8 @@ def schematic(result: Result) -> str:
     for element in result.topology:
         if isinstance(element, Supply) and element.value in values:
             labels[element.node] = (element.node, write(values[element.value], "V", 6, trim=True))
-    return draw(result.topology, labels, caption=f"{head.title}, rev {head.revision}: {head.circuit_title}")
+    revision = f", rev {head.revision}" if head.revision else ""
+    return draw(result.topology, labels, caption=f"{head.title}{revision}: {head.circuit_title}".removeprefix(": "))
 
 
 def _part_lines(part: FoundPart) -> tuple[str, ...]:
