@@ -147,7 +147,7 @@ def _nearest(frequency: Vectors | np.ndarray, wanted: Sequence[float]) -> list[i
 
 def crosscheck_table(rows: Sequence[Row]) -> str:
     """Aligned table, a block a scene, at most 100 columns."""
-    lines = []
+    lines: list[str] = []
     for scene in dict.fromkeys(row.scene for row in rows):
         lines += ["", f"{scene}"] if lines else [scene]
         lines.append(f"  {'':<28}{'predicted':>16}{'simulated':>16}{'apart':>14}{'bound':>12}")

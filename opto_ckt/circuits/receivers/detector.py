@@ -59,8 +59,8 @@ def detector_limits(request: ReceiverRequest, detector: str = "D1") -> dict[str,
     speed = {}
     if data.rise_time is not None:
         rise = limit("rise_time", data.rise_time)
-        ends = (bandwidth_of_rise_time(rise_time=time) for time in (rise.nominal, rise.high, rise.low))
-        speed = {f"{detector}.transit_frequency": Limit(*map(float, ends), assumed=rise.assumed)}
+        nominal, low, high = (float(bandwidth_of_rise_time(rise_time=t)) for t in (rise.nominal, rise.high, rise.low))
+        speed = {f"{detector}.transit_frequency": Limit(nominal, low, high, rise.assumed)}
     return {
         **speed,
         f"{detector}.responsivity": limit("responsivity", data.responsivity_spread(request.signal.wavelength)),

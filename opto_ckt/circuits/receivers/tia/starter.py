@@ -47,7 +47,7 @@ junction_max             = "150 °C"
 wavelength       = "1310 nm"
 power            = { typ = "2 µW", max = "50 µW" }   # average optical power on the detector; dBm is read too
 ambient          = "1 µA"                            # steady background as photocurrent, or { power, wavelength }
-bit_rate         = "10 Mbit/s"                       # or, for an analog front end, band = { min = "1 kHz", max = "5 MHz" }
+bit_rate         = "10 Mbit/s"                       # or, analog: band = { min = "1 kHz", max = "5 MHz" }
 extinction_ratio = "9 dB"
 
 [target]

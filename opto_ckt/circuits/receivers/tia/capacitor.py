@@ -1,4 +1,4 @@
-"""C1 of the transimpedance amplifier: a window between ringing and what is too slow or unstable, and its place in it."""
+"""C1 of the transimpedance amplifier: its window between ringing and too slow or unstable, and its place in it."""
 
 from __future__ import annotations
 
@@ -109,8 +109,8 @@ def _reason(
 def _unstable(bench: Bench, capacitance: float, low: float, stable: float) -> InfeasibleError:
     gain = bench.nominal("U1.minimum_stable_gain")
     return InfeasibleError(
-        f"C_f would have to be at least {write(low, 'F')} against peaking, and at most {write(stable, 'F')} for the minimum"
-        f" stable gain {gain:.3g} of U1",
+        f"C_f would have to be at least {write(low, 'F')} against peaking, and at most {write(stable, 'F')} for the"
+        f" minimum stable gain {gain:.3g} of U1",
         [
             f"minimum stable gain of U1 ≤ {1 + capacitance / low:.3g}",
             f"{write((gain - 1) * low - capacitance, 'F')} more from summing node to ground",
@@ -174,7 +174,7 @@ def _largest_stable(bench: Bench, capacitance: float) -> float:
 
 
 def _where_quality(tried: Lanes, qualities: Lanes, wanted: float) -> float:
-    """First C_f, from small to large, at which the largest Q has come down to the wanted one; else that of the least Q."""
+    """First C_f, from small to large, at which the largest Q has come down to the wanted one; else the one of least Q."""
     known = np.nan_to_num(qualities, nan=inf)
     below = np.flatnonzero(known <= wanted)
     if not len(below):

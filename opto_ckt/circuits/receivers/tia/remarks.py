@@ -1,0 +1,40 @@
+"""What a designer ought to be told about a sized transimpedance amplifier."""
+
+from __future__ import annotations
+
+import numpy as np
+
+from opto_ckt.circuits.receivers.detector import POLARITY, level_factor, noise_band, wanted_bandwidth
+from opto_ckt.circuits.receivers.tia.capacitor import BUILDABLE
+from opto_ckt.limits import Limits, Values
+from opto_ckt.request import ReceiverRequest
+from opto_ckt.units import write
+
+
+def remarks(values: Values, limits: Limits, request: ReceiverRequest) -> tuple[str, ...]:
+    """Advice on slew rate, thick film, dark reach, polarity and capacitors too small to fit."""
+    responsivity = float(np.max(values["D1.responsivity"]))
+    r1 = float(np.max(values["R1"]))
+    found = [
+        "output rises with light" if POLARITY[request.detector.output] > 0 else "output falls with light",
+    ]
+    step = responsivity * request.signal.power.high * level_factor(request) * r1
+    bandwidth = wanted_bandwidth(request)
+    if bandwidth is not None:
+        needed = 2 * np.pi * bandwidth * step / 2
+        if needed > request.amplifier.slew_rate.low:
+            found.append(
+                f"slew rate: the largest step asks for {write(float(needed), 'V/s')}, U1 gives"
+                f" {write(request.amplifier.slew_rate.low, 'V/s')}"
+            )
+    standing = (responsivity * request.signal.power.nominal + request.ambient_current.high) * r1
+    if standing > 0.05 and noise_band(request)[0] < 1e3:
+        found.append(
+            f"R1 carries {write(standing, 'V')} of standing photocurrent: fit thin film, thick film adds 1/f noise"
+        )
+    dark = float(np.min(values["input_level"])) - float(np.min(values["supply.negative"]))
+    if dark < request.amplifier.swing_to_negative.high:
+        found.append("the output cannot reach its dark level: raise conditions.input_level or add a negative supply")
+    if 0 < float(np.max(values["C1"])) < BUILDABLE:
+        found.append("C1 is no more than its pads: leave the pads bare, trim on the board, or lower R1")
+    return tuple(found)
