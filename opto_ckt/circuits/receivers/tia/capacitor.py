@@ -174,7 +174,7 @@ def _largest_stable(bench: Bench, capacitance: float) -> float:
 
 
 def _where_quality(tried: Lanes, qualities: Lanes, wanted: float) -> float:
-    """First C_f, from small to large, at which the largest Q has come down to the wanted one; else the one of least Q."""
+    """First C_f, from small to large, at which the largest Q is down to the wanted one; else the one of least Q."""
     known = np.nan_to_num(qualities, nan=inf)
     below = np.flatnonzero(known <= wanted)
     if not len(below):
