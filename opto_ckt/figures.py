@@ -34,7 +34,13 @@ _ALL = (
     Figure(
         "quality_factor", "1", "quality factor", "largest of all complex pole pairs; 0.5 where all poles are real", 0.5
     ),
-    Figure("rise_time", "s", "rise time", "10-90 %, step of light to output, rise of the source excluded", 1e-12),
+    Figure(
+        "rise_time",
+        "s",
+        "rise time",
+        "10-90 % of the answer to a step at the input, rise of the source excluded",
+        1e-12,
+    ),
     Figure("overshoot", "1", "overshoot", "of the final step", 0.05),
     Figure(
         "output_swing", "V", "output swing", "largest distance from the dark level: one level, ambient, overshoot", 0.01
@@ -72,7 +78,14 @@ _ALL = (
     Figure("current_error", "1", "current error", "against the current asked for, either sign", 1e-3),
     Figure("bias_current", "A", "bias current", "steady part of the current through the source", 1e-6),
     Figure("modulation_current", "A", "modulation current", "one level to zero level, peak to peak", 1e-6),
-    Figure("optical_power", "W", "optical power", "average, at the stated plane, after trimming at 25 °C", 1e-9, 10.0),
+    Figure(
+        "optical_power",
+        "W",
+        "optical power",
+        "average, at the stated plane; trimmed at 25 °C where the circuit has a trimmer",
+        1e-9,
+        10.0,
+    ),
     Figure(
         "extinction_ratio", "W/W", "extinction ratio", "one level over zero level, as a ratio; 10 log in dB", 1.0, 10.0
     ),

@@ -133,7 +133,7 @@ def rise_time(evaluation: Evaluation, reference: Array | float | None = None) ->
     -------
     nan where 90 % is never reached and where the network is unstable.
     """
-    time = step.rise_time(evaluation.modes, _reference(evaluation, reference)) / evaluation.frequency_scale
+    time = _shape(evaluation, reference)[0] / evaluation.frequency_scale
     return np.where(evaluation.stable, time, np.nan)
 
 
@@ -144,8 +144,23 @@ def overshoot(evaluation: Evaluation, reference: Array | float | None = None) ->
     ----------
     reference : magnitude of the level to refer to; the final value if None. [V per unit of input]
     """
-    excess = step.overshoot(evaluation.modes, _reference(evaluation, reference))
+    excess = _shape(evaluation, reference)[1]
     return np.where(evaluation.stable, excess, np.nan)
+
+
+def _shape(evaluation: Evaluation, reference: Array | float | None) -> tuple[Array, Array]:
+    if reference is None:
+        return evaluation.step_shape
+    return step.shape(evaluation.modes, _reference(evaluation, reference))
+
+
+def settling_time(evaluation: Evaluation, share: float = 1e-3) -> Array:
+    """Time after which each mode of the step response is below a share of the final value; nan where unstable. [s]"""
+    modes = evaluation.modes
+    with np.errstate(divide="ignore", invalid="ignore"):
+        times = np.log(np.abs(modes.residues) / (share * np.abs(modes.constant))) / -modes.poles.real
+    slowest = np.where(np.isfinite(times), np.maximum(times, 0.0), 0.0).max(axis=0, initial=0.0)
+    return np.where(evaluation.stable, slowest / evaluation.frequency_scale, np.nan)
 
 
 def _reference(evaluation: Evaluation, reference: Array | float | None) -> Array | None:

@@ -175,6 +175,7 @@ def _scenes(sized: Sized, rows: Sequence[FoundRequirement], found: Mapping[str, 
     expected = {
         **model.circuit.figures(biased, evaluation, model.request),
         "output_noise_density": density,
+        "settling_time": response.settling_time(evaluation),
         "signal_noise_density": density / np.abs(response.transfer_at(evaluation, frequency)),
     }
 

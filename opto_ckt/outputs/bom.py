@@ -78,7 +78,8 @@ def bill_of_materials(results: Sequence[Result], boards: int = 1) -> Bom:
     names = _names([result.head for result in results])
     for design, result in zip(names, results, strict=True):
         for part in result.parts:
-            groups.setdefault(_same(part), []).append((Place(design, part.ref, part.role), part))
+            place = Place(design, part.ref, part.role)
+            groups.setdefault(_same(part, place), []).append((place, part))
     lines = sorted((_line(group) for group in groups.values()), key=_line_order)
     return Bom(dict(zip(names, (result.head for result in results), strict=True)), tuple(lines), boards)
 
@@ -103,10 +104,10 @@ def _names(heads: Sequence[DesignHead]) -> list[str]:
     ]
 
 
-def _same(part: FoundPart) -> tuple[object, ...]:
-    """What two parts must have in common to be one line."""
+def _same(part: FoundPart, place: Place) -> tuple[object, ...]:
+    """What two parts must have in common to be one line; a part without value and name is like no other."""
     if part.value is None:
-        return (part.kind, part.part, part.fitted)
+        return (part.kind, part.part or place, part.fitted)
     if not part.fitted:
         return (part.kind, "", part.characteristic, part.size, part.fitted)
     rating = tuple(

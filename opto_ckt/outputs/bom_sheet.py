@@ -64,7 +64,7 @@ def _below(bom: Bom, line: BomLine) -> Iterator[str]:
     """What did not fit above; designators with what they are for, loads; then room for what buying decides."""
     if width(line.value) > LONGEST:
         yield from wrapped(line.value, INDENT, PAGE)
-    what = ", ".join(filter(None, (line.kind, *line.functions)))
+    what = ", ".join(dict.fromkeys((line.kind, *line.functions)))
     if not line.fitted:
         yield from wrapped(f"{bom.references(line)}: {what}; DO NOT FIT", INDENT, PAGE)
         return

@@ -4,10 +4,14 @@ from __future__ import annotations
 
 import re
 from collections.abc import Callable, Iterator, Mapping, Sequence
+from dataclasses import dataclass
 from typing import Any
 
-from opto_ckt.analyses.ideal import Ideal, idealised, left_out
-from opto_ckt.analyses.network.expansion import expand
+import numpy as np
+from numpy.typing import NDArray
+
+from opto_ckt.analyses.ideal import Core, answers, core, frequencies_of
+from opto_ckt.analyses.network import Expansion
 from opto_ckt.analyses.symbolic import (
     coefficients,
     formula_expression,
@@ -16,58 +20,94 @@ from opto_ckt.analyses.symbolic import (
     renamed,
     symbolic_return_ratio,
     symbolic_transfer,
+    value_of,
 )
 from opto_ckt.formulas.formula import source_of
 from opto_ckt.outputs.columns import packed
 from opto_ckt.outputs.derivation_text import described
-from opto_ckt.topology import Topology
+from opto_ckt.units import percent, write
 
 PAGE = 100
+DROPPED = 0.05  #: of a coefficient, in its smallest terms together
 POWERS = ("", "·s", "·s²", "·s³", "·s⁴", "·s⁵", "·s⁶", "·s⁷", "·s⁸", "·s⁹")
-Write = Callable[[Any], str]
+Formulas = Sequence[Callable[..., Any]]
+
+
+@dataclass(frozen=True)
+class Function:
+    """One network function by its coefficients, lowest power of s first."""
+
+    heading: str
+    symbol: str
+    above: list[Any]
+    below: list[Any]
+    apart: float  #: largest distance from the whole network's, as a share of the largest value, or of one
 
 
 def formula_page(
-    title: str, topology: Topology, formulas: Sequence[Callable[..., Any]], *, as_latex: bool = False
+    title: str, expansion: Expansion, values: Mapping[str, float], formulas: Formulas, *, as_latex: bool = False
 ) -> str:
-    """Transfer function and loop gain of the idealised network, then every sizing relation with its source.
+    """Transfer function and loop gain, reduced to what matters, then every sizing relation with its source.
 
     Parameters
     ----------
-    topology : slots filled or closed.
+    values : of everything in the network; they decide what matters.
     as_latex : a fragment to be put into a document; else plain text.
     """
-    ideal = idealised(expand(topology), *left_out(topology))
-    lines = _latex(title, ideal, formulas) if as_latex else _text(title, topology, ideal, formulas)
+    frequencies = frequencies_of(expansion, values)
+    heart = core(expansion, values, frequencies)
+    functions = list(_functions(expansion, heart, values, frequencies))
+    top = write(float(frequencies[-1]), "Hz")
+    lines = _latex(title, top, functions, formulas) if as_latex else _text(title, top, heart, functions, formulas)
     return "\n".join(lines) + "\n"
 
 
-def _functions(ideal: Ideal) -> Iterator[tuple[str, str, list[Any], list[Any]]]:
-    """Heading, symbol, numerator and denominator of each network function."""
-    yield ("Transfer, output over input", "H", *coefficients(symbolic_transfer(ideal.expansion)))
-    if ideal.expansion.loop:
-        yield ("Loop gain", "T", *coefficients(symbolic_return_ratio(ideal.expansion)))
+def _functions(
+    expansion: Expansion, heart: Core, values: Mapping[str, float], frequencies: NDArray[np.float64]
+) -> Iterator[Function]:
+    transfer, closed = answers(expansion, values, frequencies)
+    above, below = coefficients(symbolic_transfer(heart.expansion), values, DROPPED)
+    apart = np.abs(_evaluated(above, below, values, frequencies) - transfer) / np.max(np.abs(transfer))
+    yield Function("Transfer, output over input", "H", above, below, float(np.max(apart)))
+    if heart.expansion.loop:
+        above, below = coefficients(symbolic_return_ratio(heart.expansion), values, DROPPED)
+        ratio = _evaluated(above, below, values, frequencies)
+        yield Function("Loop gain", "T", above, below, float(np.max(np.abs(ratio / (1 + ratio) - closed))))
 
 
-def _text(title: str, topology: Topology, ideal: Ideal, formulas: Sequence[Callable[..., Any]]) -> Iterator[str]:
+def _evaluated(
+    above: Sequence[Any], below: Sequence[Any], values: Mapping[str, float], frequencies: NDArray[np.float64]
+) -> NDArray[np.complex128]:
+    numbers = [[value_of(factor, values) for factor in reversed(part)] for part in (above, below)]
+    point = 2j * np.pi * frequencies
+    return np.asarray(np.polyval(numbers[0], point) / np.polyval(numbers[1], point))
+
+
+def _text(title: str, top: str, heart: Core, functions: Sequence[Function], formulas: Formulas) -> Iterator[str]:
     yield title
     yield "Every quantity in SI units; log is the natural logarithm."
-    absent = {element.ref for element in topology if not element.fitted}
-    names = [name for name in (*ideal.none, *ideal.unbounded) if "noise" not in name]
-    if names:
+    for words, names in (("an open", heart.opened), ("a short", heart.shorted)):
+        if names:
+            yield ""
+            yield f"Taken as {words} in the two functions below, though not in what opto-ckt computes"
+            yield from packed(names, 2, PAGE)
+    for function in functions:
         yield ""
-        yield "Left out of the network functions below, though not of what opto-ckt computes"
-        yield from packed([f"{name} ({topology[name].role})" if name in absent else name for name in names], 2, PAGE)
-    for heading, symbol, above, below in _functions(ideal):
-        yield ""
-        yield f"{heading}: {symbol}(s) = {_quotient(above, below)}"
-        for letter, part in (("b", above), ("a", below)):
+        quotient = _quotient(function.above, function.below)
+        yield f"{function.heading}: {function.symbol}(s) ≈ {quotient}, {_within(function, top)}"
+        for letter, part in (("b", function.above), ("a", function.below)):
             for power, factor in enumerate(part):
                 if factor != 0:
                     yield f"  {letter}{power} = {readable(factor)}"
     for formula in formulas:
         yield ""
         yield from _relation(formula)
+
+
+def _within(function: Function, top: str) -> str:
+    """How near it comes: of the loop gain what the closed loop makes of it, T/(1 + T)."""
+    of = "the largest" if function.symbol == "H" else "T/(1 + T)"
+    return f"within {percent(function.apart, 2)} of {of} up to {top}"
 
 
 def _quotient(above: Sequence[Any], below: Sequence[Any]) -> str:
@@ -96,13 +136,13 @@ def _more(words: str, symbol: str) -> str:
     return f": {rest}" if rest else ""
 
 
-def _latex(title: str, ideal: Ideal, formulas: Sequence[Callable[..., Any]]) -> Iterator[str]:
+def _latex(title: str, top: str, functions: Sequence[Function], formulas: Formulas) -> Iterator[str]:
     yield f"% opto-ckt: {title}"
-    functions = list(_functions(ideal))
-    names = _value_names([factor for _, _, above, below in functions for factor in (*above, *below)])
-    for heading, symbol, above, below in functions:
-        yield f"% {heading}"
-        yield rf"\[ {symbol}(s) = \frac{{{_polynomial(above, names)}}}{{{_polynomial(below, names)}}} \]"
+    names = _value_names([factor for each in functions for factor in (*each.above, *each.below)])
+    for each in functions:
+        yield f"% {each.heading}, {_within(each, top)}"
+        quotient = rf"\frac{{{_polynomial(each.above, names)}}}{{{_polynomial(each.below, names)}}}"
+        yield rf"\[ {each.symbol}(s) \approx {quotient} \]"
     for formula in formulas:
         about = described(formula)
         yield f"% {about.title} Source: {' '.join(source_of(formula).split())}"

@@ -10,13 +10,14 @@ from opto_ckt.units import percent, write
 LOAD_UNITS: Mapping[str, str] = {"power": "W", "voltage": "V", "current": "A"}
 NEGLIGIBLE: Mapping[str, float] = {"power": 1e-12, "voltage": 1e-6, "current": 1e-12}
 """Loads below this are no load: no rating is so small."""
+UNNAMED = "not named"  #: a part whose figures stand in the design file without a name
 
 
 def value_text(part: FoundPart) -> str:
     """What is fitted: the preferred value, the name of a part bought by name, or that the place stays empty."""
     if not part.fitted:
         return "not fitted"
-    return part.part if part.value is None else write(part.value, part.unit, 4, trim=True)
+    return (part.part or UNNAMED) if part.value is None else write(part.value, part.unit, 4, trim=True)
 
 
 def tolerance_text(part: FoundPart) -> str:

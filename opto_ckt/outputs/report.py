@@ -128,7 +128,7 @@ def _kind(part: FoundPart) -> str:
     """What a chosen part is made of, or which part is bought."""
     if part.unit:
         return GAP.join(filter(None, (part.characteristic, part.size)))
-    return part.part if part.part.startswith(part.kind) else f"{part.part}, {part.kind}"
+    return f"{value_text(part)}, {part.kind}"
 
 
 def _reasons(part: FoundPart, *, verbose: bool) -> Iterator[str]:

@@ -17,7 +17,8 @@ from opto_ckt.units import write
 
 POINTS_AC = 50  #: a decade
 POINTS_NOISE = 50  #: 50 points a decade integrate noise to 0.02 % by trapezoids
-STEP = 0.01  #: height of the step, as a share of the light or of the set voltage
+STEP = 0.01  #: height of the step of light, as a share of it
+SMALL_STEP = 2e-4  #: of the set voltage: small enough for what is not linear
 MARK = "* written by opto-ckt; it is overwritten when the design is sized again\n"
 
 
@@ -64,6 +65,11 @@ def source(topology: Topology) -> str:
     return "vpw" if isinstance(topology[topology.input], Photodiode) else "vsig"
 
 
+def step_share(topology: Topology) -> float:
+    """Height of the step, as a share of what steps."""
+    return STEP if source(topology) == "vpw" else SMALL_STEP
+
+
 def output_node(topology: Topology) -> str:
     """Node at which the answer is read, against ground."""
     positive, negative = topology.output
@@ -84,10 +90,11 @@ def noise_span(result: Result) -> tuple[float, float]:
 
 
 def step_times(scene: Scene) -> tuple[float, float, float]:
-    """Start of the step, end of the run and largest time step, from the rise time expected."""
+    """Start of the step, end of the run and largest time step: by the rise time expected, and by a slower tail."""
     rise = scene.expected.get("rise_time", 1e-6)
     rise = rise if np.isfinite(rise) and rise > 0 else 1e-6
-    return rise, 31 * rise, rise / 200
+    tail = float(np.nan_to_num(scene.expected.get("settling_time", 0.0)))
+    return rise, rise + max(30 * rise, tail), rise / 60
 
 
 def _circuit(topology: Topology, values: Mapping[str, float], pulse: str) -> str:
@@ -103,7 +110,7 @@ def _circuit(topology: Topology, values: Mapping[str, float], pulse: str) -> str
 def _pulse(topology: Topology, scene: Scene) -> str:
     start, end, longest = step_times(scene)
     rest = scene.values["signal.power"] if source(topology) == "vpw" else 0.0
-    height = STEP * (rest or 1.0)
+    height = step_share(topology) * (rest or abs(scene.values.get("set_voltage", 1.0)))
     times = (start, longest / 10, longest / 10, 10 * end, 20 * end)
     return f"pulse({number(rest)} {number(rest + height)} {' '.join(number(t) for t in times)})"
 
@@ -142,7 +149,7 @@ def _expected(result: Result, scene: Scene, kind: str) -> list[str]:
             figure("output_noise", "output noise in the band, rms"),
         ],
         "step": [
-            comment(f"step of {number(100 * STEP)} per cent; answer: v({node})"),
+            comment(f"step of {number(100 * step_share(result.topology))} per cent; answer: v({node})"),
             figure("rise_time", "rise time, 10-90 per cent"),
             figure("overshoot", "overshoot, as a share of the step"),
         ],

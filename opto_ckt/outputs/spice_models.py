@@ -157,6 +157,7 @@ def _(element: OpAmp, values: Values, driven: bool) -> Cards:
         + (card("c2", "p2 0", number(1 / (2 * pi * second))) if second < NOWHERE else "")
         + card("e1", "po 0 p2 0", "1")
         + card("gro", "po o po o", number(1 / v["output_resistance"]))
+        + card("iq", "vp vn dc", number(values.get(f"{element.ref}.quiescent_current", 0.0)))
         + card("rvp", "vp 0", "1e9")
         + card("rvn", "vn 0", "1e9")
         + card(".ends", ref)
@@ -182,7 +183,7 @@ def _(element: Transistor, values: Values, driven: bool) -> Cards:
 
 def _mosfet(element: Transistor, v: Values, values: Values) -> str:
     kind = "nmos" if element.polarity > 0 else "pmos"
-    beta = v["transconductance"] ** 2 / (2 * v["drain_current"])
+    beta = values[f"{element.ref}.gain_factor"]
     threshold = element.polarity * values[f"{element.ref}.threshold_voltage"]
     return card("m1", "d g s s", "mq", "w=1e-4 l=1e-4") + card(
         ".model", "mq", f"{kind}(level=1 vto={number(threshold)} kp={number(beta)})"

@@ -1,51 +1,79 @@
 from __future__ import annotations
 
-from typing import Any
+from dataclasses import replace
 
 import numpy as np
 import pytest
 
-from opto_ckt.analyses.ideal import idealised, left_out
+from opto_ckt.analyses.ideal import READABLE, answers, core, frequencies_of, simplified
 from opto_ckt.analyses.network import Network
 from opto_ckt.analyses.network.expansion import expand
-from opto_ckt.analyses.response import transfer_at
-from opto_ckt.analyses.symbolic import coefficients, symbolic_transfer
-from tests.outputs.results import topology
+from opto_ckt.analyses.response import bandwidth, transfer_at
+from opto_ckt.analyses.stability import crossover_frequency, return_ratio_at
+from opto_ckt.analyses.symbolic import coefficients, symbolic_transfer, value_of
+from tests.outputs.results import VALUES, topology
 
-VALUES = {
-    "R1": 24e3, "C1": 0.4e-12, "D1.responsivity": 0.9, "D1.capacitance": 9e-12, "U1.gain_bandwidth": 400e6,
-    "U1.open_loop_gain": 1e4, "U1.common_capacitance": 1.5e-12, "U1.differential_capacitance": 0.7e-12,
-}  # fmt: skip
-FREQUENCIES = np.array([1e3, 1e6, 1e7, 5e7])
+EXPANSION = expand(topology())
+FREQUENCIES = frequencies_of(EXPANSION, VALUES)
 
 
-def test_values_at_their_limits_are_named() -> None:
-    none, unbounded = left_out(topology())
-    assert {"CB", "D1.series_resistance", "U1.output_resistance"} <= set(none)
-    assert {"U1.second_pole", "D1.transit_frequency", "D1.shunt_resistance"} <= set(unbounded)
+def test_frequencies_reach_the_crossover_where_it_lies_above_the_bandwidth() -> None:
+    evaluation = Network(EXPANSION).evaluate(VALUES)
+    assert FREQUENCIES[-1] == pytest.approx(max(bandwidth(evaluation)[0], crossover_frequency(evaluation)[0]))
 
 
-def test_the_ideal_network_answers_like_the_whole_one_near_the_limits() -> None:
-    none, unbounded = left_out(topology())
-    whole = expand(topology())
-    ideal = idealised(whole, none, unbounded).expansion
-    assert len(ideal.primitives) < len(whole.primitives)
-    near = {**dict.fromkeys(none, 1e-21), **dict.fromkeys(unbounded, 1e15)}
-    near |= {name: 1e-3 for name in none if name.endswith("resistance")}
-    noise = {name: 1e-12 for name in Network(whole).inputs if name not in VALUES and name not in near}
-    expected = transfer_at(Network(whole).evaluate({**VALUES, **near, **noise}), FREQUENCIES)
-    found = transfer_at(Network(ideal).evaluate(VALUES), FREQUENCIES)
-    assert found == pytest.approx(expected, rel=1e-4)
+def test_the_answers_are_those_of_the_engine() -> None:
+    transfer, closed = answers(EXPANSION, VALUES, FREQUENCIES)
+    evaluation = Network(EXPANSION).evaluate(VALUES)
+    expected = np.array([transfer_at(evaluation, frequency)[0] for frequency in FREQUENCIES])
+    ratio = np.array([return_ratio_at(evaluation, frequency)[0] for frequency in FREQUENCIES])
+    assert transfer == pytest.approx(expected, rel=1e-9)
+    assert closed == pytest.approx(ratio / (1 + ratio), rel=1e-7)
+
+
+@pytest.mark.parametrize("tolerance", [0.0, 0.01, 0.1])
+def test_what_is_left_out_changes_no_answer_by_more_than_the_tolerance(tolerance: float) -> None:
+    found = simplified(EXPANSION, VALUES, FREQUENCIES, tolerance)
+    exact, near = (answers(each, VALUES, FREQUENCIES) for each in (EXPANSION, found.expansion))
+    largest = max(np.max(np.abs(near[0] - exact[0])) / np.max(np.abs(exact[0])), np.max(np.abs(near[1] - exact[1])))
+    assert largest == pytest.approx(found.error, abs=1e-12)
+    assert largest <= tolerance + 1e-9
+
+
+def test_the_larger_the_tolerance_the_less_is_left() -> None:
+    sizes = [len(simplified(EXPANSION, VALUES, FREQUENCIES, each).expansion.primitives) for each in (0.001, 0.02, 0.2)]
+    assert sizes == sorted(sizes, reverse=True)
+    assert sizes[0] > sizes[-1]
+
+
+def test_strays_and_poles_that_do_not_matter_go_and_what_decides_stays() -> None:
+    found = core(EXPANSION, VALUES, FREQUENCIES)
+    kept = {each.name for each in found.expansion.primitives}
+    assert len(kept) <= READABLE
+    assert {"R1", "C1", "D1.capacitance", "U1.dominant"} <= kept
+    assert "D1.transit_c" in found.opened
+    assert "D1.series_resistance" in found.shorted
+
+
+def test_source_and_output_are_never_shorted() -> None:
+    bare = replace(EXPANSION, primitives=tuple(each for each in EXPANSION.primitives if each.name != "C1"))
+    found = simplified(bare, VALUES, FREQUENCIES, 0.5)
+    assert found.expansion.output == EXPANSION.output
+    assert found.expansion.input[0] != found.expansion.input[1]
 
 
 def test_the_coefficients_are_those_of_the_network() -> None:
-    ideal = idealised(expand(topology()), *left_out(topology())).expansion
-    above, below = coefficients(symbolic_transfer(ideal))
+    heart = core(EXPANSION, VALUES, FREQUENCIES).expansion
+    above, below = coefficients(symbolic_transfer(heart))
     point = 2j * np.pi * FREQUENCIES
-    numerator, denominator = ([_number(factor) for factor in reversed(part)] for part in (above, below))
+    numerator, denominator = ([value_of(factor, VALUES) for factor in reversed(part)] for part in (above, below))
     found = np.polyval(numerator, point) / np.polyval(denominator, point)
-    assert found == pytest.approx(transfer_at(Network(ideal).evaluate(VALUES), FREQUENCIES), rel=1e-9)
+    assert found == pytest.approx(answers(heart, VALUES, FREQUENCIES)[0], rel=1e-9)
 
 
-def _number(factor: Any) -> float:
-    return float(factor.subs({symbol: VALUES[symbol.name] for symbol in factor.free_symbols}))
+def test_dropping_small_terms_keeps_the_large_ones() -> None:
+    heart = core(EXPANSION, VALUES, FREQUENCIES).expansion
+    exact, short = coefficients(symbolic_transfer(heart)), coefficients(symbolic_transfer(heart), VALUES, 0.2)
+    for whole, dropped in zip((*exact[0], *exact[1]), (*short[0], *short[1]), strict=True):
+        assert value_of(dropped, VALUES) == pytest.approx(value_of(whole, VALUES), rel=0.2)
+        assert len(str(dropped)) <= len(str(whole))

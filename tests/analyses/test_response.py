@@ -201,3 +201,11 @@ def test_wild_designs_against_dense_scan():
     top = 20 * np.log10(np.maximum(gain.max(axis=0), 1))
     assert (np.abs(peaking - top)[stable] < 1e-3 * (1 + top[stable])).all()
     assert np.isnan(bandwidth[~stable]).all()
+
+
+def test_settling_time_of_one_pole():
+    """A pole of time constant τ is below a share x of its end value after τ ln(1/x)."""
+    values = {"R": 1e3, "C": 1e-9}
+    evaluation = Network(low_pass()).evaluate(values)
+    (pole,) = response.poles(evaluation)[:, 0]
+    assert response.settling_time(evaluation, 1e-3)[0] == pytest.approx(np.log(1e3) / -pole.real, rel=1e-9, abs=0)

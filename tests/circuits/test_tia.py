@@ -48,7 +48,9 @@ def test_network_of_one_pole_agrees_with_the_closed_forms() -> None:
     assert figures["bandwidth"][0] == near(second_order.bandwidth(natural_frequency=natural, quality=quality), rel=1e-5)
 
 
-@pytest.mark.parametrize("changes", [(), (("output  ", 'output = "anode"'),), SINGLE_SUPPLY], ids=["cathode", "anode", "single"])
+@pytest.mark.parametrize(
+    "changes", [(), (("output  ", 'output = "anode"'),), SINGLE_SUPPLY], ids=["cathode", "anode", "single"]
+)
 def test_network_agrees_with_lcapy_at_random_values(changes: tuple[tuple[str, str], ...]) -> None:
     found = model("tia", *changes)
     random = np.random.default_rng(20)
@@ -126,7 +128,10 @@ def test_a_single_supply_gets_a_level_and_can_reach_dark() -> None:
 
 
 def test_a_level_too_low_for_the_dark_is_said() -> None:
-    changes = (("supply ", 'supply = { positive = "5 V", negative = "0 V" }\ninput_level = "0.2 V"'), ("reverse_bias", 'reverse_bias = "0.2 V"'))
+    changes = (
+        ("supply ", 'supply = { positive = "5 V", negative = "0 V" }\ninput_level = "0.2 V"'),
+        ("reverse_bias", 'reverse_bias = "0.2 V"'),
+    )
     assert any("cannot reach its dark level" in caution for caution in sized("tia", *changes).cautions)
 
 
@@ -163,13 +168,24 @@ def test_a_remedy_really_does() -> None:
 
 
 def test_an_analog_front_end_is_sized_by_its_band() -> None:
-    result = sized("tia", ("bit_rate", 'band = { min = "1 kHz", max = "5 MHz" }'), ("bandwidth ", ""), ("peaking", ""), ("output_swing", ""))
+    result = sized(
+        "tia",
+        ("bit_rate", 'band = { min = "1 kHz", max = "5 MHz" }'),
+        ("bandwidth ", ""),
+        ("peaking", ""),
+        ("output_swing", ""),
+    )
     assert result.verdict == "none"
     assert result.figure("bandwidth").low > 5e6
 
 
 def test_swing_is_limited_by_the_rail_where_nothing_is_asked() -> None:
-    result = sized("tia", ("output_swing", ""), ("bandwidth ", 'bandwidth = { min = "1 MHz" }'), ("power ", 'power = { typ = "2 µW", max = "100 µW" }'))
+    result = sized(
+        "tia",
+        ("output_swing", ""),
+        ("bandwidth ", 'bandwidth = { min = "1 MHz" }'),
+        ("power ", 'power = { typ = "2 µW", max = "100 µW" }'),
+    )
     assert result.figure("overload").low >= 100e-6
     assert result.figure("output_swing").high < 5 * 0.95 - 1.3
 

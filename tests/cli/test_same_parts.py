@@ -6,6 +6,7 @@ import csv
 import io
 import json
 import re
+from functools import cache
 
 import pytest
 
@@ -15,10 +16,16 @@ from opto_ckt.cli.files import every_file
 from opto_ckt.design.sizing import size
 
 
+@cache
+def files_of(name: str) -> dict[str, str]:
+    """Every file of the design that a circuit is begun from."""
+    circuit = load(name)
+    return every_file(size(read_starter(circuit), circuit))
+
+
 @pytest.mark.parametrize("name", CIRCUITS)
 def test_every_file_lists_the_same_parts(name: str) -> None:
-    circuit = load(name)
-    files = every_file(size(read_starter(circuit), circuit))
+    files = files_of(name)
     parts = json.loads(files[f"{name}.json"])["parts"]
     fitted = {part["ref"] for part in parts if part["fitted"]}
     rows = list(csv.DictReader(io.StringIO(files[f"{name}.bom.csv"])))
@@ -27,12 +34,11 @@ def test_every_file_lists_the_same_parts(name: str) -> None:
     assert all(re.search(rf"\b{part['ref']}\b.*: ", files[f"{name}.bom.txt"]) for part in parts)
     assert {part["ref"] for part in parts} <= set(re.findall(r"<text[^>]*>([^<]*)</text>", files[f"{name}.svg"]))
     cards = {line.split()[0] for line in files[f"{name}.ac.cir"].splitlines()[1:] if line[:1] not in "*.+"}
-    assert {ref for ref in fitted if not {ref.lower(), f"x{ref.lower()}"} & cards} == set()
+    assert {ref for ref in fitted if not {f"{prefix}{ref.lower()}" for prefix in ("", "x", "m")} & cards} == set()
 
 
 @pytest.mark.parametrize("name", CIRCUITS)
 def test_every_file_carries_the_marker_and_ends_its_last_line(name: str) -> None:
-    circuit = load(name)
-    for text in every_file(size(read_starter(circuit), circuit)).values():
+    for text in files_of(name).values():
         assert "opto-ckt" in text[:1024]
         assert text.endswith("\n")

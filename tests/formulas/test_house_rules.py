@@ -32,6 +32,7 @@ FORMULAS = [function for function in PUBLIC if "source" in vars(function)]
 BY_UNIT = {
     "Ω": 1e3,
     "F": 10e-12,
+    "H": 10e-6,
     "Hz": 1e6,
     "A": 10e-3,
     "V": 1.0,

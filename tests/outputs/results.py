@@ -45,6 +45,30 @@ MISSED = FoundRequirement(
 MET = FoundRequirement(
     Requirement("bandwidth", "min", 8e6, 1.0), 9.31e6, 8.49e6, {"U1.gain_bandwidth": "low", "temperature": "high"}, "Hz"
 )
+VALUES = {
+    "R1": 24e3,
+    "C1": 0.4e-12,
+    "CB": 0.3e-12,
+    "temperature": 298.15,
+    "D1.responsivity": 0.9,
+    "D1.capacitance": 9e-12,
+    "D1.series_resistance": 10.0,
+    "D1.shunt_resistance": 1e8,
+    "D1.transit_frequency": 1e9,
+    "D1.dark_current": 1e-9,
+    "D1.ambient_current": 1e-6,
+    "D1.signal_current": 2e-6,
+    "U1.gain_bandwidth": 400e6,
+    "U1.second_pole": 700e6,
+    "U1.open_loop_gain": 1e4,
+    "U1.common_capacitance": 1.5e-12,
+    "U1.differential_capacitance": 0.7e-12,
+    "U1.output_resistance": 40.0,
+    "U1.voltage_noise": 6e-9,
+    "U1.voltage_noise_corner": 2e3,
+    "U1.current_noise": 2e-15,
+    "U1.current_noise_corner": 1e-9,
+}
 
 
 def topology() -> Topology:

@@ -54,6 +54,13 @@ def test_loads_within_one_class_of_rating_share_a_line_that_states_the_larger() 
     assert line.stress == {"power": 3e-4, "voltage": 2.0}
 
 
+def test_parts_without_a_name_are_like_no_other() -> None:
+    unnamed = replace(U1, part="")
+    bom = bill_of_materials([with_parts(unnamed, replace(unnamed, ref="U2"))])
+    assert [bom.references(line) for line in bom.lines] == ["U1", "U2"]
+    assert {row["Value"] for row in rows(bom_csv(bom))} == {"not named"}
+
+
 def test_capacitors_of_different_rating_do_not_share_a_line() -> None:
     other = replace(C1, ref="C2", required_rating={"voltage": 10.0})
     assert len(bill_of_materials([with_parts(C1, other)]).lines) == 2
@@ -116,10 +123,16 @@ def test_the_marker_is_in_the_heading() -> None:
 
 @pytest.mark.parametrize(
     "text",
-    ["=1+1", "+1", "-1", "@SUM(A1)", "  =1", "\t=1", "\r=1", "＝1", "MAR-7", "1-2", "1/2", "3.4.2026", "12:30", "2 A", "5 pm",
-     "0603", "1e5", "2E5", "10 %", "TRUE", "Sep 1", "1,5", "(12)"],
-)  # fmt: skip
-def test_what_a_spreadsheet_would_convert_is_marked_as_text(text: str) -> None:
+    ["=1+1", "+1", "-1", "@SUM(A1)", "  =1", "\t=1", "\r=1", "＝1", "MAR-7", "1-2", "1/2", "3.4.2026", "12:30"],
+)
+def test_what_would_be_computed_or_taken_for_a_date_is_marked_as_text(text: str) -> None:
+    assert harmless(text).startswith("'")
+
+
+@pytest.mark.parametrize(
+    "text", ["2 A", "5 pm", "0603", "1e5", "2E5", "10 %", "TRUE", "Sep 1", "1,5", "(12)", "$3", "1 000"]
+)
+def test_what_would_be_taken_for_a_number_or_a_time_is_marked_as_text(text: str) -> None:
     assert harmless(text).startswith("'")
 
 

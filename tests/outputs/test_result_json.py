@@ -27,9 +27,9 @@ SHAPE: dict[str, Any] = {
     "figures": (dict,),
     "parts": [
         {
-            "ref": TEXT, "kind": TEXT, "role": TEXT, "exact": NUMBER, "value": NUMBER, "unit": TEXT, "tolerance": NUMBER,
-            "absolute_tolerance": NUMBER, "characteristic": TEXT, "size": TEXT, "part": TEXT, "fitted": TRUTH,
-            "stress": (dict,), "required_rating": (dict,), "formula": TEXT, "source": TEXT,
+            "ref": TEXT, "kind": TEXT, "role": TEXT, "exact": NUMBER, "value": NUMBER, "unit": TEXT,
+            "tolerance": NUMBER, "absolute_tolerance": NUMBER, "characteristic": TEXT, "size": TEXT, "part": TEXT,
+            "fitted": TRUTH, "stress": (dict,), "required_rating": (dict,), "formula": TEXT, "source": TEXT,
         }
     ],
     "noise": [{"generator": TEXT, "output_rms": NUMBER, "share": NUMBER}],

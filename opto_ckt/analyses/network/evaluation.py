@@ -13,6 +13,7 @@ from opto_ckt.analyses.network.hurwitz import hurwitz_moments
 from opto_ckt.analyses.network.lanes import Array, Complex, horner, over_points
 from opto_ckt.analyses.network.modes import Modes, modes_of, poles_of
 from opto_ckt.analyses.network.scan import scan_points
+from opto_ckt.analyses.network.step import shape
 
 
 @dataclass(frozen=True)
@@ -104,6 +105,11 @@ class Evaluation:
     def modes(self) -> Modes:
         """Constant, poles and residues of the step response in scaled time."""
         return modes_of(self.denominator, self.numerator, self.scaled_poles)
+
+    @cached_property
+    def step_shape(self) -> tuple[Array, Array]:
+        """Rise time, in scaled time, and overshoot of the step response, re its final value."""
+        return shape(self.modes)
 
     @cached_property
     def scan(self) -> Array:

@@ -31,13 +31,19 @@ class Modes:
     constant: Array
 
     def response(self, time: Array, derivative: int = 0) -> Array:
-        """Step response or one of its time derivatives; `time` broadcasts against the lanes."""
+        """Step response or one of its time derivatives; of a conjugate pair one pole counts twice."""
         shape = np.broadcast_shapes(np.shape(time), self.constant.shape)
         value = np.zeros(shape) if derivative else np.broadcast_to(self.constant, shape).copy()
         poles = np.where(np.isnan(self.poles), -1.0, self.poles)
+        weights = np.where(poles.imag > 0, 2.0, np.where(poles.imag < 0, 0.0, 1.0))
         with np.errstate(over="ignore", invalid="ignore"):
-            for pole, residue in zip(poles, self.residues, strict=True):
-                value += (residue * pole**derivative * np.exp(pole * time)).real
+            for pole, residue in zip(poles, self.residues * weights, strict=True):
+                if not residue.any():
+                    continue
+                if not (pole.imag.any() or residue.imag.any()):
+                    value += residue.real * pole.real**derivative * np.exp(pole.real * time)
+                else:
+                    value += (residue * pole**derivative * np.exp(pole * time)).real
         return value
 
     def lanes(self, part: Lanes) -> Modes:

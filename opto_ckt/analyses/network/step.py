@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
 from math import ceil
 
 import numpy as np
@@ -15,26 +14,26 @@ POINTS_A_DECADE = 40
 EARLIEST, LATEST = 0.02, 40.0
 """Ends of the grid, in units of the shortest and of the longest time constant."""
 
+QUICK, FAINT = 1e-3, 1e-5
+"""Share of the largest residue below which a mode does not set the first time of the grid, or the last."""
+
 TOGETHER = 256  #: lanes looked at together
 
-Measure = Callable[[Modes, Array, Array, Array], Array]
+def shape(modes: Modes, reference: Array | None = None) -> tuple[Array, Array]:
+    """Rise time and overshoot of each lane.
 
+    Parameters
+    ----------
+    reference : level that counts as 100 %; the final value if None.
 
-def rise_time(modes: Modes, reference: Array | None) -> Array:
-    """Time from 10 % to 90 % of the reference level (the final value if None), in scaled time; nan if not reached."""
-    return _measured(_rise, modes, reference)
-
-
-def overshoot(modes: Modes, reference: Array | None) -> Array:
-    """Largest excess over the reference level (the final value if None), as a part of it."""
-    return _measured(_excess, modes, reference)
-
-
-def _measured(measure: Measure, modes: Modes, reference: Array | None) -> Array:
+    Returns
+    -------
+    Time from 10 % to 90 % in scaled time, nan if not reached; largest excess over the level, as a part of it.
+    """
     lanes = len(modes.constant)
-    result = np.zeros(lanes)
+    rise, excess = np.zeros(lanes), np.zeros(lanes)
     if not len(modes.poles):
-        return result
+        return rise, excess
     for start in range(0, lanes, TOGETHER):
         part = slice(start, start + TOGETHER)
         some = modes.lanes(part)
@@ -45,15 +44,18 @@ def _measured(measure: Measure, modes: Modes, reference: Array | None) -> Array:
             highest = np.argmax(np.abs(response), axis=0)
             level = np.copysign(reference[part], response[highest, np.arange(len(level))])
         with np.errstate(divide="ignore", invalid="ignore"):
-            result[part] = measure(some, time, response / level, level)
-    return result
+            rise[part] = _rise(some, time, response / level, level)
+            excess[part] = _excess(some, time, response / level, level)
+    return rise, excess
 
 
 def _grid(modes: Modes) -> Array:
-    """Times that cover every mode of each lane, shape (points, lanes)."""
+    """Times that cover every mode of each lane that is heard, shape (points, lanes)."""
+    share = np.abs(modes.residues) / np.maximum(np.abs(modes.residues).max(axis=0), 1e-300)
+    size = np.abs(modes.poles)
     with np.errstate(divide="ignore", invalid="ignore"):
-        earliest = EARLIEST / np.nanmax(np.abs(modes.poles), axis=0, initial=1e-30)
-        slowness = np.where(np.isnan(modes.poles), -np.inf, modes.poles.real)
+        earliest = EARLIEST / np.nanmax(np.where(share > QUICK, size, np.nan), axis=0, initial=1e-30)
+        slowness = np.where((share > FAINT) & ~np.isnan(size), modes.poles.real, -np.inf)
         latest = LATEST / np.clip(np.abs(slowness.max(axis=0)), 1e-12, 1e12)
     decades = np.log10(np.maximum(latest / earliest, 10.0))
     count = ceil(POINTS_A_DECADE * float(decades.max())) + 1

@@ -1,15 +1,13 @@
-"""What every laser driver shares: the side it sits on, the laser's limits, where it settles, what it must not exceed."""
+"""What every laser driver shares: limits of the laser, where it settles, what it must not exceed, what to warn of."""
 
 from __future__ import annotations
 
-from collections.abc import Mapping
-from typing import Literal, NamedTuple
+from typing import NamedTuple
 
 import numpy as np
 
 from opto_ckt.circuit import Bench
 from opto_ckt.derivation import Derivation
-from opto_ckt.errors import InfeasibleError
 from opto_ckt.formulas import laser
 from opto_ckt.formulas.formula import Real
 from opto_ckt.formulas.laser_heating import OperatingPoint, settle_at_current, settle_at_power
@@ -17,21 +15,8 @@ from opto_ckt.limits import Lanes, Limit, Values
 from opto_ckt.parts.laser import LaserData
 from opto_ckt.parts.record import facts
 from opto_ckt.request import LaserDriverRequest
+from opto_ckt.topology import SHORT
 from opto_ckt.units import write
-
-Side = Literal["low", "high"]
-
-SIDES: Mapping[str, Side | None] = {
-    "none": None,
-    "laser cathode with monitor anode": "high",
-    "laser cathode with monitor cathode": "high",
-    "laser anode with monitor cathode": "low",
-    "laser anode with monitor anode": "low",
-}
-"""Where the current is set, by the pins that are joined to the case: it hangs on the end that is free; None: either."""
-
-POLARITY: Mapping[str, int] = {"nmos": 1, "npn": 1, "pmos": -1, "pnp": -1}
-"""Of a pass transistor by its kind: +1 sinks from the low side, -1 sources from the high side."""
 
 READ = frozenset(
     {"slope_efficiency", "turn_on_voltage", "series_resistance", "capacitance", "junction_to_case", "coupling"}
@@ -40,6 +25,7 @@ READ = frozenset(
 
 TEMPERATURES = 9  #: tried between the ends of the range for the one at which the laser is brightest
 CURRENTS = 400  #: steps up to the largest current in the search for the power limit
+REFINEMENTS = 8  #: of the junction temperature at the limit found, each a tenth as far off or better
 INVISIBLE_FROM = 700e-9  #: of wavelength: the eye does not turn away from what it does not see [m]
 
 
@@ -54,32 +40,8 @@ class Forward(NamedTuple):
         return laser.forward_voltage(turn_on_voltage=self.turn_on, current=current, series_resistance=self.resistance)
 
 
-def side_of(request: LaserDriverRequest) -> Side:
-    """Where the current is set: as the case of the laser asks; where that is free, as the transistor does."""
-    free: Side = "low" if POLARITY[request.transistor.kind] > 0 else "high"
-    return SIDES[request.source.common] or free
-
-
-def refuse_wrong_side(request: LaserDriverRequest) -> None:
-    """Refuse a transistor that the pins of the laser leave no place for.
-
-    Raises
-    ------
-    InfeasibleError : an n-type transistor where the laser's cathode is joined to the case, or the other way round.
-    """
-    side, kind, common = side_of(request), request.transistor.kind, request.source.common
-    if (side == "low") == (POLARITY[kind] > 0):
-        return
-    suits = " or ".join(name for name, polarity in POLARITY.items() if (side == "low") == (polarity > 0))
-    raise InfeasibleError(
-        f"source.common = '{common}' leaves the {'cathode' if side == 'low' else 'anode'} of the laser to drive it by, on"
-        f" the {side} side, where the transistor's kind {kind} does not conduct",
-        [f"transistor.kind {suits}", "a laser with its other pin joined to the case, or none"],
-    )
-
-
 def laser_limits(request: LaserDriverRequest) -> dict[str, Limit]:
-    """Limits of what the sheet states as a curve, ageing in them; what a steady current does not depend on held still."""
+    """Limits of what the sheet states as a curve, ageing in them; the rest held still."""
     data, ageing = request.source, request.conditions.ageing
     found = {
         f"D1.{name}": Limit(limit.nominal, limit.nominal, limit.nominal)
@@ -92,7 +54,9 @@ def laser_limits(request: LaserDriverRequest) -> dict[str, Limit]:
         figure = data.threshold_figure if name == "threshold_current" else data.slope_efficiency
         return Limit(*request.assumed.get(figure_name, known[figure_name].assumed).limits(figure))
 
-    threshold = spread("threshold_current", "threshold_current" if data.threshold_minimum is None else "threshold_minimum")
+    threshold = spread(
+        "threshold_current", "threshold_current" if data.threshold_minimum is None else "threshold_minimum"
+    )
     slope = spread("slope_efficiency", "slope_efficiency")
     found["D1.threshold_current"] = Limit(
         threshold.nominal, threshold.low, threshold.high * (1 + ageing.threshold), threshold.assumed
@@ -111,7 +75,7 @@ def forward(values: Values, request: LaserDriverRequest, current: Real) -> Forwa
     position = values["D1.forward_position"]
     step = 1e-3 * np.maximum(current, 1e-6)
     at, above = (np.asarray(data.forward_voltage_at(current + rise, position)) for rise in (0.0, step))
-    resistance = np.maximum((above - at) / step, 0.0)
+    resistance = np.maximum((above - at) / step, SHORT)
     return Forward(at - current * resistance, resistance)
 
 
@@ -206,7 +170,7 @@ class Most(NamedTuple):
 
 
 def safe_current(request: LaserDriverRequest, bench: Bench, derivation: Derivation) -> Most:
-    """The sheet's largest current, or that at which the brightest laser passes its power limit, wherever that is least."""
+    """The sheet's largest current, or that at which the brightest laser passes its power limit, if that is less."""
     data = request.source
     currents = np.linspace(0.0, data.current_max, CURRENTS + 1)[:, None]
     temperatures = np.linspace(bench.low("temperature"), bench.high("temperature"), TEMPERATURES)
@@ -227,14 +191,19 @@ def safe_current(request: LaserDriverRequest, bench: Bench, derivation: Derivati
     first = np.where(passed.any(axis=0), passed.argmax(axis=0), CURRENTS)
     place = int(np.argmin(first))
     row = int(first[place])
+    dazzling = {**brightest, "temperature": float(temperatures[place])}
     junction = float(np.asarray(point.junction_temperature)[row, place])
+    for _ in range(REFINEMENTS):
+        threshold = float(data.threshold_at(junction, bench.low("D1.threshold_current")))
+        slope = float(data.slope_at(junction, bench.high("D1.slope_efficiency")))
+        bright = laser.current_for_power(power=data.power_max, threshold=threshold, slope=slope)
+        junction = float(settle(dazzling, request, bright).junction_temperature)
     at = write(float(temperatures[place]), "°C")
     current = derivation.compute(
         "largest current", laser.current_for_power,
         reason=f"brightest laser, {at}: the light reaches power_max {write(data.power_max, 'W')}",
         power=data.power_max,
-        threshold=float(data.threshold_at(junction, bench.low("D1.threshold_current"))),
-        slope=float(data.slope_at(junction, bench.high("D1.slope_efficiency"))),
+        threshold=threshold, slope=slope,
     )  # fmt: skip
     reason = f"at {write(current, 'A')} the brightest laser reaches power_max {write(data.power_max, 'W')} at {at}"
     return Most(min(current, data.current_max), reason, by_power=True)
@@ -254,8 +223,8 @@ def safety(request: LaserDriverRequest, brightest: float) -> tuple[str, ...]:
     unseen = "invisible, the eye does not turn away; " if wavelength >= INVISIBLE_FROM else ""
     look = "never look into a fibre end or port, cap what is open" if where == "fibre" else "never look into the beam"
     return (
-        f"laser light, {write(wavelength, 'm')}, up to {write(brightest, 'W')}: {unseen}{look}; its class is for a competent"
-        " person to find by the local rules",
+        f"laser light, {write(wavelength, 'm')}, up to {write(brightest, 'W')}: {unseen}{look}; its class is for a"
+        " competent person to find by the local rules",
         "the laser is sensitive to electrostatic discharge: short its pins until it is wired, work grounded",
     )
 

@@ -145,6 +145,7 @@ class MosfetPass:
             "control_source_capacitance": np.maximum(values["Q1.input_capacitance"] - reverse, 1e-15),
             "control_drain_capacitance": reverse,
             "channel_noise_factor": 2 / 3,
+            "gain_factor": beta,
             "control_current": 0.0,
         }
 

@@ -1,16 +1,9 @@
-"""Symbolic algebra: the designer's formulas, and a second road to every network function.
-
-Nothing here is on the way of sizing a design; sympy and lcapy are imported by this file alone.
-"""
+"""Network functions by algebra: quotients of polynomials in s from the nodal matrix, and the same by lcapy."""
 
 from __future__ import annotations
 
-import re
-from collections.abc import Callable, Iterator, Mapping
-from fractions import Fraction
+from collections.abc import Iterator, Mapping
 from functools import cached_property
-from inspect import signature
-from types import FunctionType
 from typing import Any
 
 import numpy as np
@@ -21,16 +14,6 @@ from sympy.polys.matrices import DomainMatrix
 from opto_ckt.analyses.network import GROUND, Expansion, Primitive
 
 S = sympy.Symbol("s")
-
-REBOUND = {"sqrt": sympy.sqrt, "log": sympy.log, "exp": sympy.exp, "pi": sympy.pi}
-
-CONSTANTS = {
-    "ELEMENTARY_CHARGE": sympy.Symbol("q", positive=True),
-    "BOLTZMANN": sympy.Symbol("k", positive=True),
-    "PLANCK": sympy.Symbol("h", positive=True),
-    "LIGHT_SPEED": sympy.Symbol("c", positive=True),
-}
-"""What a printed formula writes for the names of `opto_ckt.constants`."""
 
 
 class Symbols(Mapping[str, Any]):
@@ -185,55 +168,6 @@ def lcapy_transfer(
     return np.array([gain * complex(function(2j * np.pi * float(frequency))) for frequency in frequencies])
 
 
-def formula_expression(formula: Callable[..., Any]) -> Any:
-    """A closed form as an expression of symbols named as its parameters: the function itself, run on symbols.
-
-    Constants appear as q, k, h, c; decimal numbers as fractions.
-    """
-    symbols = {name: sympy.Symbol(name, positive=True) for name in signature(formula).parameters}
-    return sympy.nsimplify(_rebound(formula)(**symbols), rational=True)
-
-
-def coefficients(expression: Any) -> tuple[list[Any], list[Any]]:
-    """Numerator and denominator of a network function by powers of s, lowest first, each factored, with π as such."""
-    above, below = (sympy.Poly(part, S) for part in sympy.fraction(expression))
-    every = [factor for part in (above, below) for factor in _numbers(part)]
-    scale = max(map(abs, every)) * (-1 if all(factor < 0 for factor in _numbers(below)) else 1)
-    return _by_power(above, scale), _by_power(below, scale)
-
-
-def renamed(expression: Any, names: Mapping[str, str]) -> Any:
-    """The expression with symbols called by other names."""
-    symbols = expression.free_symbols - {S}
-    return expression.xreplace({one: sympy.Symbol(names.get(one.name, one.name), positive=True) for one in symbols})
-
-
-def latex(expression: Any, names: Mapping[str, str] | None = None) -> str:
-    """An expression in LaTeX; `names` gives the LaTeX of symbols by their name."""
-    written = {sympy.Symbol(name, positive=True): text for name, text in (names or {}).items()}
-    return str(sympy.latex(_shortened(expression), symbol_names=written))
-
-
-def readable(expression: Any) -> str:
-    """An expression as one line of plain text; numbers that are no short fraction to six digits.
-
-    >>> x, y = sympy.symbols("x y")
-    >>> readable(x**2 * y / 3)
-    'x^2·y/3'
-    """
-    written = str(sympy.sstr(_shortened(expression))).replace("**", "^").replace("*", "·")
-    return re.sub(r"\bpi\b", "π", written)
-
-
-def _rebound(formula: Callable[..., Any]) -> Callable[..., Any]:
-    """The same function with the names it uses bound to what takes symbols."""
-    if not isinstance(formula, FunctionType):
-        raise TypeError(f"{formula!r} is not a plain function")
-    rebound = FunctionType(formula.__code__, formula.__globals__ | REBOUND | CONSTANTS, formula.__name__)
-    rebound.__kwdefaults__ = formula.__kwdefaults__
-    return rebound
-
-
 def _fraction(primitive: Primitive, symbols: Symbols) -> tuple[Any, Any]:
     """Numerator and denominator of what a primitive enters into the matrix."""
     if primitive.kind == "V":
@@ -245,32 +179,3 @@ def _fraction(primitive: Primitive, symbols: Symbols) -> tuple[Any, Any]:
 
 def _collected(expression: Any) -> Any:
     return sympy.Poly(sympy.expand(expression), S).as_expr()
-
-
-def _numbers(polynomial: Any) -> list[Any]:
-    """Factors of all products that a polynomial in s is a sum of."""
-    symbols = sorted(polynomial.free_symbols_in_domain, key=str) or [S]
-    return [factor for part in polynomial.all_coeffs() if part for factor in sympy.Poly(part, *symbols).coeffs()]
-
-
-def _by_power(polynomial: Any, scale: Any) -> list[Any]:
-    def with_pi(part: Any) -> Any:
-        terms = sympy.Poly(part, *(sorted(part.free_symbols, key=str) or [S])).as_expr().as_ordered_terms()
-        split = [term.as_coeff_Mul() for term in terms]
-        return sympy.factor(sympy.Add(*(_circular(number / scale) * rest for number, rest in split)))
-
-    return [with_pi(part) for part in reversed(polynomial.all_coeffs())]
-
-
-def _circular(number: Any) -> Any:
-    """A number as a short fraction times the power of 2π that leaves one; as it is where none does."""
-    for power in range(13):
-        fraction = sympy.Rational(Fraction(float(number) * (2 * np.pi) ** power).limit_denominator(64))
-        if abs(float(number) * (2 * np.pi) ** power - float(fraction)) <= 1e-9 * abs(float(fraction)):
-            return fraction / (2 * sympy.pi) ** power
-    return number
-
-
-def _shortened(expression: Any) -> Any:
-    long = [number for number in expression.atoms(sympy.Rational) if number.q > 10_000]
-    return expression.xreplace({number: sympy.Float(number, 6) for number in long})

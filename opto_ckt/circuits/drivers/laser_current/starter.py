@@ -10,8 +10,8 @@ circuit  = "laser-current"
 [source]                                             # the laser; power and slope at `plane`
 wavelength                 = "1310 nm"
 plane                      = "fibre"                 # facet | fibre
-threshold_current          = { typ = "9 mA", max = "14 mA" }
-characteristic_temperature = "60 K"                  # T0
+threshold_current          = { min = "5 mA", typ = "8 mA", max = "11 mA" }
+characteristic_temperature = "70 K"                  # T0
 slope_efficiency           = { min = "0.04 W/A", typ = "0.06 W/A", max = "0.08 W/A" }
 slope_temperature          = "250 K"                 # T1
 turn_on_voltage            = { min = "0.85 V", typ = "0.92 V", max = "1.0 V" }
@@ -43,8 +43,8 @@ junction_to_ambient      = "350 K/W"
 junction_max             = "150 °C"
 
 [amplifier]
-gain_bandwidth           = "8 MHz"
-second_pole              = "20 MHz"
+gain_bandwidth           = "5 MHz"
+second_pole              = "25 MHz"
 open_loop_gain           = { min = "90 dB", typ = "105 dB" }
 common_capacitance       = "4 pF"
 differential_capacitance = "2 pF"
@@ -82,7 +82,7 @@ reverse_voltage_max = "30 V"
 capacitance         = "10 pF"
 
 [signal]
-current      = "25 mA"                               # or power = "1 mW"
+current      = "30 mA"                               # or power = "1 mW"
 enable       = true                                  # a logic input switches the laser; open: off
 startup_time = "10 ms"                               # to 95 % of the current
 
@@ -90,12 +90,12 @@ startup_time = "10 ms"                               # to 95 % of the current
 temperature     = { min = "-20 °C", typ = "25 °C", max = "60 °C" }
 supply          = { positive = "5 V", tolerance = "5 %" }
 sink_resistance = "40 K/W"                           # case of the laser to air
-ageing          = { threshold = "30 %" }
+ageing          = { threshold = "20 %" }
 
 [require]                                            # any figure that the circuit offers, min and/or max
 current_error     = { max = "6 %" }
 compliance_margin = { min = "50 mV" }
-phase_margin      = { min = "55 °" }
+phase_margin      = { min = "50 °" }
 peaking           = { max = "0.5 dB" }
 loop_bandwidth    = { min = "50 kHz" }
 startup_time      = { max = "10 ms" }

@@ -2,7 +2,10 @@
 
 from __future__ import annotations
 
-from opto_ckt.circuits.drivers.laser import Side, refuse_wrong_side, side_of
+from collections.abc import Callable
+from dataclasses import replace
+
+from opto_ckt.circuits.drivers.side import Side, refuse_wrong_side, side_of
 from opto_ckt.parts.transistor import BipolarData
 from opto_ckt.request import LaserDriverRequest
 from opto_ckt.topology import (
@@ -28,7 +31,7 @@ Drawing = tuple[list[Element], list[tuple[Point, Point]], list[tuple[Point, str]
 
 
 def topology(request: LaserDriverRequest) -> Topology:
-    """Reference, divider, op amp, pass transistor, sense resistor, laser, supply filter; the disable input if asked for.
+    """Reference, divider, op amp, pass transistor, sense resistor, laser, filter; the disable input if asked for.
 
     Raises
     ------
@@ -78,18 +81,7 @@ def _loop(request: LaserDriverRequest, side: Side) -> Drawing:
         Resistor("R1", "sense", near, role="sense", at=p(18.8, 1), to=p(18.8, -1)),
         Resistor("R7", "laser", "drain", role="fail-safe", at=p(18.8, 9.6), to=p(18.8, 7.6)),
     ]  # fmt: skip
-    if low:
-        elements += [
-            Reference("U2", cathode="ref", anode=GROUND, role="reference", table="reference", at=p(1, 5.5), to=p(1, 3.5)),
-            LaserDiode("D1", anode="rail", cathode="laser", role="laser", table="source", at=p(18.8, 12.6), to=p(18.8, 10.6),
-                       flipped=True),
-        ]  # fmt: skip
-    else:
-        elements += [
-            Reference("U2", cathode="rail", anode="ref", role="reference", table="reference", at=p(1, 3.5), to=p(1, 5.5)),
-            LaserDiode("D1", anode="laser", cathode=GROUND, role="laser", table="source", at=p(18.8, 10.6), to=p(18.8, 12.6),
-                       flipped=True),
-        ]  # fmt: skip
+    elements += _ends(p, low=low)
     wires = [
         (p(1, 8), p(1, 5.5)),
         (p(1, 6.5), p(2, 6.5)),
@@ -130,6 +122,18 @@ def _loop(request: LaserDriverRequest, side: Side) -> Drawing:
     return elements, wires, marks
 
 
+def _ends(p: Callable[[float, float], Point], *, low: bool) -> tuple[Reference, LaserDiode]:
+    """Reference at the near rail, laser at the far one; current flows downwards through both on either side."""
+    top, foot, lit, unlit = p(1, 5.5), p(1, 3.5), p(18.8, 12.6), p(18.8, 10.6)
+    if low:
+        reference = Reference("U2", cathode="ref", anode=GROUND, role="reference", table="reference", at=top, to=foot)
+        laser = LaserDiode("D1", anode="rail", cathode="laser", role="laser", table="source", at=lit, to=unlit)
+    else:
+        reference = Reference("U2", cathode="rail", anode="ref", role="reference", table="reference", at=foot, to=top)
+        laser = LaserDiode("D1", anode="laser", cathode=GROUND, role="laser", table="source", at=unlit, to=lit)
+    return reference, replace(laser, flipped=True)
+
+
 def _signal_resistor(outer: Point, inner: Point, *, low: bool) -> Resistor:
     """R9, named so that a signal in series with it raises the current on either side."""
     role = "input protection"
@@ -159,37 +163,47 @@ def _filter(request: LaserDriverRequest, side: Side) -> Drawing:
     if request.conditions.supply.negative:
         elements += [
             Supply("VN", "negative", value="supply.negative"),
-            Capacitor("C9", GROUND, "negative", role="bypass", stock="bypass", at=(x + 8, y - 0.5), to=(x + 8, y - 2.5)),
+            Capacitor(
+                "C9", GROUND, "negative", role="bypass", stock="bypass", at=(x + 8, y - 0.5), to=(x + 8, y - 2.5)
+            ),
         ]
         marks += [((x + 8, y - 0.5), GROUND), ((x + 8, y - 2.5), "negative")]
     return elements, wires, marks
 
 
 def _disable(request: LaserDriverRequest, side: Side) -> Drawing:
-    """Input that shorts the set voltage unless it is pulled low: open, or without its own supply, it keeps the laser off."""
+    """Input that shorts the set voltage unless it is pulled low; while it is open the laser stays off."""
     if not request.signal.enable:
         return [], [], []
-    inlet: list[Element] = [Supply("VE", "off", value="control.disable")]
-    if side == "low":
-        return (
-            [
-                *inlet,
-                Terminal("DISABLE", "off", at=(3, 0)),
-                Resistor("R11", "rail", "off", role="pull-up", at=(5.5, 2), to=(5.5, 0)),
-                Switch("Q2", drain="set", control="off", source=GROUND, role="disable switch", at=(7.8, 4), facing=RIGHT),
-            ],
-            [((3, 0), (7.8, 0)), ((7.8, 0), (7.8, 4)), ((8.8, 5), (8.8, 6.5))],
-            [((5.5, 2), "rail"), ((8.8, 3), GROUND)],
-        )
+    return _disable_low() if side == "low" else _disable_high()
+
+
+def _disable_low() -> Drawing:
+    role = "disable switch, n-channel"
     return (
         [
-            *inlet,
+            Supply("VE", "off", value="control.disable"),
+            Terminal("DISABLE", "off", at=(3, 0)),
+            Resistor("R11", "rail", "off", role="pull-up", at=(5.5, 2), to=(5.5, 0)),
+            Switch("Q2", drain="set", control="off", source=GROUND, role=role, at=(7.8, 4), facing=RIGHT),
+        ],
+        [((3, 0), (7.8, 0)), ((7.8, 0), (7.8, 4)), ((8.8, 5), (8.8, 6.5))],
+        [((5.5, 2), "rail"), ((8.8, 3), GROUND)],
+    )
+
+
+def _disable_high() -> Drawing:
+    """The switch sits at the rail: Q3 brings the input's level up to it."""
+    shift, role = "level shift, n-channel", "disable switch, p-channel"
+    switch = Switch("Q2", drain="set", control="shift", source="rail", role=role, polarity=-1, at=(7.6, -4))
+    return (
+        [
+            Supply("VE", "off", value="control.disable"),
             Terminal("DISABLE", "off", at=(2.5, 0.6)),
             Resistor("R11", "rail", "off", role="pull-up", at=(4, 3.2), to=(4, 1.2)),
-            Switch("Q3", drain="shift", control="off", source=GROUND, role="level shift", at=(5.2, 0.6), facing=RIGHT),
+            Switch("Q3", drain="shift", control="off", source=GROUND, role=shift, at=(5.2, 0.6), facing=RIGHT),
             Resistor("R12", "rail", "shift", role="pull-up", at=(7.6, 4.2), to=(7.6, 2.2)),
-            Switch("Q2", drain="set", control="shift", source="rail", role="disable switch", polarity=-1, at=(7.6, -4),
-                   facing=RIGHT, flipped=True),
+            replace(switch, facing=RIGHT, flipped=True),
         ],
         [
             ((2.5, 0.6), (5.2, 0.6)),
@@ -199,5 +213,4 @@ def _disable(request: LaserDriverRequest, side: Side) -> Drawing:
             ((8.6, -5), (8.6, -6.5)),
         ],
         [((4, 3.2), "rail"), ((6.2, -0.4), GROUND), ((7.6, 4.2), "rail"), ((8.6, -3), "rail")],
-    )  # fmt: skip
-
+    )

@@ -2,19 +2,18 @@
 
 from __future__ import annotations
 
-from itertools import product
 from math import inf
 
-import numpy as np
-
 from opto_ckt.circuit import Bench, Fitted
-from opto_ckt.circuits.drivers.laser import side_of
-from opto_ckt.circuits.drivers.laser_current_budget import GATE, Share, budget, resistor_spread
+from opto_ckt.circuits.drivers.laser_current.budget import Share, budget
+from opto_ckt.circuits.drivers.laser_current.compensation import compensation
+from opto_ckt.circuits.drivers.laser_current.slack import GATE, resistor_spread
 from opto_ckt.circuits.drivers.pass_transistor import pass_transistor
+from opto_ckt.circuits.drivers.side import side_of
 from opto_ckt.derivation import Derivation
 from opto_ckt.errors import InfeasibleError
 from opto_ckt.formulas import driver, driver_loop, laser, laser_heating, reference, supply_filter, transistor
-from opto_ckt.limits import Lanes, Limit
+from opto_ckt.parts.transistor import MosfetData
 from opto_ckt.preferred import DIELECTRICS
 from opto_ckt.request import LaserDriverRequest
 from opto_ckt.units import write
@@ -28,16 +27,7 @@ FILTER_CAPACITANCE, FILTER_INDUCTANCE = 10e-6, 10e-6
 
 DAMPING = 0.7  #: least of the supply filter [1]
 SETTLED = 0.95  #: of the current, at the end of the soft start
-SCAN = np.geomspace(1 / 30, 30, 41)  #: C1 tried, as multiples of the closed form
-ALLOWED_PEAKING, LEAST_MARGIN = 0.5, 60.0
-"""Where nothing is asked for: common practice [dB, °]"""
-
-DECIDES = (
-    "Q1.transconductance", "Q1.input_capacitance", "Q1.transition_frequency", "Q1.current_gain",
-    "U1.gain_bandwidth", "U1.second_pole", "U1.output_resistance",
-)  # fmt: skip
-"""Limits whose combinations make the corners of the loop."""
-
+NEAR = 1.013  #: a window that holds one or two values of E96
 FORMULAS = (
     driver.sense_resistance,
     driver.fail_safe_resistance,
@@ -66,11 +56,7 @@ def propose(request: LaserDriverRequest, derivation: Derivation, bench: Bench) -
     ------
     InfeasibleError : laser, supply, reference or amplifier leave no values.
     """
-    if bench.nominal("U1.minimum_stable_gain") > 1:
-        raise InfeasibleError(
-            f"the noise gain falls to 1 through C1, U1 is stable from {bench.nominal('U1.minimum_stable_gain'):g} on",
-            ["an amplifier that is stable at a gain of 1"],
-        )
+    _refuse_unsuited(request, bench)
     share = budget(request, derivation, bench)
     sizing = _Sizing(request, derivation)
     _current(sizing, bench, share)
@@ -78,8 +64,28 @@ def propose(request: LaserDriverRequest, derivation: Derivation, bench: Bench) -
     _common(sizing)
     _slow(sizing, bench)
     _filter(sizing)
-    c1 = _compensation(sizing, bench)
-    return (*sizing.parts.values(), c1)
+    others = {ref: part.exact for ref, part in sizing.parts.items()}
+    return (*sizing.parts.values(), compensation(request, derivation, bench, others))
+
+
+def _refuse_unsuited(request: LaserDriverRequest, bench: Bench) -> None:
+    """Refuse an op amp that needs gain, and a transistor that the supply would break."""
+    gain, supply, data = bench.nominal("U1.minimum_stable_gain"), bench.high("supply.positive"), request.transistor
+    if gain > 1:
+        raise InfeasibleError(
+            f"the noise gain falls to 1 through C1, U1 is stable from {gain:g} on",
+            ["an amplifier that is stable at a gain of 1"],
+        )
+    span = supply - bench.low("supply.negative")
+    limits = {"voltage_max": (data.voltage_max, supply)}
+    if isinstance(data, MosfetData):
+        limits["gate_voltage_max"] = (data.gate_voltage_max, span)
+    for name, (limit, reached) in limits.items():
+        if reached > limit:
+            raise InfeasibleError(
+                f"a fault puts {write(reached, 'V')} on the transistor, its {name} is {write(limit, 'V')}",
+                [f"transistor.{name} ≥ {write(reached, 'V')}", "a lower conditions.supply"],
+            )
 
 
 class _Sizing:
@@ -143,7 +149,7 @@ def _reference(sizing: _Sizing, bench: Bench, share: Share) -> None:
     if "R2" in request.fixed:
         lower = request.fixed["R2"] * share.sense / (voltage - share.sense)
     sizing.fit(
-        "R3", lower, "resistors", low=0.99 * lower, high=1.01 * lower,
+        "R3", lower, "resistors", low=lower / NEAR, high=lower * NEAR,
         why=f"{write(share.sense, 'V')} at {write(DIVIDER_CURRENT, 'A')}, common practice",
     )  # fmt: skip
     upper = derivation.compute(
@@ -156,13 +162,16 @@ def _reference(sizing: _Sizing, bench: Bench, share: Share) -> None:
     if supply <= highest:
         raise InfeasibleError(
             f"the lowest supply, {write(supply, 'V')}, does not feed a reference of {write(highest, 'V')}",
-            [f"reference.voltage ≤ {write(0.7 * supply, 'V')}", f"conditions.supply.positive ≥ {write(1.5 * highest, 'V')}"],
+            [
+                f"reference.voltage ≤ {write(0.7 * supply, 'V')}",
+                f"conditions.supply.positive ≥ {write(1.5 * highest, 'V')}",
+            ],
         )
     feed = derivation.compute(
         "R6",
         driver.series_resistance,
-        reason=f"({write(supply, 'V')} - {write(highest, 'V')}) / {write(drawn, 'A')}: reference and divider fed at the lowest"
-        " supply",
+        reason=f"({write(supply, 'V')} - {write(highest, 'V')}) / {write(drawn, 'A')}: reference and divider fed at"
+        " the lowest supply",
         supply=supply,
         switch_drop=0.0,
         forward_voltage=highest,
@@ -176,10 +185,8 @@ def _common(sizing: _Sizing) -> None:
     """Values by common practice."""
     lead = sizing.known("R4", SENSE_LEAD)
     sizing.fit("R4", SENSE_LEAD, "resistors", SENSE_LEAD, SENSE_LEAD, "common practice: lets C1 take over the loop")
-    sizing.fit(
-        "R9", lead, "resistors", lead, lead, "like R4: equal drops of the input bias currents; keeps C2 from feeding U1's"
-        " input when the supply fails",
-    )  # fmt: skip
+    why = "like R4: equal drops of the input bias currents; keeps C2 from feeding U1's input when the supply fails"
+    sizing.fit("R9", lead, "resistors", lead, lead, why)
     sizing.fit("R5", GATE, "resistors", GATE, GATE, "common practice: parts U1 from the capacitance of Q1")
     if sizing.request.signal.enable:
         why = "common practice: an open input keeps the laser off"
@@ -234,70 +241,3 @@ def _filter(sizing: _Sizing) -> None:
     )  # fmt: skip
     exact /= 1 + resistor_spread(request)
     sizing.fit("R8", exact, "resistors", low=0.9 * exact, high=exact)
-
-
-def _compensation(sizing: _Sizing, bench: Bench) -> Fitted:
-    """C1: the least that keeps the loop calm at every corner, the most that leaves it fast enough, and between them.
-
-    Raises
-    ------
-    InfeasibleError : no C1 makes the loop stable.
-    """
-    request, series = sizing.request, sizing.request.preferred.capacitors.series
-    if "C1" in request.fixed:
-        sizing.derivation.note("C1", "fixed in the design file")
-        return Fitted("C1", request.fixed["C1"], series, fixed=True)
-    required = request.require.get("loop_bandwidth")
-    wanted = (required.min or 0.0) if required is not None else 0.0
-    start_bandwidth = wanted or bench.nominal("U1.gain_bandwidth") / 20
-    start = driver_loop.compensation_capacitance(compensation_resistance=sizing["R4"], bandwidth=start_bandwidth)
-    tried = float(start) * SCAN
-    margin, peaking, bandwidth = _worst(sizing, bench, tried)
-    calm = np.flatnonzero((margin >= _asked(request, "phase_margin", LEAST_MARGIN)) & (peaking <= _allowed(request)))
-    if not (margin > 0).any():
-        raise InfeasibleError(
-            "no C1 makes the loop stable at every corner", ["U1 second pole higher", "Q1 input capacitance lower"]
-        )
-    quick = np.flatnonzero(bandwidth >= wanted)
-    low = float(tried[calm[0]]) if len(calm) else inf
-    high = (float(tried[quick[-1]]) if len(quick) else float(tried[0])) if wanted else inf
-    tolerance = request.preferred.capacitors.tolerance
-    low, high = low * (1 + tolerance), high / (1 + tolerance)
-    if low == inf:
-        aim = float(tried[int(np.argmax(margin))])
-    else:
-        aim = float(np.sqrt(low * high)) if high < inf else 2 * low
-    edges = " … ".join(write(edge, "F") if np.isfinite(edge) else "open" for edge in (low, high))
-    said = f"window over corners {edges}: calm below, {'fast enough' if wanted else 'nothing asked for'} above"
-    if low > high:
-        said += "; the window is empty"
-    sizing.derivation.compute(
-        "C1", driver_loop.compensation_capacitance, reason=said,
-        compensation_resistance=sizing["R4"], bandwidth=1 / (2 * np.pi * sizing["R4"] * aim),
-    )  # fmt: skip
-    inside = low <= high
-    return Fitted("C1", aim, series, low=max(low, aim / 1.3) if inside else 0.0, high=min(high, aim * 1.3) if inside else inf)
-
-
-def _asked(request: LaserDriverRequest, name: str, otherwise: float) -> float:
-    limit = request.require.get(name)
-    return otherwise if limit is None or limit.min is None else max(limit.min, otherwise)
-
-
-def _allowed(request: LaserDriverRequest) -> float:
-    limit = request.require.get("peaking")
-    return ALLOWED_PEAKING if limit is None or limit.max is None else limit.max
-
-
-def _worst(sizing: _Sizing, bench: Bench, tried: Lanes) -> tuple[Lanes, Lanes, Lanes]:
-    """Least phase margin, most peaking and least bandwidth over the corners of the loop, along the values of C1."""
-    names = [name for name in DECIDES if isinstance(bench.limits.get(name), Limit) and bench.limits[name].varies]
-    corners = [*product(*((bench.low(name), bench.high(name)) for name in names)), [bench.nominal(n) for n in names]]
-    values = {ref: part.exact for ref, part in sizing.parts.items()}
-    lanes = {name: np.repeat([corner[i] for corner in corners], len(tried)) for i, name in enumerate(names)}
-    found = bench.evaluate({**values, **lanes, "C1": np.tile(tried, len(corners))})
-    shape = (len(corners), len(tried))
-    margin = np.nan_to_num(found["phase_margin"], nan=-inf).reshape(shape).min(axis=0)
-    peaking = np.nan_to_num(found["peaking"], nan=inf).reshape(shape).max(axis=0)
-    bandwidth = np.nan_to_num(found["loop_bandwidth"], nan=0.0).reshape(shape).min(axis=0)
-    return margin, peaking, bandwidth

@@ -1,20 +1,25 @@
-"""Supply of the constant-current laser driver shared out: fail-safe resistor, sense voltage, drive of the transistor."""
+"""Supply of the constant-current laser driver shared out: fail-safe resistor, sense voltage, the transistor's drive."""
 
 from __future__ import annotations
 
 from collections.abc import Callable
-from typing import Literal, NamedTuple
+from typing import NamedTuple
 
 import numpy as np
 
 from opto_ckt.circuit import Bench
-from opto_ckt.circuits.drivers.laser import Most, asked_current, forward, safe_current, side_of
-from opto_ckt.circuits.drivers.pass_transistor import pass_transistor
-from opto_ckt.constants import ROOM_TEMPERATURE
+from opto_ckt.circuits.drivers.laser import Most, asked_current, safe_current
+from opto_ckt.circuits.drivers.laser_current.slack import (
+    STEP,
+    Sharing,
+    current_spread,
+    offset_error,
+    resistor_spread,
+)
+from opto_ckt.circuits.drivers.side import side_of
 from opto_ckt.derivation import Derivation
 from opto_ckt.errors import InfeasibleError
 from opto_ckt.formulas import driver
-from opto_ckt.limits import Limit
 from opto_ckt.preferred import CHIP_RESISTORS
 from opto_ckt.request import LaserDriverRequest
 from opto_ckt.units import percent, write
@@ -22,8 +27,6 @@ from opto_ckt.units import percent, write
 SENSE_LEAST, SENSE_MOST = 0.1, 0.5
 """Sense voltage: below, noise and offset; above, heat and lost compliance; common practice [V]"""
 
-LEAST_SERIES = 1.0  #: R7 where nothing asks for one: a place to measure the current at [Ω]
-STEP = 1.025  #: from one E96 value to the next
 STEER = 0.9  #: highest share of the reference voltage that a divider is set to
 FURTHEST = 8.0  #: how far a supply or a current is moved in the search for one that would do
 
@@ -36,13 +39,6 @@ class Share(NamedTuple):
     most: Most
     sense: float  #: voltage over R1 [V]
     series: tuple[float, float]  #: R7, least and most [Ω]
-
-
-class Slack(NamedTuple):
-    """Supply left over at the worst corner: on the way of the current, and of the op amp's drive. [V]"""
-
-    path: float
-    drive: float
 
 
 def budget(request: LaserDriverRequest, derivation: Derivation, bench: Bench) -> Share:
@@ -65,7 +61,7 @@ def budget(request: LaserDriverRequest, derivation: Derivation, bench: Bench) ->
                 *(["conditions.temperature.min higher"] if most.by_power else []),
             ],
         )
-    share = _Sharing(request, bench, most)
+    share = Sharing(request, bench, most)
     _refuse_low_supply(share, asked, worst)
     least = share.least_series(1.0)
     sense = _sense_voltage(share, derivation, asked, worst)
@@ -75,84 +71,7 @@ def budget(request: LaserDriverRequest, derivation: Derivation, bench: Bench) ->
     return Share(asked, worst, most, sense, (least, max(high, least * STEP)))
 
 
-def resistor_spread(request: LaserDriverRequest) -> float:
-    """Tolerance and temperature of one resistor, relative."""
-    resistors, temperature = request.preferred.resistors, request.conditions.temperature
-    farthest = max(abs(end - ROOM_TEMPERATURE) for end in (temperature.low, temperature.high))
-    return resistors.tolerance + resistors.temperature_coefficient * farthest
-
-
-def current_spread(request: LaserDriverRequest, bench: Bench) -> float:
-    """Spread of the current by reference, sense resistor and the divider's two, all against it; offset apart. [1]"""
-    return bench.high("U2.voltage") / bench.nominal("U2.voltage") - 1 + 3 * resistor_spread(request)
-
-
-def offset_error(request: LaserDriverRequest, bench: Bench) -> float:
-    """Largest offset of the op amp with its drift. [V]"""
-    temperature = request.conditions.temperature
-    farthest = max(abs(end - ROOM_TEMPERATURE) for end in (temperature.low, temperature.high))
-    drift = bench.high("U1.offset_drift") if "U1.offset_drift" in bench.limits else 0.0
-    return bench.high("U1.offset_voltage") + drift * farthest
-
-
-def ends(bench: Bench, level: Literal["low", "high"]) -> dict[str, float]:
-    """Every limit at its low or its high end."""
-    return {name: getattr(limit, level) for name, limit in bench.limits.items() if isinstance(limit, Limit)}
-
-
-class _Sharing:
-    """The budget at the lowest supply, laser and transistor where they need most."""
-
-    def __init__(self, request: LaserDriverRequest, bench: Bench, most: Most) -> None:
-        self.request, self.bench, self.most = request, bench, most
-        low, high = ends(bench, "low"), ends(bench, "high")
-        weak = ("Q1.transconductance", "Q1.current_gain")
-        self.transistor = high | {name: low[name] for name in weak if name in low}
-        self.low, self.high = low, high
-        required = request.require.get("compliance_margin")
-        self.margin = 0.0 if required is None else required.min or 0.0
-        self.spread = current_spread(request, bench)
-
-    def laser_voltage(self, level: Literal["low", "high"], current: float) -> float:
-        """Forward voltage at a current, of the laser that has least or most of it. [V]"""
-        return float(forward(getattr(self, level), self.request, current).at(current))
-
-    def least_series(self, scale: float) -> float:
-        """R7 before rounding, its tolerance in it, at a supply so many times that of the design. [Ω]"""
-        fixed = self.request.fixed.get("R7")
-        if fixed is not None:
-            return fixed
-        exact = driver.fail_safe_resistance(
-            supply=self.high["supply.positive"] * scale,
-            forward_voltage=self.laser_voltage("low", self.most.current),
-            current_limit=self.most.current,
-            on_resistance=0.0,
-        )
-        return max(float(exact) / (1 - resistor_spread(self.request)), LEAST_SERIES)
-
-    def slack(self, worst: float, sense: float, scale: float = 1.0) -> Slack:
-        """What is left over with so much sense voltage, at a supply so many times that of the design."""
-        model, values = pass_transistor(self.request.transistor), self.transistor
-        rail = self.low["supply.positive"] * scale - worst * self.high["L1.resistance"]
-        most_sense = sense * (1 + self.spread) + self.high["U1.offset_voltage"]
-        if side_of(self.request) == "low":
-            drive = rail - self.high["U1.swing_to_positive"]
-        else:
-            drive = rail - self.high["U1.swing_to_negative"] + abs(self.high["supply.negative"])
-        drop = float(model.control_current(values, np.asarray(worst))) * self.request.fixed.get("R5", GATE)
-        left = drive - drop - most_sense
-        across = float(model.least_across(values, np.asarray(worst), np.asarray(left)))
-        series = self.least_series(scale) * STEP * (1 + resistor_spread(self.request))
-        return Slack(
-            path=rail - self.laser_voltage("high", worst) - worst * series - most_sense - across,
-            drive=left - float(model.control_voltage(values, np.asarray(worst), np.asarray(np.inf))),
-        )
-
-
-GATE = 100.0  #: between op amp and gate or base, common practice [Ω]
-
-
-def _refuse_low_supply(share: _Sharing, asked: float, worst: float) -> None:
+def _refuse_low_supply(share: Sharing, asked: float, worst: float) -> None:
     slack = share.slack(worst, SENSE_LEAST)
     short = min(slack)
     if short >= 0:
@@ -166,13 +85,16 @@ def _refuse_low_supply(share: _Sharing, asked: float, worst: float) -> None:
             "sense voltage": SENSE_LEAST,
         }
         spent = ", ".join(f"{name} {write(volts, 'V')}" for name, volts in parts.items())
-        reason = f"the lowest supply, {lowest}, is {write(-short, 'V')} short at {write(worst, 'A')}: {spent}, transistor the rest"
+        reason = f"the lowest supply, {lowest}, is {write(-short, 'V')} short at {write(worst, 'A')}: {spent},"
+        reason += " transistor the rest"
     else:
-        reason = f"the op amp, at the lowest supply of {lowest}, is {write(-short, 'V')} short of driving the transistor"
+        reason = (
+            f"the op amp, at the lowest supply of {lowest}, is {write(-short, 'V')} short of driving the transistor"
+        )
     raise InfeasibleError(reason, _remedies(share, asked, worst))
 
 
-def _remedies(share: _Sharing, asked: float, worst: float) -> list[str]:
+def _remedies(share: Sharing, asked: float, worst: float) -> list[str]:
     """A supply that would do, a current that would do, and how much longer the laser would have to stand."""
     supply = _first(lambda scale: min(share.slack(worst, SENSE_LEAST, scale)) >= 0)
     found = []
@@ -180,14 +102,15 @@ def _remedies(share: _Sharing, asked: float, worst: float) -> list[str]:
         nominal = share.bench.nominal("supply.positive") * supply
         beyond = nominal * (1 + share.request.conditions.supply.tolerance) > share.request.amplifier.supply_max
         found.append(
-            f"conditions.supply.positive ≥ {write(nominal, 'V')}" + (" with an amplifier that stands it" if beyond else "")
+            f"conditions.supply.positive ≥ {write(nominal, 'V')}"
+            + (" with an amplifier that stands it" if beyond else "")
         )
     current = _first(lambda scale: min(share.slack(worst / scale, SENSE_LEAST)) >= 0)
     if current is not None:
         found.append(f"signal.current ≤ {write(asked / current, 'A')}")
 
     def stands(scale: float) -> bool:
-        hardier = _Sharing(share.request, share.bench, share.most._replace(current=share.most.current * scale))
+        hardier = Sharing(share.request, share.bench, share.most._replace(current=share.most.current * scale))
         return min(hardier.slack(worst, SENSE_LEAST)) >= 0
 
     stronger = _first(stands)
@@ -212,7 +135,7 @@ def _first(does: Callable[[float], bool]) -> float | None:
     return met
 
 
-def note_series(share: _Sharing, derivation: Derivation) -> None:
+def note_series(share: Sharing, derivation: Derivation) -> None:
     """How R7 came about; the transistor and the sense resistor count as shorted."""
     if "R7" in share.request.fixed:
         derivation.note("R7", "fixed in the design file")
@@ -221,8 +144,8 @@ def note_series(share: _Sharing, derivation: Derivation) -> None:
     derivation.compute(
         "R7",
         driver.fail_safe_resistance,
-        reason=f"({write(supply, 'V')} - {write(voltage, 'V')}) / {write(share.most.current, 'A')}, Q1 and R1 counted as"
-        f" shorted, and {percent(resistor_spread(share.request))} tolerance on top: {share.most.reason}",
+        reason=f"({write(supply, 'V')} - {write(voltage, 'V')}) / {write(share.most.current, 'A')}, Q1 and R1 counted"
+        f" as shorted, and {percent(resistor_spread(share.request))} tolerance on top: {share.most.reason}",
         supply=supply,
         forward_voltage=voltage,
         current_limit=share.most.current,
@@ -230,7 +153,7 @@ def note_series(share: _Sharing, derivation: Derivation) -> None:
     )
 
 
-def _sense_voltage(share: _Sharing, derivation: Derivation, asked: float, worst: float) -> float:
+def _sense_voltage(share: Sharing, derivation: Derivation, asked: float, worst: float) -> float:
     """Between what error and common mode ask for and what compliance, heat and reference leave: the geometric mean."""
     request, bench = share.request, share.bench
     if "R1" in request.fixed:
@@ -254,7 +177,7 @@ def _sense_voltage(share: _Sharing, derivation: Derivation, asked: float, worst:
     sense = float(np.sqrt(least[low] * most[high])) if least[low] <= most[high] else most[high]
     derivation.note(
         "sense voltage",
-        f"{write(sense, 'V')}: {low} asks for {write(least[low], 'V')} at least, {high} leaves {write(most[high], 'V')}",
+        f"between {write(least[low], 'V')} ({low}) and {write(most[high], 'V')} ({high})",
     )
     return sense
 

@@ -17,8 +17,9 @@ from typing import NamedTuple
 
 import numpy as np
 
-from opto_ckt.circuits.drivers.laser import Forward, Side, asked_current, forward, lasing, side_of
+from opto_ckt.circuits.drivers.laser import Forward, asked_current, forward, lasing
 from opto_ckt.circuits.drivers.pass_transistor import Around, PassTransistor, pass_transistor
+from opto_ckt.circuits.drivers.side import Side, side_of
 from opto_ckt.constants import ROOM_TEMPERATURE
 from opto_ckt.formulas.leakage import dark_current
 from opto_ckt.formulas.reference import divided_voltage, parallel_resistance
@@ -35,13 +36,14 @@ class Levels(NamedTuple):
 
     reference: Lanes
     set: Lanes
+    plus: Lanes  #: at the op amp's input, after the drop of its bias current
     bias: Lanes  #: current through R6 [A]
 
 
 def bias(values: Values, request: LaserDriverRequest) -> dict[str, float | Lanes]:
     """Current, light, heat, small-signal figures and node voltages at the operating point of each lane."""
     wide = {name: np.asarray(value, dtype=float) for name, value in values.items()}
-    wide["U1.bias_current"] = np.asarray(bias_current(wide, request))
+    wide |= amplifier_errors(wide, request)
     side, transistor = side_of(request), pass_transistor(request.transistor)
     supply = wide["supply.positive"]
     asked = asked_current(request)
@@ -52,7 +54,7 @@ def bias(values: Values, request: LaserDriverRequest) -> dict[str, float | Lanes
         levels = _levels(wide, request, rail)
         others = levels.bias + wide["U1.quiescent_current"]
         around = _around(wide, request, transistor, line, supply - filter_resistance * others, rail, side)
-        regulated = _regulated(wide, transistor, levels.set, rail, around, side)
+        regulated = _regulated(wide, transistor, levels.plus, rail, around, side)
         hard_on = transistor.hard_on(wide, around)
         if request.source.forward is not None:
             line = _forward(wide, request, np.where(hard_on < regulated, hard_on, regulated))
@@ -82,12 +84,15 @@ def _levels(values: Values, request: LaserDriverRequest, rail: Lanes) -> Levels:
     starved = divided_voltage(voltage=rail, upper=feed, lower=divider)
     opened = np.asarray(values.get("U2.open", 0.0)) > 0
     reference = np.where(opened, starved, np.clip(regulating, 0.0, starved))
+    drawn = values["U1.bias_current"] if side_of(request) == "low" else -values["U1.bias_current"]
     tap = divided_voltage(voltage=reference, upper=values["R2"], lower=values["R3"])
-    return Levels(reference, np.where(disabled(values), 0.0, tap), (rail - reference) / feed)
+    tap = tap - drawn * parallel_resistance(first=values["R2"], second=values["R3"])
+    level = np.where(disabled(values), 0.0, tap)
+    return Levels(reference, level, level - drawn * values["R9"], (rail - reference) / feed)
 
 
 def disabled(values: Values) -> Lanes:
-    """Whether the disable input shorts the set voltage: it is high, or nothing drives it; never where it is not fitted."""
+    """Whether the disable input shorts the set voltage: it is high, or nothing drives it."""
     if "R11" not in values:
         return np.asarray(False)
     level = np.asarray(values["control.disable"])
@@ -124,11 +129,9 @@ def _negative(values: Values) -> float | Lanes:
 def _regulated(
     values: Values, transistor: PassTransistor, set_voltage: Lanes, rail: Lanes, around: Around, side: Side
 ) -> Lanes:
-    """Current at which the sense voltage agrees with the set voltage: offset, bias current and finite gain in it. [A]"""
-    source = values["R9"] + parallel_resistance(first=values["R2"], second=values["R3"]) - values["R4"]
-    offset = values["U1.offset_voltage"]
-    drift = values.get("U1.offset_drift", 0.0) * np.abs(values["temperature"] - ROOM_TEMPERATURE)
-    wanted = set_voltage + offset + np.copysign(drift, offset) - values["U1.bias_current"] * source
+    """Current at which the sense voltage agrees with the set voltage; offset, bias current, finite gain in it. [A]"""
+    raised = values["U1.offset"] + values["U1.bias_current"] * values["R4"]
+    wanted = set_voltage + (raised if side == "low" else -raised)
     sense = wanted
     for _ in range(PASSES):
         current = np.maximum(sense, 0.0) / around.sense
@@ -172,6 +175,8 @@ def _written(
     through = np.where(bypassed, 0.0, laser["D1.forward_voltage"])
     biased: dict[str, float | Lanes] = {
         **given,
+        "U1.offset": values["U1.offset"],
+        "U1.bias_current": values["U1.bias_current"],
         **laser,
         **{f"Q1.{name}": value for name, value in transistor.small_signal(values, current, across).items()},
         "Q1.drain_current": current,
@@ -185,12 +190,13 @@ def _written(
         "compliance_margin": transistor.margin(values, regulated, around),
         "supply.current": current + levels.bias + values["U1.quiescent_current"] + drawn,
         "supply.span": span,
+        "set_voltage": levels.set,
     }
     near = {
         "ref": levels.reference,
         "set": levels.set,
-        "plus": levels.set,
-        "minus": sense,
+        "plus": levels.plus,
+        "minus": sense - values["U1.bias_current"] * values["R4"] * (1 if side_of(request) == "low" else -1),
         "sense": sense,
         "control": control + sense,
         "drive": output,
@@ -218,14 +224,16 @@ def _logic(values: Values, rail: Lanes, request: LaserDriverRequest) -> dict[str
     return found
 
 
-def bias_current(values: Values, request: LaserDriverRequest) -> float | Lanes:
-    """Input bias current at the temperature; that of a FET input grows like a diode's leakage. [A]"""
-    doubling = request.amplifier.bias_current_doubling
-    if doubling is None:
-        return values["U1.bias_current"]
-    return dark_current(
-        dark_current=values["U1.bias_current"],
-        temperature=values["temperature"],
-        reference_temperature=ROOM_TEMPERATURE,
-        doubling=doubling,
-    )
+def amplifier_errors(values: Values, request: LaserDriverRequest) -> dict[str, Lanes]:
+    """Offset with its drift, in its own direction, and input bias current at the temperature; of a FET it doubles."""
+    temperature, offset = values["temperature"], values["U1.offset_voltage"]
+    drift = values.get("U1.offset_drift", 0.0) * np.abs(temperature - ROOM_TEMPERATURE)
+    drawn, doubling = values["U1.bias_current"], request.amplifier.bias_current_doubling
+    if doubling is not None:
+        drawn = dark_current(
+            dark_current=drawn,
+            temperature=temperature,
+            reference_temperature=ROOM_TEMPERATURE,
+            doubling=doubling,
+        )
+    return {"U1.offset": np.asarray(offset + np.copysign(drift, offset)), "U1.bias_current": np.asarray(drawn)}

@@ -1,4 +1,4 @@
-"""What happens to the laser when a joint opens, a part shorts, a supply comes or goes, or it gets too cold or too hot."""
+"""What happens to the laser when a joint opens, a part shorts, a supply comes or goes, or it gets too hot or cold."""
 
 from __future__ import annotations
 
@@ -6,7 +6,7 @@ import numpy as np
 
 from opto_ckt.circuit import Fault, FaultOutcome
 from opto_ckt.circuits.drivers.laser import over_temperature
-from opto_ckt.circuits.drivers.laser_current_loads import transistor_temperature
+from opto_ckt.circuits.drivers.laser_current.loads import transistor_temperature
 from opto_ckt.limits import Lanes, Values
 from opto_ckt.request import LaserDriverRequest
 from opto_ckt.topology import OPEN, SHORT
@@ -53,7 +53,10 @@ def faults(request: LaserDriverRequest) -> tuple[Fault, ...]:
 def outcome(fault: Fault, values: Values, request: LaserDriverRequest) -> FaultOutcome:
     """Laser current and light that the fault leads to, whether a part passes its limit, and what keeps it."""
     lanes = np.broadcast_arrays(
-        *(np.asarray(values[name], dtype=float) for name in ("D1.current", "D1.power", "D1.case_temperature", "Q1.power")),
+        *(
+            np.asarray(values[name], dtype=float)
+            for name in ("D1.current", "D1.power", "D1.case_temperature", "Q1.power")
+        ),
         np.asarray(transistor_temperature(values), dtype=float),
     )
     current, power, case, dissipated, junction = lanes
@@ -65,7 +68,7 @@ def outcome(fault: Fault, values: Values, request: LaserDriverRequest) -> FaultO
     held = _held(fault, values, worst)
     text += f", {held}" if held else ""
     if fault.case in EXPLAINED:
-        text += " " + EXPLAINED[fault.case].format(recovery=write(_recovery(values), "s"))
+        text += " " + EXPLAINED[fault.case].format(recovery=write(_recovery(values, worst), "s"))
     if fault.case == "load short":
         text += f"; Q1 takes {write(float(np.max(dissipated)), 'W')}, {write(float(np.max(junction)), '°C')} inside"
     if beyond:
@@ -77,9 +80,7 @@ def _amount(current: float) -> str:
     return "no current through the laser" if current <= DARK else f"laser current {write(current, 'A')}"
 
 
-def _beyond(
-    current: Lanes, power: Lanes, case: Lanes, junction: Lanes, request: LaserDriverRequest
-) -> list[str]:
+def _beyond(current: Lanes, power: Lanes, case: Lanes, junction: Lanes, request: LaserDriverRequest) -> list[str]:
     """Every part that passes its limit, with the figures."""
     data, found = request.source, []
     for name, reached, limit, unit in (
@@ -111,12 +112,19 @@ def _held(fault: Fault, values: Values, worst: int) -> str:
     return "regulated"
 
 
-def _recovery(values: Values) -> float:
-    """Longest time in which the op amp comes back from its rail: C1 through R4, slewing apart. [s]"""
-    swing = np.abs(np.asarray(values["supply.span"]) - np.asarray(values["Q1.control_voltage"]))
-    error = (np.asarray(values["hard_on_current"]) - np.asarray(values["regulated_current"])) * values["R1"]
-    usable = np.asarray(error) > 0
-    if not usable.any():
-        return 0.0
-    time = np.where(usable, swing * values["R4"] * values["C1"] / np.where(usable, error, 1.0), 0.0)
-    return float(np.max(np.minimum(time, 1.0)))
+def _recovery(values: Values, worst: int) -> float:
+    """Time in which the op amp comes back from its rail: its slew rate, and C1 charged through R4 by the excess. [s]"""
+    names = (
+        "supply.span",
+        "Q1.control_voltage",
+        "hard_on_current",
+        "regulated_current",
+        "R1",
+        "R4",
+        "C1",
+        "U1.slew_rate",
+    )
+    lanes = np.broadcast_arrays(np.atleast_1d(values["D1.current"]), *(np.asarray(values[name]) for name in names))
+    span, control, hard_on, regulated, sense, lead, capacitance, slew = (float(lane[worst]) for lane in lanes[1:])
+    swing, error = abs(span - control), (hard_on - regulated) * sense
+    return swing / slew + (swing * lead * capacitance / error if error > 0 else 0.0)
