@@ -63,7 +63,9 @@ def cautions(
 ) -> tuple[str, ...]:
     """Advice of the circuit, parts too hot or too small, and what the chooser could not do."""
     hot = tuple(
-        f"{row.ref} reaches {write(row.temperature, '°C')}, above its {write(row.limit, '°C')}" for row in heat if not row.ok
+        f"{row.ref} reaches {write(row.temperature, '°C')}, above its {write(row.limit, '°C')}"
+        for row in heat
+        if not row.ok
     )
     remarks: Any = model.circuit.remarks(biased, limits, model.request)
     return (*hot, *too_small(parts, model), *choice.notes, *remarks)

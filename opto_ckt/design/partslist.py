@@ -100,7 +100,9 @@ def _characteristic(element: Element, stock: object) -> str:
     return write(coefficient, "1/K", trim=True) if coefficient is not None else ""
 
 
-def _rating(element: Element, stress: Mapping[str, float], hottest: float, stock: object) -> tuple[dict[str, float], str]:
+def _rating(
+    element: Element, stress: Mapping[str, float], hottest: float, stock: object
+) -> tuple[dict[str, float], str]:
     """Rating that the part must have, and the smallest size, from the preferred one up, that has it."""
     size = str(getattr(stock, "size", ""))
     if isinstance(element, Resistor):
@@ -125,8 +127,8 @@ def too_small(parts: Sequence[FoundPart], model: Model) -> tuple[str, ...]:
     """A sentence for every resistor that has to be larger than the preferred size."""
     size = model.request.preferred.resistors.size
     return tuple(
-        f"{part.ref} needs size {part.size}, not {size}: {write(part.stress['power'], 'W')} at the hottest corner asks for a"
-        f" rating of {write(part.required_rating['power'], 'W')} at {percent(1 / HALF_RATING)} load"
+        f"{part.ref} needs size {part.size}, not {size}: {write(part.stress['power'], 'W')} at the hottest corner asks for"
+        f" a rating of {write(part.required_rating['power'], 'W')} at {percent(1 / HALF_RATING)} load"
         for part in parts
         if part.kind == "resistor" and part.size != size
     )

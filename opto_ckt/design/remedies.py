@@ -10,7 +10,7 @@ from opto_ckt.analyses.corners import tolerances_of
 from opto_ckt.derivation import Derivation
 from opto_ckt.design.model import Model
 from opto_ckt.errors import InfeasibleError
-from opto_ckt.limits import Corner, Figures, Limit, Requirement, values_at
+from opto_ckt.limits import Corner, Figures, Lanes, Limit, Requirement, values_at
 from opto_ckt.parts.record import Record, facts
 from opto_ckt.units import write
 
@@ -35,7 +35,7 @@ class Remedies:
         self._levers = {
             lever: nominal
             for lever in model.circuit.levers
-            if (nominal := exact.get(lever) or (model.limits[lever].at("nominal", 0.0) if lever in model.limits else 0.0))
+            if (nominal := exact.get(lever) or _nominal(model, lever))
         }
         self._moved: dict[tuple[str, float], Figures | None] = {}
 
@@ -104,6 +104,10 @@ class Remedies:
             return "V"
         record: Record = getattr(self._model.request, element.table)
         return facts(type(record))[figure].unit
+
+
+def _nominal(model: Model, lever: str) -> float | Lanes:
+    return model.limits[lever].at("nominal", 0.0) if lever in model.limits else 0.0
 
 
 def _words(lever: str) -> str:

@@ -13,7 +13,7 @@ POINTS = 100  #: a decade
 
 
 def loop_deck(result: Result, scene: Scene, lines: Sequence[str], span: tuple[float, float]) -> str:
-    """Return ratio on node ``ret``: the opened source is driven by 1 V, what comes back to its control is turned round."""
+    """Return ratio on node ``ret``: the opened source is driven by 1 V; what comes back to it is turned round."""
     expansion = expand(result.topology)
     nodes = list(dict.fromkeys(node for primitive in expansion.primitives for node in primitive.nodes if node != "0"))
     names = {"0": "0"} | {node: f"n{index}" for index, node in enumerate(nodes, start=1)}

@@ -11,7 +11,7 @@ Curve = NDArray[Any]
 
 
 def falls_to(frequency: Curve, magnitude: Curve, level: float) -> float:
-    """Frequency at which a magnitude first falls through a level, linear in decibels over log f; nan where it does not."""
+    """Frequency at which a magnitude first falls through a level, linear in dB over log f; nan where it does not."""
     below = np.flatnonzero((magnitude[:-1] >= level) & (magnitude[1:] < level))
     if not len(below):
         return float("nan")

@@ -88,7 +88,8 @@ def read_raw(text: str) -> dict[str, Vectors]:
     for block in text.split("Title:")[1:]:
         header, _, body = block.partition("Values:\n")
         fields = dict(line.split(":", 1) for line in header.split("\nVariables:")[0].splitlines()[1:] if ":" in line)
-        kind = next((short for long, short in PLOTS.items() if fields.get("Plotname", "").strip().startswith(long)), None)
+        plot = fields.get("Plotname", "").strip()
+        kind = next((short for long, short in PLOTS.items() if plot.startswith(long)), None)
         if kind is None:
             continue
         names = [line.split()[1].lower() for line in header.split("\nVariables:")[1].splitlines() if line.strip()]

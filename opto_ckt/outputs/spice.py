@@ -121,7 +121,7 @@ def _transient(scene: Scene) -> str:
 
 
 def _temperature(scene: Scene) -> str:
-    """Noise and junctions hold at the scene's own temperature; junctions settle to better than the noise is compared."""
+    """Noise and junctions hold at the scene's own temperature; reltol lets junctions settle finer than noise is compared."""
     celsius = number(round(scene.values["temperature"] - ZERO_CELSIUS, 6))
     return card(".options", f"temp={celsius}", f"tnom={celsius}", "reltol=1e-6")
 
@@ -159,7 +159,8 @@ def _expected(result: Result, scene: Scene, kind: str) -> list[str]:
             figure("phase_margin", "phase margin where |v(ret)| = 1"),
         ],
     }
-    return [*lines[kind], *(comment(f"level expected: v({n}) = {write(v, 'V', digits=5)}") for n, v in levels(scene, kind))]
+    at_rest = [comment(f"expect v({node}) at rest: {write(v, 'V', digits=5)}") for node, v in levels(scene, kind)]
+    return [*lines[kind], *at_rest]
 
 
 def levels(scene: Scene, kind: str = "ac") -> list[tuple[str, float]]:

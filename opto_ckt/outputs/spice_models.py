@@ -100,7 +100,7 @@ def _(element: Diode, values: Values, driven: bool) -> Cards:
 
 @cards.register
 def _(element: Photodiode, values: Values, driven: bool) -> Cards:
-    """Light in watts as volts on node pw; capacitance linear at the bias; dark, ambient and signal current with shot noise."""
+    """Light in watts as volts on node pw; capacitance linear at the bias; every standing current with its shot noise."""
     ref, v = name(element.ref), _figures(element, values)
     bias = values["detector.reverse_bias"]
     total = v["signal_current"] + v["ambient_current"] + v["dark_current"]
@@ -205,13 +205,14 @@ def _(element: Switch, values: Values, driven: bool) -> Cards:
     ref, model = name(element.ref), name(f"m{element.ref}")
     nodes = (name(element.drain), name(element.control), name(element.source), name(element.source))
     return Cards(
-        card(f"m{ref}", *nodes, model, "w=1e-4 l=1e-4") + card(".model", model, f"{kind}(level=1 vto={threshold} kp=0.1)")
+        card(f"m{ref}", *nodes, model, "w=1e-4 l=1e-4")
+        + card(".model", model, f"{kind}(level=1 vto={threshold} kp=0.1)")
     )
 
 
 @cards.register
 def _(element: LaserDiode, values: Values, driven: bool) -> Cards:
-    """Turn-on voltage and series resistance, a junction that blocks; optical power in watts as volts on its third pin."""
+    """Turn-on voltage and series resistance, a junction that blocks; optical power in watts as volts on pin three."""
     ref, v = name(element.ref), _figures(element, values)
     current = max(values[f"{element.ref}.current"], 1e-9)
     thermal = BOLTZMANN * values["temperature"] / ELEMENTARY_CHARGE

@@ -1,7 +1,7 @@
 """Cards that every simulator reads: names, numbers, comments and a title in the portable subset.
 
-Lower case ASCII, names of at most eight characters with a letter first, plain e-notation without suffix or unit, full-line
-comments, lines under 80 characters.
+Lower case ASCII, names of at most eight characters with a letter first, plain e-notation without suffix or unit,
+full-line comments, lines under 80 characters.
 """
 
 from __future__ import annotations
@@ -54,7 +54,9 @@ def comment(text: str) -> str:
     return "".join(f"* {line}\n" for line in wrap(plain(spelled), LONGEST - 2, break_long_words=True)) or "*\n"
 
 
-SPELLINGS = (("√Hz", "rtHz"), ("²", "^2"), ("µ", "u"), ("Ω", "ohm"), ("°", " deg"), ("≥", ">="), ("≤", "<="), ("…", ".."))
+SPELLINGS = (
+    ("√Hz", "rtHz"), ("²", "^2"), ("µ", "u"), ("Ω", "ohm"), ("°", " deg"), ("≥", ">="), ("≤", "<="), ("…", ".."),
+)  # fmt: skip
 """How signs of the trade are spelled in ASCII."""
 
 
