@@ -127,8 +127,8 @@ def too_small(parts: Sequence[FoundPart], model: Model) -> tuple[str, ...]:
     """A sentence for every resistor that has to be larger than the preferred size."""
     size = model.request.preferred.resistors.size
     return tuple(
-        f"{part.ref} needs size {part.size}, not {size}: {write(part.stress['power'], 'W')} at the hottest corner asks for"
-        f" a rating of {write(part.required_rating['power'], 'W')} at {percent(1 / HALF_RATING)} load"
+        f"{part.ref} needs size {part.size}, not {size}: {write(part.stress['power'], 'W')} at the hottest corner"
+        f" asks for a rating of {write(part.required_rating['power'], 'W')} at {percent(1 / HALF_RATING)} load"
         for part in parts
         if part.kind == "resistor" and part.size != size
     )

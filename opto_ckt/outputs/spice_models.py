@@ -100,7 +100,7 @@ def _(element: Diode, values: Values, driven: bool) -> Cards:
 
 @cards.register
 def _(element: Photodiode, values: Values, driven: bool) -> Cards:
-    """Light in watts as volts on node pw; capacitance linear at the bias; every standing current with its shot noise."""
+    """Light in watts as volts on node pw; linear capacitance at the bias; standing currents with their shot noise."""
     ref, v = name(element.ref), _figures(element, values)
     bias = values["detector.reverse_bias"]
     total = v["signal_current"] + v["ambient_current"] + v["dark_current"]
