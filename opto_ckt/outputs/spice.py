@@ -121,7 +121,7 @@ def _transient(scene: Scene) -> str:
 
 
 def _temperature(scene: Scene) -> str:
-    """Noise and junctions hold at the scene's own temperature; reltol settles junctions finer than noise is compared."""
+    """Noise and junctions hold at the scene's own temperature; reltol settles junctions finer than noise needs."""
     celsius = number(round(scene.values["temperature"] - ZERO_CELSIUS, 6))
     return card(".options", f"temp={celsius}", f"tnom={celsius}", "reltol=1e-6")
 
