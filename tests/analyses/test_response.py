@@ -11,6 +11,7 @@ from scipy.signal import TransferFunction, step
 
 from opto_ckt.analyses import response
 from opto_ckt.analyses.network import Expansion, Network, Primitive
+from opto_ckt.analyses.network.modes import modes_of, poles_of
 from tests.analyses.networks import RECEIVER, lane, loop_of_poles, low_pass, named, receiver, resonator, scattered
 
 
@@ -209,3 +210,15 @@ def test_settling_time_of_one_pole():
     evaluation = Network(low_pass()).evaluate(values)
     (pole,) = response.poles(evaluation)[:, 0]
     assert response.settling_time(evaluation, 1e-3)[0] == pytest.approx(np.log(1e3) / -pole.real, rel=1e-9, abs=0)
+
+
+@pytest.mark.parametrize("apart", [0.0, 1e-12, 1e-8, 1e-6, 1e-4])
+def test_fast_poles_that_fall_together_beside_a_slow_one(apart):
+    """A double pole far above a slow one: rise time of the slow one, nothing undefined."""
+    slow, fast = -1.0, -1e8
+    roots = np.array([slow, fast, fast * (1 + apart)])
+    denominator = np.poly(roots)[::-1, None]
+    modes = modes_of(denominator, denominator[:1], poles_of(denominator))
+    time = np.linspace(0, 5, 21)
+    assert modes.response(time[:, None])[:, 0] == pytest.approx(1 - np.exp(-time), abs=1e-7)
+    assert np.isfinite(modes.residues).all()

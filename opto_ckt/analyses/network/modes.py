@@ -5,14 +5,16 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 import numpy as np
+from numpy.typing import NDArray
 
 from opto_ckt.analyses.network.lanes import Array, Complex, Lanes, by_order, horner
 
-CLOSE = 0.1
+NEAR = 0.03
 """Poles closer than this, relative to their size, may be one repeated pole that rounding has spread."""
 
-NUDGE = 1e-9
-"""Relative change of the constant term that parts repeated poles; the response is off by about as much."""
+NUDGE = 4e-9  #: what a repeated pole's factor is moved by
+ROUNDING = float(np.finfo(float).eps)
+SPREAD = 100.0  #: rounding spreads an m-fold pole by about ROUNDING**(1/m); this much more is taken to be the same pole
 
 
 @dataclass(frozen=True)
@@ -65,15 +67,11 @@ def poles_of(denominator: Array) -> Complex:
 
 def modes_of(denominator: Array, numerator: Array, poles: Complex) -> Modes:
     """Modes of the step response of N/D whose poles are known."""
-    poles = poles.copy()
-    close = np.flatnonzero(_closest(poles) < CLOSE)
-    if len(close):
-        parted = denominator[:, close].copy()
-        parted[0] *= 1 + NUDGE
-        poles[:, close] = poles_of(parted)
+    centre, offset = _parted(poles, denominator)
+    poles = centre + offset
     present = ~np.isnan(poles)
     at = np.where(present, poles, 1.0)
-    apart = at[:, None] - at[None, :]
+    apart = (centre[:, None] - centre[None, :]) + (offset[:, None] - offset[None, :])
     apart[~(present[:, None] & present[None, :])] = 1.0
     apart[np.arange(len(at)), np.arange(len(at))] = 1.0
     leading = np.ones(denominator.shape[1])
@@ -94,13 +92,82 @@ def _companion_roots(coefficients: Array) -> Complex:
 
 
 def _polished(roots: Complex, coefficients: Array) -> Complex:
-    """Two Newton steps, each kept where it moves a root by little: eigenvalues of widely spread roots are inexact."""
+    """Two Newton steps, each kept where it moves a root by little and not onto its neighbour."""
     slope = coefficients[1:] * np.arange(1, len(coefficients))[:, None]
+    room = 0.1 * _nearest(roots)
     for _ in range(2):
         with np.errstate(divide="ignore", invalid="ignore"):
             step = horner(coefficients, roots) / horner(slope, roots)
-        roots = np.where(np.abs(step) < 1e-2 * np.abs(roots), roots - step, roots)
+        roots = np.where(np.abs(step) < room, roots - step, roots)
     return roots
+
+
+def _nearest(roots: Complex) -> Array:
+    """Distance of each root to its nearest neighbour, at most a tenth of its own size."""
+    distance = np.abs(roots[:, None] - roots[None, :])
+    distance[np.arange(len(roots)), np.arange(len(roots))] = np.inf
+    return np.asarray(np.minimum(distance.min(axis=1, initial=np.inf), 0.1 * np.abs(roots)))
+
+
+def _parted(poles: Complex, denominator: Array) -> tuple[Complex, Complex]:
+    """Poles as centres and offsets: a repeated pole is one centre with its poles set around it, so that they are apart.
+
+    Kept apart, centre and offset give the distance of two poles of a cluster without rounding.
+    """
+    centre, offset = poles.copy(), np.zeros_like(poles)
+    for lane in np.flatnonzero(_closest(poles) < NEAR):
+        for cluster in _clusters(poles[:, lane]):
+            mean = _repeated(poles[cluster, lane], denominator[:, lane])
+            if mean is not None:
+                centre[cluster, lane] = mean
+                offset[cluster, lane] = mean * _turns(len(cluster))
+    return centre, offset
+
+
+def _repeated(cluster: Complex, denominator: Array) -> complex | None:
+    """The m-fold pole that a cluster stands for; None where its poles are really distinct."""
+    count, mean = len(cluster), complex(cluster.mean())
+    if np.abs(cluster - mean).max() > SPREAD * ROUNDING ** (1 / count) * abs(mean):
+        return None
+    if abs(mean.imag) < NEAR * abs(mean):
+        mean = complex(mean.real)
+    slope = denominator  # an m-fold root of D is a simple one of its (m-1)th derivative
+    for _ in range(count - 1):
+        slope = _derivative(slope)
+    for _ in range(2):
+        step = complex(horner(slope, np.array(mean)) / horner(_derivative(slope), np.array(mean)))
+        mean = mean - step if abs(step) < NEAR * abs(mean) else mean
+    return mean
+
+
+def _derivative(coefficients: Array) -> Array:
+    return np.asarray(coefficients[1:] * np.arange(1, len(coefficients)))
+
+
+def _turns(count: int) -> Complex:
+    """Where the roots of (s - p)^m = NUDGE p^m lie around p, relative to it.
+
+    The response changes by about NUDGE, and loses ROUNDING / NUDGE^((m-1)/m) to the cancellation of residues.
+    """
+    turns = np.exp(2j * np.pi * np.arange(count) / count)
+    turns.imag[np.abs(turns.imag) < ROUNDING * count] = 0.0  # conjugates are told by the sign of their imaginary parts
+    return np.asarray(NUDGE ** (1 / count) * turns)
+
+
+def _clusters(poles: Complex) -> list[NDArray[np.intp]]:
+    """Indices of poles that hang together by steps shorter than `NEAR`, two and more at a time."""
+    left = [index for index in range(len(poles)) if not np.isnan(poles[index])]
+    found = []
+    while left:
+        cluster = [left.pop(0)]
+        for member in cluster:
+            size = abs(poles[member])
+            joined = [index for index in left if abs(poles[index] - poles[member]) < NEAR * size]
+            cluster += joined
+            left = [index for index in left if index not in joined]
+        if len(cluster) > 1:
+            found.append(np.array(cluster))
+    return found
 
 
 def _closest(poles: Complex) -> Array:
