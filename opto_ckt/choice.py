@@ -55,7 +55,11 @@ class Choice:
 
 
 def choose(
-    fitted: tuple[Fitted, ...], evaluate: Evaluate, requirements: Sequence[Requirement], limits: Limits
+    fitted: tuple[Fitted, ...],
+    evaluate: Evaluate,
+    requirements: Sequence[Requirement],
+    limits: Limits,
+    known: Sequence[Corner] = (),
 ) -> Choice:
     """Preferred values with the largest smallest margin (counted up to 5 %), then nearest to the exact ones.
 
@@ -70,11 +74,12 @@ def choose(
     evaluate : figures by name for values by name, one entry a lane.
     requirements : what has to hold; a figure that is missing or nan counts as missed by far.
     limits : tolerance of each fitted part (none: it is exact) and limits of everything else.
+    known : corners at which combinations are judged besides, such as a wider search found at an earlier choice.
     """
     options, notes = _options(fitted)
     bench = _Bench(fitted, evaluate, requirements, limits)
     search = _Search(bench, options)
-    corners = distinct([NOMINAL, *bench.worst({part.ref: part.exact for part in fitted})[0]])
+    corners = distinct([NOMINAL, *known, *bench.worst({part.ref: part.exact for part in fitted})[0]])
     for rounds in range(1, ROUNDS + 1):
         winner = search.best(corners)
         values = search.values(winner)

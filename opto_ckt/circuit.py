@@ -98,6 +98,14 @@ class Fault:
 
 
 @dataclass(frozen=True)
+class Refusal:
+    """Something a design file asks for that the circuit does not do."""
+
+    path: tuple[str, ...]  #: of the key
+    message: str
+
+
+@dataclass(frozen=True)
 class FaultOutcome:
     """What a fault does, lane by lane."""
 
@@ -133,4 +141,5 @@ class Circuit:
     not_checked: tuple[str, ...]
     formulas: tuple[Callable[..., Any], ...]  #: sizing relations, for the page of formulas
     starter: str  #: values of a design file to start from, as TOML
+    refused: Callable[[Any], tuple[Refusal, ...]] = lambda request: ()  #: what it was asked for and does not do
     input_capacitance: Callable[[Any, Bench], Mapping[str, float]] | None = None  #: itemised, of a summing node [F]

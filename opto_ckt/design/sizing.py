@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from itertools import product
 from typing import Literal
 
@@ -40,6 +40,7 @@ from opto_ckt.result import FoundFigure, FoundRequirement, Result, Rounding, Sce
 from opto_ckt.units import si_unit
 
 SURROUNDINGS = ("temperature", "supply.", "signal.")  #: limits whose all combinations are tried for heat, load, faults
+CHOSEN_ANEW = 3  #: times that values are chosen again for corners that only the wider search found
 
 
 @dataclass(frozen=True)
@@ -66,8 +67,7 @@ def size(read: ReadDesign, circuit: Circuit) -> Result:
     request = read.request
     model = Model(circuit, request)
     refuse_unknown(read, circuit, model)
-    sized = choose_values(model)
-    found = extremes(model.evaluate, sized.limits, sized.choice.values, circuit.offers)
+    sized, found = search_corners(choose_values(model))
     corners = _corners(sized, found)
     lanes = values_at(sized.limits, corners, sized.choice.values)
     biased = model.biased(lanes)
@@ -110,6 +110,29 @@ def choose_values(model: Model) -> Sized:
     return Sized(model, fitted, limits, choice, derivation, requirements, len(asked))
 
 
+def search_corners(sized: Sized) -> tuple[Sized, dict[str, Extreme]]:
+    """Extremes of every figure; values chosen anew where a bound is missed at a corner that the choice did not know."""
+    model, offers = sized.model, sized.model.circuit.offers
+    found = extremes(model.evaluate, sized.limits, sized.choice.values, offers)
+    for _ in range(CHOSEN_ANEW):
+        worst = [(need, _worst(need, found)) for need in sized.requirements]
+        missed = [at for need, (value, at) in worst if need.margin(value) < 0 and at not in sized.choice.corners]
+        if not missed:
+            break
+        known = (*sized.choice.corners, *missed)
+        choice = choose(sized.fitted, model.evaluate, sized.requirements, sized.limits, known)
+        if choice.values == sized.choice.values:
+            break
+        sized = replace(sized, choice=choice)
+        found = extremes(model.evaluate, sized.limits, choice.values, offers)
+    return sized, found
+
+
+def _worst(requirement: Requirement, found: Mapping[str, Extreme]) -> tuple[float, Corner]:
+    extreme = found[requirement.figure]
+    return (extreme.low, extreme.at_low) if requirement.side == "min" else (extreme.high, extreme.at_high)
+
+
 def _asked(request: Request) -> list[Requirement]:
     sides: tuple[Literal["min"], Literal["max"]] = ("min", "max")
     return [
@@ -138,8 +161,7 @@ def _requirement_rows(sized: Sized, found: Mapping[str, Extreme]) -> tuple[Found
     ways = Remedies(sized.model, {part.ref: part.exact for part in sized.fitted}, corners)
     for index, requirement in enumerate(sized.requirements):
         extreme = found[requirement.figure]
-        low = requirement.side == "min"
-        worst, at = (extreme.low, extreme.at_low) if low else (extreme.high, extreme.at_high)
+        worst, at = _worst(requirement, found)
         met = bool(requirement.margin(worst) >= 0)
         if not met or index < sized.asked:
             unit = si_unit(FIGURES[requirement.figure].unit)
@@ -200,7 +222,7 @@ def _roundings(sized: Sized) -> tuple[Rounding, ...]:
 
 
 def refuse_unknown(read: ReadDesign, circuit: Circuit, model: Model) -> None:
-    """Refuse requirements on figures that the circuit does not offer, and fixed parts that it does not have."""
+    """Refuse figures that the circuit does not offer, parts that it does not have, and what it does not do."""
     fixable = sorted(element.ref for element in model.topology.fitted if element.chosen_from)
     offers = sorted(circuit.offers)
     unknown = [(("require", name), name, offers) for name in read.request.require if name not in circuit.offers]
@@ -209,5 +231,6 @@ def refuse_unknown(read: ReadDesign, circuit: Circuit, model: Model) -> None:
         read.source.problem(path, f"{circuit.name} has no {name}; it has {', '.join(allowed)}{meant(name, allowed)}")
         for path, name, allowed in unknown
     ]
+    problems += [read.source.problem(refusal.path, refusal.message) for refusal in circuit.refused(read.request)]
     if problems:
         raise InputError(problems)

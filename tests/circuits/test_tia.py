@@ -220,3 +220,26 @@ def test_unknown_figures_and_parts_are_refused_together() -> None:
 def test_reading_twice_gives_the_same_result() -> None:
     assert read("tia").digest == read("tia").digest
     assert sized("tia").figures == sized("tia", ("title", 'title = "My receiver"')).figures
+
+
+def test_what_is_read_but_not_done_is_refused() -> None:
+    changes = (("", '[load]\ncoupling = "ac"\n[blocks]\npost_filter = { order = 2, cutoff = "5 MHz" }'),)
+    with pytest.raises(InputError) as refused:
+        sized("tia", *changes)
+    assert "load.coupling: tia fits no coupling capacitor" in str(refused.value)
+    assert "blocks.post_filter: tia fits no filter" in str(refused.value)
+
+
+def test_a_wider_search_sends_the_choice_back() -> None:
+    """Peaking that is zero at nominal and at every single limit, and is not at the corner of several together."""
+    changes = (
+        ("bit_rate", 'bit_rate = "155 Mbit/s"'),
+        ("bandwidth ", 'bandwidth = { min = "110 MHz" }'),
+        ("capacitance  ", 'capacitance = "0.8 pF"'),
+        ("noise_band", 'noise_band = { min = "1 kHz", max = "110 MHz" }'),
+        ("gain_bandwidth", 'gain_bandwidth = "4 GHz"'),
+        ("second_pole", 'second_pole = "3 GHz"'),
+        ("power ", 'power = { typ = "2 µW", max = "500 µW" }'),
+        ("slew_rate", 'slew_rate = "2000 V/µs"'),
+    )
+    assert sized("tia", *changes).verdict == "met"

@@ -53,5 +53,6 @@ CIRCUIT = Circuit(
     ),
     formulas=sizing.FORMULAS,
     starter=starter.STARTER,
+    refused=operation.refused,
     input_capacitance=capacitor.input_capacitance,
 )

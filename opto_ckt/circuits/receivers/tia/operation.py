@@ -7,7 +7,7 @@ from functools import cached_property
 import numpy as np
 
 from opto_ckt.analyses.network import Evaluation
-from opto_ckt.circuit import OnDemand
+from opto_ckt.circuit import OnDemand, Refusal
 from opto_ckt.circuits.receivers.detector import POLARITY, detected, detector_limits
 from opto_ckt.circuits.receivers.figures import OFFERS as RECEIVER_OFFERS
 from opto_ckt.circuits.receivers.figures import ReceiverFigures
@@ -162,3 +162,15 @@ def implied(request: ReceiverRequest) -> tuple[Requirement, ...]:
     """The output must not reach its limit at the most light asked for, and the loop must not ring."""
     most = request.signal.power.high
     return (Requirement("overload", "min", most, most), Requirement("phase_margin", "min", LEAST_MARGIN, LEAST_MARGIN))
+
+
+def refused(request: ReceiverRequest) -> tuple[Refusal, ...]:
+    """Avalanche gain, blocks and an AC-coupled load."""
+    found = []
+    if request.detector.wanted_gain not in (None, 1.0):
+        found.append(Refusal(("detector", "gain"), "tia reckons with a detector without avalanche gain; leave it out"))
+    if request.blocks.post_filter is not None:
+        found.append(Refusal(("blocks", "post_filter"), "tia fits no filter behind the amplifier; leave it out"))
+    if request.load.coupling == "ac":
+        found.append(Refusal(("load", "coupling"), "tia fits no coupling capacitor; 'dc' is allowed"))
+    return tuple(found)
