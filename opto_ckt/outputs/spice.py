@@ -10,7 +10,7 @@ import numpy as np
 from opto_ckt.constants import ZERO_CELSIUS
 from opto_ckt.outputs.linear_deck import loop_deck
 from opto_ckt.outputs.spice_models import cards
-from opto_ckt.outputs.spice_text import card, comment, deck, number, title
+from opto_ckt.outputs.spice_text import LONGEST, card, comment, deck, number, title
 from opto_ckt.result import DesignHead, Result, Scene
 from opto_ckt.topology import GROUND, LaserDiode, Photodiode, Topology, Transistor
 from opto_ckt.units import write
@@ -104,7 +104,8 @@ def _circuit(topology: Topology, values: Mapping[str, float], pulse: str) -> str
     if negative != GROUND:
         text += comment("read-out of the answer against ground")
         text += card("eobs", "obs 0", positive, negative, "1") + card("robs", "obs 0", "1e6")
-    return text.replace(" @pulse@", f" {pulse}" if pulse else "")
+    driven = text.replace(" @pulse@", f" {pulse}" if pulse else "")
+    return "".join(line if len(line) <= LONGEST else card(*line.split()) for line in driven.splitlines(keepends=True))
 
 
 def _pulse(topology: Topology, scene: Scene) -> str:

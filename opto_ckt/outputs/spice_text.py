@@ -37,13 +37,13 @@ def name(text: str) -> str:
 
 
 def plain(text: str) -> str:
-    """Text that cannot end a line or start a card: printable ASCII, lower case.
+    """Text that cannot end a line or start a card: one line of printable ASCII.
 
-    >>> plain("Valley\\nreceiver ½")
-    'valley receiver ?'
+    >>> plain("Valley receiver ½")
+    'Valley receiver ?'
     """
     one_line = " ".join(text.split())
-    return "".join(c if " " <= c <= "~" else "?" for c in one_line).lower()
+    return "".join(c if " " <= c <= "~" else "?" for c in one_line)
 
 
 def comment(text: str) -> str:
@@ -77,7 +77,7 @@ def card(head: str, *fields: str) -> str:
 def title(*parts: str) -> str:
     """First line of a deck: never blank, never a card."""
     text = plain(" ".join(part for part in parts if part.strip())).lower()[:LONGEST].strip()
-    return (text if text and text[0].isalnum() else f"deck {text}").strip() + "\n"
+    return (text if text and text[0].isalnum() else f"deck {text}"[:LONGEST].strip()) + "\n"
 
 
 def deck(lines: Iterable[str]) -> str:
