@@ -242,7 +242,7 @@ class _Search:
         self.judged = np.append(self.judged, np.zeros(len(new), dtype=int))
         rows = np.array([self.place[combination] for combination in pool])
         table = np.array([list(self.values(combination).values()) for combination in pool]).reshape(len(pool), -1)
-        for done in np.unique(self.judged[rows]):
+        for done in sorted(set(self.judged[rows].tolist())):
             some = self.judged[rows] == done
             if done < len(corners):
                 margins = self.bench.margins(table[some], corners[done:])

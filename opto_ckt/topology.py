@@ -83,7 +83,6 @@ class TwoTerminal(Element):
     pins: ClassVar[tuple[str, ...]] = ("a", "b")
 
 
-@dataclass(frozen=True)
 class Resistor(TwoTerminal):
     """A resistor; its value [Ω] is named like itself."""
 
@@ -92,7 +91,6 @@ class Resistor(TwoTerminal):
     faults: ClassVar[Mapping[str, Mapping[str, float]]] = {"open": {"": OPEN}, "short": {"": SHORT}}
 
 
-@dataclass(frozen=True)
 class Capacitor(TwoTerminal):
     """A capacitor; its value [F] is named like itself."""
 
@@ -100,7 +98,6 @@ class Capacitor(TwoTerminal):
     stocked: ClassVar[str] = "capacitors"
 
 
-@dataclass(frozen=True)
 class Inductor(TwoTerminal):
     """An inductor; its value [H] is named like itself."""
 
@@ -111,25 +108,26 @@ class Inductor(TwoTerminal):
 
 
 @dataclass(frozen=True)
-class Diode(Element):
-    """A diode that is reverse biased in normal use."""
+class Junction(Element):
+    """An element with an anode and a cathode."""
 
     anode: str
     cathode: str
-    kind: ClassVar[str] = "diode"
     pins: ClassVar[tuple[str, ...]] = ("anode", "cathode")
+
+
+class Diode(Junction):
+    """A diode that is reverse biased in normal use."""
+
+    kind: ClassVar[str] = "diode"
     figures: ClassVar[tuple[str, ...]] = ("capacitance",)
     absent: ClassVar[Mapping[str, float]] = {"capacitance": 1e-15}
 
 
-@dataclass(frozen=True)
-class Photodiode(Element):
+class Photodiode(Junction):
     """A photodiode; light on it is an input of the circuit, in watts."""
 
-    anode: str
-    cathode: str
     kind: ClassVar[str] = "photodiode"
-    pins: ClassVar[tuple[str, ...]] = ("anode", "cathode")
     figures: ClassVar[tuple[str, ...]] = (
         "responsivity", "capacitance", "series_resistance", "shunt_resistance", "transit_frequency",
         "dark_current", "ambient_current", "signal_current",
@@ -209,14 +207,10 @@ class Switch(Element):
     pin_places: ClassVar[Mapping[str, Point]] = {"control": (0, 0), "drain": (1, 1), "source": (1, -1)}
 
 
-@dataclass(frozen=True)
-class LaserDiode(Element):
+class LaserDiode(Junction):
     """A laser diode by its series resistance and capacitance at the bias point."""
 
-    anode: str
-    cathode: str
     kind: ClassVar[str] = "laser"
-    pins: ClassVar[tuple[str, ...]] = ("anode", "cathode")
     figures: ClassVar[tuple[str, ...]] = ("series_resistance", "capacitance")
     absent: ClassVar[Mapping[str, float]] = {"capacitance": 1e-15}
 

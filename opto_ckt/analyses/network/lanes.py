@@ -33,9 +33,9 @@ def by_order(coefficients: Array) -> Iterator[tuple[int, int, Lanes]]:
     present = coefficients != 0
     low = np.argmax(present, axis=0)
     high = top - np.argmax(present[::-1], axis=0)
-    for code in np.unique(np.where(present.any(axis=0), low * (top + 1) + high, -1)):
+    for code in sorted(set(np.where(present.any(axis=0), low * (top + 1) + high, -1).tolist())):
         if code >= 0:
-            first, last = divmod(int(code), top + 1)
+            first, last = divmod(code, top + 1)
             yield first, last, np.flatnonzero(present.any(axis=0) & (low == first) & (high == last))
 
 

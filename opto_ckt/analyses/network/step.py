@@ -10,7 +10,7 @@ from opto_ckt.analyses.network.lanes import Array, Lanes
 from opto_ckt.analyses.network.modes import Modes
 from opto_ckt.analyses.network.scan import first_of, refine
 
-POINTS_A_DECADE = 40
+POINTS_A_DECADE = 24
 EARLIEST, LATEST = 0.02, 40.0
 """Ends of the grid, in units of the shortest and of the longest time constant."""
 
