@@ -12,12 +12,8 @@ from math import log, pi
 from typing import NamedTuple
 
 from opto_ckt.constants import BOLTZMANN, ELEMENTARY_CHARGE
-from opto_ckt.formulas.noise_generator import (
-    diode_pair_noise,
-    flicker_coefficient,
-    resistance_for_shot_noise,
-    resistance_for_voltage_noise,
-)
+from opto_ckt.formulas.noise_generator import resistance_for_voltage_noise
+from opto_ckt.outputs.spice_noise import LEAST, noise_pair, noise_pair_gain, shot_noise
 from opto_ckt.outputs.spice_text import card, comment, name, number
 from opto_ckt.topology import (
     Capacitor,
@@ -36,8 +32,6 @@ from opto_ckt.topology import (
 )
 
 NOWHERE = 1e14  #: frequencies from here on stand for a pole that the sheet does not give [Hz]
-PAIR_CURRENT = 1e-5  #: through each diode of a noise pair [A]
-LEAST = 1e-30  #: noise below this is left out
 
 Values = Mapping[str, float]
 
@@ -120,7 +114,7 @@ def _(element: Photodiode, values: Values, driven: bool) -> Cards:
         + comment("clamp where light takes the bias away")
         + card("dcl", "j k", "dcl")
         + card(".model dcl", "d(is=1e-18 n=1)")
-        + _shot("st", total, values["temperature"], "k j")
+        + shot_noise("st", total, values["temperature"], "k j")
         + card(".ends", ref)
     )
     source = card("vpw", "pw 0 dc", number(values["signal.power"]), "ac 1 @pulse@") if driven else ""
@@ -142,13 +136,13 @@ def _(element: OpAmp, values: Values, driven: bool) -> Cards:
         + card("ccm", "m 0", number(v["common_capacitance"]))
         + card("ibp", "p 0 dc", number(bias))
         + card("ibm", "m 0 dc", number(bias))
-        + _pair("e", v["voltage_noise"], v["voltage_noise_corner"], values["temperature"])
-        + _pair("i", v["current_noise"], v["current_noise_corner"], values["temperature"])
-        + _pair("j", v["current_noise"], v["current_noise_corner"], values["temperature"])
+        + noise_pair("e", v["voltage_noise"], v["voltage_noise_corner"], values["temperature"])
+        + noise_pair("i", v["current_noise"], v["current_noise_corner"], values["temperature"])
+        + noise_pair("j", v["current_noise"], v["current_noise_corner"], values["temperature"])
         + card("vos", "q p dc", number(offset))
-        + card("een", "r q ea eb", number(_pair_gain(v["voltage_noise"], values["temperature"])))
-        + card("gim", "0 m ia ib", number(_pair_gain(v["current_noise"], values["temperature"])))
-        + card("gip", "0 p ja jb", number(_pair_gain(v["current_noise"], values["temperature"])))
+        + card("een", "r q ea eb", number(noise_pair_gain(v["voltage_noise"], values["temperature"])))
+        + card("gim", "0 m ia ib", number(noise_pair_gain(v["current_noise"], values["temperature"])))
+        + card("gip", "0 p ja jb", number(noise_pair_gain(v["current_noise"], values["temperature"])))
         + card("g1", "0 p1 r m", "1")
         + card("gr1", "p1 0 p1 0", number(1 / v["open_loop_gain"]))
         + card("c1", "p1 0", number(1 / (2 * pi * v["gain_bandwidth"])))
@@ -268,39 +262,3 @@ def _(element: Reference, values: Values, driven: bool) -> Cards:
 
 def _figures(element: Element, values: Values) -> dict[str, float]:
     return {figure: values[element.value_name(figure)] for figure in element.figures}
-
-
-def _shot(label: str, current: float, temperature: float, nodes: str) -> str:
-    """Shot noise of a standing current between two nodes: a resistor across a 0 V source, copied."""
-    if current <= 0:
-        return ""
-    resistance = float(resistance_for_shot_noise(current=current, temperature=temperature))
-    node = f"n{label}"
-    return (
-        comment("shot noise of the standing currents: R = 2kT/(qI) across 0 V")
-        + card(f"r{label}", node, "0", number(resistance))
-        + card(f"v{label}", node, "0 dc", "0")
-        + card(f"f{label}", nodes, f"v{label}", "1")
-    )
-
-
-def _pair(letter: str, density: float, corner: float, temperature: float) -> str:
-    """Two equal diodes whose difference voltage is white noise with a 1/f corner and no DC: KF = 2 q fc, AF = 1."""
-    if density <= LEAST:
-        return card(f"r{letter}a", f"{letter}a 0", "1") + card(f"r{letter}b", f"{letter}b 0", "1")
-    flicker = float(flicker_coefficient(corner=corner))
-    model = f"d{letter}n"
-    return (
-        card(f"i{letter}1", f"0 {letter}a dc", number(PAIR_CURRENT))
-        + card(f"i{letter}2", f"0 {letter}b dc", number(PAIR_CURRENT))
-        + card(f"d{letter}1", f"{letter}a 0", model)
-        + card(f"d{letter}2", f"{letter}b 0", model)
-        + card(".model", model, f"d(is=1e-14 n=1 kf={number(flicker)} af=1)")
-    )
-
-
-def _pair_gain(density: float, temperature: float) -> float:
-    """Gain from a pair's difference voltage to the density wanted."""
-    if density <= LEAST:
-        return 0.0
-    return density / float(diode_pair_noise(current=PAIR_CURRENT, temperature=temperature))

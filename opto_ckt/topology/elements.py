@@ -1,0 +1,183 @@
+"""The kinds of elements that circuits are made of."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass
+from typing import ClassVar
+
+from opto_ckt.topology.element import OPEN, SHORT, Element, Point
+
+
+@dataclass(frozen=True)
+class TwoTerminal(Element):
+    """An element between two nodes."""
+
+    a: str
+    b: str
+    pins: ClassVar[tuple[str, ...]] = ("a", "b")
+
+
+class Resistor(TwoTerminal):
+    """A resistor; its value [Ω] is named like itself."""
+
+    kind: ClassVar[str] = "resistor"
+    stocked: ClassVar[str] = "resistors"
+    faults: ClassVar[Mapping[str, Mapping[str, float]]] = {"open": {"": OPEN}, "short": {"": SHORT}}
+
+
+class Capacitor(TwoTerminal):
+    """A capacitor; its value [F] is named like itself."""
+
+    kind: ClassVar[str] = "capacitor"
+    stocked: ClassVar[str] = "capacitors"
+
+
+class Inductor(TwoTerminal):
+    """An inductor; its value [H] is named like itself."""
+
+    kind: ClassVar[str] = "inductor"
+    stocked: ClassVar[str] = "inductors"
+    figures: ClassVar[tuple[str, ...]] = ("resistance",)
+    absent: ClassVar[Mapping[str, float]] = {"resistance": SHORT}
+
+
+@dataclass(frozen=True)
+class Junction(Element):
+    """An element with an anode and a cathode."""
+
+    anode: str
+    cathode: str
+    pins: ClassVar[tuple[str, ...]] = ("anode", "cathode")
+
+
+class Diode(Junction):
+    """A diode that is reverse biased in normal use."""
+
+    kind: ClassVar[str] = "diode"
+    figures: ClassVar[tuple[str, ...]] = ("capacitance",)
+    absent: ClassVar[Mapping[str, float]] = {"capacitance": 1e-15}
+
+
+class Photodiode(Junction):
+    """A photodiode; light on it is an input of the circuit, in watts."""
+
+    kind: ClassVar[str] = "photodiode"
+    figures: ClassVar[tuple[str, ...]] = (
+        "responsivity", "capacitance", "series_resistance", "shunt_resistance", "transit_frequency",
+        "dark_current", "ambient_current", "signal_current",
+    )  # fmt: skip
+    absent: ClassVar[Mapping[str, float]] = {
+        "series_resistance": SHORT,
+        "shunt_resistance": 1e15,
+        "transit_frequency": 1e15,
+    }
+    faults: ClassVar[Mapping[str, Mapping[str, float]]] = {"open": {"responsivity": 0.0}}
+
+
+@dataclass(frozen=True)
+class OpAmp(Element):
+    """A voltage-feedback operational amplifier with two poles, output resistance, input capacitance and noise."""
+
+    plus: str
+    minus: str
+    out: str
+    positive: str = "positive"  #: supply pins
+    negative: str = "negative"
+    kind: ClassVar[str] = "op amp"
+    pins: ClassVar[tuple[str, ...]] = ("plus", "minus", "out", "positive", "negative")
+    pin_places: ClassVar[Mapping[str, Point]] = {
+        "minus": (0, 0.5), "plus": (0, -0.5), "out": (2, 0), "positive": (1, 1), "negative": (1, -1),
+    }  # fmt: skip
+    figures: ClassVar[tuple[str, ...]] = (
+        "gain_bandwidth", "second_pole", "open_loop_gain", "common_capacitance", "differential_capacitance",
+        "output_resistance", "voltage_noise", "voltage_noise_corner", "current_noise", "current_noise_corner",
+    )  # fmt: skip
+    absent: ClassVar[Mapping[str, float]] = {
+        "second_pole": 1e15,
+        "output_resistance": SHORT,
+        "voltage_noise_corner": 1e-9,
+        "current_noise_corner": 1e-9,
+    }
+
+    def pin_points(self) -> dict[str, Point]:
+        """Where each pin lies on the drawing; mirrored, the inputs change places and the supply pins stay."""
+        points = super().pin_points()
+        if self.flipped:
+            points["positive"], points["negative"] = points["negative"], points["positive"]
+        return points
+
+
+@dataclass(frozen=True)
+class Transistor(Element):
+    """A transistor by its small-signal figures at the bias point; ``control`` is gate or base.
+
+    ``table`` names its data sheet; ``polarity`` is +1 for n-channel and npn, -1 for p-channel and pnp.
+    """
+
+    drain: str  #: or collector
+    control: str
+    source: str  #: or emitter
+    polarity: int = 1
+    bipolar: bool = False  #: drawn as npn or pnp
+    kind: ClassVar[str] = "transistor"
+    pins: ClassVar[tuple[str, ...]] = ("drain", "control", "source")
+    pin_places: ClassVar[Mapping[str, Point]] = {"control": (0, 0), "drain": (1, 1), "source": (1, -1)}
+    figures: ClassVar[tuple[str, ...]] = (
+        "transconductance", "input_conductance", "control_source_capacitance", "control_drain_capacitance",
+        "output_conductance", "channel_noise_factor", "drain_current", "control_current",
+    )  # fmt: skip
+
+
+@dataclass(frozen=True)
+class Switch(Element):
+    """A small MOSFET that is fully off or fully on; off, only its capacitance is left."""
+
+    drain: str
+    control: str
+    source: str
+    polarity: int = 1
+    kind: ClassVar[str] = "transistor"
+    pins: ClassVar[tuple[str, ...]] = ("drain", "control", "source")
+    pin_places: ClassVar[Mapping[str, Point]] = {"control": (0, 0), "drain": (1, 1), "source": (1, -1)}
+
+
+class LaserDiode(Junction):
+    """A laser diode by its series resistance and capacitance at the bias point."""
+
+    kind: ClassVar[str] = "laser"
+    figures: ClassVar[tuple[str, ...]] = ("series_resistance", "capacitance")
+    absent: ClassVar[Mapping[str, float]] = {"capacitance": 1e-15}
+
+
+@dataclass(frozen=True)
+class Reference(Element):
+    """A two-terminal (shunt) voltage reference; an input of the circuit, in volts."""
+
+    cathode: str
+    anode: str
+    kind: ClassVar[str] = "reference"
+    pins: ClassVar[tuple[str, ...]] = ("cathode", "anode")
+    figures: ClassVar[tuple[str, ...]] = ("output_resistance", "noise")
+    absent: ClassVar[Mapping[str, float]] = {"output_resistance": 1.0, "noise": 0.0}
+    faults: ClassVar[Mapping[str, Mapping[str, float]]] = {"missing": {"voltage": 0.0}}
+
+
+@dataclass(frozen=True)
+class Supply(Element):
+    """A supply or bias rail against ground; ideal, so ground to small signals. Its value [V] is ``value``."""
+
+    node: str
+    value: str = ""  #: name of its value, such as ``supply.positive``
+    kind: ClassVar[str] = "supply"
+    pins: ClassVar[tuple[str, ...]] = ("node",)
+
+
+@dataclass(frozen=True)
+class Terminal(Element):
+    """A named point where a signal enters or leaves the board."""
+
+    node: str
+    kind: ClassVar[str] = "terminal"
+    pins: ClassVar[tuple[str, ...]] = ("node",)
+    pin_places: ClassVar[Mapping[str, Point]] = {"node": (0, 0)}
