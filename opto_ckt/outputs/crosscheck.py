@@ -19,7 +19,7 @@ from opto_ckt.units import percent, write
 
 SPOTS = (1e-3, 0.1, 0.5, 1.0, 2.0)  #: where gain is compared, as multiples of the bandwidth
 NOISE_SPOTS = (0.01, 0.1, 1.0)  #: where density is compared, as multiples of the top of the noise band
-LEAST_LEVEL = 0.05  #: levels below it are compared against it [V]
+LEAST_LEVEL = 1e-3  #: levels below it are compared against it [V]
 
 
 @dataclass(frozen=True)
@@ -71,7 +71,7 @@ def crosscheck(result: Result, engine: str) -> list[Row]:
     for scene in result.scenes:
         evaluation = network.evaluate(scene.values)
         runs = {kind: run(deck_of(result, scene, kind), engine) for kind in ("ac", "noise", "step", "loop")}
-        rows += _levels(scene, runs["ac"]["op"], bounds)
+        rows += _levels(result, scene, runs["ac"]["op"], bounds)
         rows += _response(result, scene, evaluation, runs["ac"]["ac"], bounds)
         rows += _noise(result, scene, evaluation, runs["noise"]["noise"], bounds)
         rows += _loop(scene, evaluation, runs["loop"]["ac"], bounds)
@@ -79,8 +79,13 @@ def crosscheck(result: Result, engine: str) -> list[Row]:
     return rows
 
 
-def _levels(scene: Scene, plot: Vectors, bounds: Bounds) -> Iterator[Row]:
-    for node, predicted in levels(scene):
+def _levels(result: Result, scene: Scene, plot: Vectors, bounds: Bounds) -> Iterator[Row]:
+    """Every level predicted; of an answer between two nodes the difference too, which their levels would hide."""
+    known = dict(levels(scene))
+    positive, negative = result.topology.output
+    if positive in known and negative in known:
+        known[output_node(result.topology)] = known[positive] - known[negative]
+    for node, predicted in known.items():
         if f"v({node})" in plot:
             simulated = float(plot[f"v({node})"][0])
             share = (simulated - predicted) / max(abs(predicted), LEAST_LEVEL)

@@ -77,3 +77,16 @@ def test_a_deck_written_for_other_values_is_told(
     rows = crosscheck(result_of("tia"), engine)
     assert any(quantity in row.quantity for row in rows if not row.ok)
     assert "APART" in crosscheck_table(rows)
+
+
+@pytest.mark.parametrize("engine", here)
+def test_a_current_that_is_off_is_told_on_the_high_side(engine: str, monkeypatch: pytest.MonkeyPatch) -> None:
+    """2 % more set voltage, which is 0.1 % of the level that the sense node has against ground."""
+
+    def other(result: Result, scene: Scene, kind: str) -> str:
+        return deck_of(result, replace(scene, values={**scene.values, "R3": 1.02 * scene.values["R3"]}), kind)
+
+    result = result_of("laser-current.toml")
+    assert result.topology.output[0] == "rail"
+    monkeypatch.setattr("opto_ckt.outputs.crosscheck.deck_of", other)
+    assert any(row.quantity == "level of obs" for row in crosscheck(result, engine) if not row.ok)
