@@ -1,9 +1,11 @@
-"""What a circuit is: structure, sizing, bias, figures and faults, each a plain function of a request."""
+"""What circuits and blocks are: structure, sizing, bias, figures and faults, each a plain function of a request."""
 
 from __future__ import annotations
 
 from collections.abc import Callable, Iterator, Mapping
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
+from functools import reduce
+from operator import or_
 from typing import TYPE_CHECKING, Any
 
 import numpy as np
@@ -143,3 +145,54 @@ class Circuit:
     starter: str  #: values of a design file to start from, as TOML
     refused: Callable[[Any], tuple[Refusal, ...]] = lambda request: ()  #: what it was asked for and does not do
     input_capacitance: Callable[[Any, Bench], Mapping[str, float]] | None = None  #: itemised, of a summing node [F]
+    settled: Callable[[Any, Callable[[Any], Figures]], Any] = lambda request, figures: request
+    """The request with what it leaves to be found by trial, given the nominal figures of any request sized."""
+
+
+@dataclass(frozen=True)
+class Block:
+    """Something fitted to a circuit that asks for it: its own parts between nodes ``in`` and ``out``, and their sizing.
+
+    It knows no circuit, only the request; the circuit's topology has a slot or a tap of its name.
+    """
+
+    name: str  #: of its table under [blocks]
+    topology: Callable[[Any], Topology]
+    propose: Callable[[Any, Derivation, Bench, Values], tuple[Fitted, ...]]  #: the last: exact values of all else
+    given: Callable[[Any], dict[str, Limit]] = lambda request: {}
+    bias: Callable[[Values, Any], dict[str, float | Lanes]] = lambda values, request: {}  #: what it adds to the values
+    implied: Callable[[Any], tuple[Requirement, ...]] = lambda request: ()
+    stresses: Callable[[Values, Any], tuple[Stress, ...]] = lambda values, request: ()
+    heat: Callable[[Values, Any], tuple[Heat, ...]] = lambda values, request: ()
+    remarks: Callable[[Values, Limits, Any], tuple[str, ...]] = lambda values, limits, request: ()
+    refused: Callable[[Any], tuple[Refusal, ...]] = lambda request: ()
+    formulas: tuple[Callable[..., Any], ...] = ()
+
+
+def with_blocks(circuit: Circuit, blocks: Mapping[str, Block]) -> Circuit:
+    """The circuit with blocks in their places; only its `propose` stays that of the circuit without them."""
+    if not blocks:
+        return circuit
+    fitted = tuple(blocks.values())
+    everything: tuple[Circuit | Block, ...] = (circuit, *fitted)
+
+    def bias(values: Values, request: Any) -> dict[str, float | Lanes]:
+        found = circuit.bias(values, request)
+        for block in fitted:
+            found = {**found, **block.bias(found, request)}
+        return found
+
+    return replace(
+        circuit,
+        topology=lambda request: circuit.topology(request).with_blocks(
+            {block.name: block.topology(request) for block in fitted}
+        ),
+        given=lambda request: reduce(or_, (each.given(request) for each in everything)),
+        bias=bias,
+        implied=lambda request: sum((each.implied(request) for each in everything), ()),
+        stresses=lambda values, request: sum((each.stresses(values, request) for each in everything), ()),
+        heat=lambda values, request: sum((each.heat(values, request) for each in everything), ()),
+        remarks=lambda values, limits, request: sum((each.remarks(values, limits, request) for each in everything), ()),
+        refused=lambda request: sum((each.refused(request) for each in everything), ()),
+        formulas=tuple(dict.fromkeys(formula for each in everything for formula in each.formulas)),
+    )

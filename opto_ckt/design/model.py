@@ -11,19 +11,52 @@ import numpy as np
 from opto_ckt.analyses.corners import limits_of
 from opto_ckt.analyses.network import Evaluation, Network
 from opto_ckt.analyses.network.expansion import expand
-from opto_ckt.circuit import Bench, Circuit
+from opto_ckt.circuit import Bench, Circuit, Fitted, with_blocks
+from opto_ckt.circuits.blocks import blocks_of
+from opto_ckt.derivation import Derivation
 from opto_ckt.limits import Figures, Lanes, Limits, Values
 from opto_ckt.topology import Topology
 
 
 class Model:
-    """What sizing evaluates: topology, compiled network, limits of everything that is not chosen."""
+    """What sizing evaluates: topology, compiled network, limits of everything that is not chosen.
 
-    def __init__(self, circuit: Circuit, request: Any, moved: Limits | None = None) -> None:
-        self.circuit = circuit
+    Parameters
+    ----------
+    circuit : of the registry.
+    request : the design.
+    moved : limits that are put in other places.
+    bare : without the blocks that the design asks for.
+    """
+
+    def __init__(self, circuit: Circuit, request: Any, moved: Limits | None = None, *, bare: bool = False) -> None:
+        self._plain = circuit
+        self._moved = moved or {}
         self.request = request
-        self.topology: Topology = circuit.topology(request).with_blocks({})
-        self.limits: Limits = {**limits_of(self.topology, request), **circuit.given(request), **(moved or {})}
+        base = circuit.topology(request)
+        self.places = (*base.slots, *base.taps)  #: names of the blocks that the circuit has a place for
+        self.blocks = {} if bare else blocks_of(request, self.places)
+        self.circuit = with_blocks(circuit, self.blocks)
+        self.topology: Topology = self.circuit.topology(request).with_blocks({})
+        self.limits: Limits = {**limits_of(self.topology, request), **self.circuit.given(request), **self._moved}
+
+    @cached_property
+    def bare(self) -> Model:
+        """The same circuit without its blocks, which it is sized on."""
+        return Model(self._plain, self.request, self._moved, bare=True) if self.blocks else self
+
+    def proposal(self, derivation: Derivation) -> tuple[Fitted, ...]:
+        """Exact values of every fitted part with their windows: the circuit's, then those of each block around it.
+
+        Raises
+        ------
+        InfeasibleError : no values exist that bias and stabilise the circuit.
+        """
+        fitted = self._plain.propose(self.request, derivation, self.bare.bench())
+        for block in self.blocks.values():
+            exact = {part.ref: part.exact for part in fitted}
+            fitted += block.propose(self.request, derivation, self.bench(), exact)
+        return fitted
 
     @cached_property
     def network(self) -> Network:
@@ -31,10 +64,16 @@ class Model:
         return Network(expand(self.topology))
 
     def moved(self, limits: Limits | None = None, fixed: Mapping[str, float] | None = None) -> Model:
-        """The same model with some limits in other places, or some parts fixed; the network is compiled once."""
+        """The same model with some limits in other places, or some parts fixed."""
         request = self.request.model_copy(update={"fixed": {**self.request.fixed, **(fixed or {})}})
-        other = Model(self.circuit, request, limits)
+        return self.asked(request, limits)
+
+    def asked(self, request: Any, moved: Limits | None = None) -> Model:
+        """The same circuit for another request of the same structure; the network is compiled once."""
+        other = Model(self._plain, request, moved)
         other.__dict__["network"] = self.network
+        if self.blocks:
+            other.bare.__dict__["network"] = self.bare.network
         return other
 
     def biased(self, values: Values) -> dict[str, float | Lanes]:

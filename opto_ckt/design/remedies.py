@@ -33,9 +33,7 @@ class Remedies:
         self._model = model
         self._corners = corners
         self._levers = {
-            lever: nominal
-            for lever in model.circuit.levers
-            if (nominal := exact.get(lever) or _nominal(model, lever))
+            lever: nominal for lever in model.circuit.levers if (nominal := exact.get(lever) or _nominal(model, lever))
         }
         self._moved: dict[tuple[str, float], Figures | None] = {}
 
@@ -89,7 +87,7 @@ class Remedies:
         else:
             moved = model.moved(fixed={lever: float(self._levers[lever]) * factor})
         try:
-            fitted = moved.circuit.propose(moved.request, Derivation(), moved.bench())
+            fitted = moved.proposal(Derivation())
         except InfeasibleError:
             return None
         limits = {**moved.limits, **tolerances_of([moved.topology[part.ref] for part in fitted], moved.request)}

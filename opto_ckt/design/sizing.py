@@ -5,7 +5,8 @@ from __future__ import annotations
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, replace
 from itertools import product
-from typing import Literal
+from math import isnan
+from typing import Any, Literal
 
 import numpy as np
 
@@ -26,6 +27,7 @@ from opto_ckt.figures import FIGURES
 from opto_ckt.limits import (
     NOMINAL,
     Corner,
+    Figures,
     Level,
     Limits,
     Requirement,
@@ -64,9 +66,10 @@ def size(read: ReadDesign, circuit: Circuit) -> Result:
     InputError : a figure is required that the circuit does not offer, or a part fixed that it does not have.
     InfeasibleError : no values exist that bias and stabilise the circuit.
     """
-    request = read.request
-    model = Model(circuit, request)
+    model = Model(circuit, read.request)
     refuse_unknown(read, circuit, model)
+    model = settled(model)
+    circuit, request = model.circuit, model.request
     sized, found = search_corners(choose_values(model))
     corners = _corners(sized, found)
     lanes = values_at(sized.limits, corners, sized.choice.values)
@@ -101,13 +104,24 @@ def choose_values(model: Model) -> Sized:
     """Exact values from the circuit, preferred values for all of them together."""
     circuit, request = model.circuit, model.request
     derivation = Derivation()
-    fitted = circuit.propose(request, derivation, model.bench())
+    fitted = model.proposal(derivation)
     elements = [model.topology[part.ref] for part in fitted]
     limits = {**model.limits, **tolerances_of(elements, request)}
     asked = _asked(request)
     requirements = (*asked, *circuit.implied(request))
     choice = choose(fitted, model.evaluate, requirements, limits)
     return Sized(model, fitted, limits, choice, derivation, requirements, len(asked))
+
+
+def settled(model: Model) -> Model:
+    """The model with what its request leaves to be found by trial: each trial is sized, at exact values."""
+
+    def figures(request: Any) -> Figures:
+        tried = model.asked(request)
+        return tried.bench().evaluate({part.ref: np.array([part.exact]) for part in tried.proposal(Derivation())})
+
+    request = model.circuit.settled(model.request, figures)
+    return model if request is model.request else model.asked(request)
 
 
 def search_corners(sized: Sized) -> tuple[Sized, dict[str, Extreme]]:
@@ -150,7 +164,7 @@ def _figure_rows(offers: Sequence[str], found: Mapping[str, Extreme]) -> tuple[F
             si_unit(FIGURES[name].unit),
         )
         for name in FIGURES
-        if name in offers
+        if name in offers and not isnan(found[name].nominal)
     )  # fmt: skip
 
 
@@ -217,7 +231,7 @@ def _roundings(sized: Sized) -> tuple[Rounding, ...]:
     return tuple(
         Rounding(name, float(figures[name][0]), float(figures[name][1]), si_unit(FIGURES[name].unit))
         for name in FIGURES
-        if name in sized.model.circuit.offers
+        if name in sized.model.circuit.offers and not isnan(figures[name][1])
     )
 
 
@@ -231,6 +245,15 @@ def refuse_unknown(read: ReadDesign, circuit: Circuit, model: Model) -> None:
         read.source.problem(path, f"{circuit.name} has no {name}; it has {', '.join(allowed)}{meant(name, allowed)}")
         for path, name, allowed in unknown
     ]
-    problems += [read.source.problem(refusal.path, refusal.message) for refusal in circuit.refused(read.request)]
+    problems += [
+        read.source.problem(("blocks", name), f"{circuit.name} has no place for it{_places(model)}; leave it out")
+        for name in read.request.blocks_asked
+        if name not in model.blocks
+    ]
+    problems += [read.source.problem(refusal.path, refusal.message) for refusal in model.circuit.refused(read.request)]
     if problems:
         raise InputError(problems)
+
+
+def _places(model: Model) -> str:
+    return f"; it has places for {', '.join(model.places)}" if model.places else ""

@@ -97,7 +97,7 @@ def _(element: Photodiode, values: Values, driven: bool) -> Cards:
     """Light in watts as volts on node pw; linear capacitance at the bias; standing currents with their shot noise."""
     ref, v = name(element.ref), _figures(element, values)
     bias = values["detector.reverse_bias"]
-    total = v["signal_current"] + v["ambient_current"] + v["dark_current"]
+    total = v["signal_shot"] + v["ambient_shot"] + v["dark_shot"]
     transit = v["transit_frequency"]
     body = (
         comment("pins: anode cathode light; put the maker's model here, light in watts as volts")

@@ -9,11 +9,15 @@ from opto_ckt.request.request import Request
 
 if TYPE_CHECKING:
     from opto_ckt.request.driver import LaserDriverRequest
-    from opto_ckt.request.receiver import ReceiverRequest
+    from opto_ckt.request.receiver import OpAmpReceiverRequest, ReceiverRequest
 
-__all__ = ["LaserDriverRequest", "ReceiverRequest", "Request"]
+__all__ = ["LaserDriverRequest", "OpAmpReceiverRequest", "ReceiverRequest", "Request"]
 
-LOADED_ON_USE = {"ReceiverRequest": "receiver", "LaserDriverRequest": "driver"}
+LOADED_ON_USE = {
+    "OpAmpReceiverRequest": "receiver",
+    "ReceiverRequest": "receiver",
+    "LaserDriverRequest": "driver",
+}
 
 
 def __getattr__(name: str) -> Any:

@@ -4,15 +4,19 @@ from __future__ import annotations
 
 from collections.abc import Iterator, Mapping
 from dataclasses import dataclass
-from typing import Annotated, Any, ClassVar, Literal
+from typing import Annotated, Any, Literal
 
 from pydantic import Field
 
+from opto_ckt.parts.fixed_tia import FixedTiaData
 from opto_ckt.parts.opamp import OpAmpData
-from opto_ckt.parts.photodiode import PhotodiodeData, WavelengthError
+from opto_ckt.parts.photodiode import WavelengthError
 from opto_ckt.parts.record import Check, Choice, Finding, FindingsError, ReadBy, Spread, Table, Unit, Whole
+from opto_ckt.parts.transistor import BipolarData, JfetData
+from opto_ckt.request.blocks import ReceiverBlocks
+from opto_ckt.request.detector import BiasSupply, Detector
 from opto_ckt.request.request import Request
-from opto_ckt.request.tables import CAPACITANCE, RATIO, Band, Conditions, Load
+from opto_ckt.request.tables import CAPACITANCE, Band, Conditions, Load
 from opto_ckt.units import percent, write
 
 WAVELENGTH = Unit("m", "1310 nm")
@@ -57,30 +61,6 @@ def read_ambient(value: Any, *, from_file: bool) -> Spread | AmbientLight:
     if findings:
         raise FindingsError(findings)
     return AmbientLight(_from_dark(read["power"]), read["wavelength"])
-
-
-def _bias_within(bias: float, limit: float) -> Iterator[Finding]:
-    if bias > limit:
-        yield Finding(
-            ("reverse_bias",), f"{write(bias, 'V')} is above reverse_voltage_max {write(limit, 'V')} of the detector"
-        )
-
-
-class Detector(PhotodiodeData):
-    """The photodiode of a design: its data sheet and how it is used."""
-
-    design_keys: ClassVar[Mapping[str, str]] = {"gain": "wanted_gain"}  #: key in a design file, where the name differs
-
-    reverse_bias: Annotated[float, Unit("V", "5 V", "not negative")] = 0.0
-    output: Literal["cathode", "anode"] = "cathode"  #: which end feeds the amplifier
-    wanted_gain: Annotated[float | Literal["optimum"] | None, Unit("1", "10")] = (
-        None  #: avalanche; `gain` in a design file
-    )
-
-    checks: ClassVar[tuple[Check, ...]] = (
-        *PhotodiodeData.checks,
-        Check(("reverse_bias", "reverse_voltage_max"), _bias_within),
-    )
 
 
 def _contrast(ratio: float) -> Iterator[Finding]:
@@ -129,30 +109,6 @@ class Target(Table):
     noise_band: Band | None = None
 
 
-class BiasSupply(Table):
-    """The supply behind the detector's reverse bias."""
-
-    supply: Annotated[float, Unit("V", "12 V")]
-    tolerance: Annotated[float, RATIO] = 0.05
-    ripple: Annotated[float, Unit("V", "10 mV", "not negative")] = 0.0
-    ripple_frequency: Annotated[float | None, Unit("Hz", "100 kHz")] = None
-
-    choices = (Choice("the ripple", (("ripple", "ripple_frequency"),), needed=False),)
-
-
-class PostFilter(Table):
-    """Low-pass behind the amplifier."""
-
-    order: Annotated[int, Whole(1, 4)] = 2
-    cutoff: Annotated[float, Unit("Hz", "7.5 MHz")]
-
-
-class ReceiverBlocks(Table):
-    """Blocks that are fitted; one that is left out is not."""
-
-    post_filter: PostFilter | None = None
-
-
 class ReceiverConditions(Conditions):
     """Where a receiver runs, and what its board adds."""
 
@@ -173,8 +129,10 @@ def _seen(detector: Detector, signal: ReceivedSignal) -> Iterator[Finding]:
             yield Finding(path, str(error))
 
 
-def amplifier_supplied(amplifier: OpAmpData, conditions: Conditions) -> Iterator[Finding]:
-    """Whether the rails, at either end of their tolerance, are what the amplifier runs from."""
+def amplifier_supplied(amplifier: OpAmpData | None, conditions: Conditions) -> Iterator[Finding]:
+    """Whether the rails, at either end of their tolerance, are what the amplifier, where there is one, runs from."""
+    if amplifier is None:
+        return
     supply = conditions.supply
     path = ("conditions", "supply")
     least, most = (supply.total * (1 + side * supply.tolerance) for side in (-1, 1))
@@ -198,25 +156,20 @@ def _level_within(conditions: ReceiverConditions) -> Iterator[Finding]:
 
 
 def _bias_reached(detector: Detector, bias: BiasSupply | None) -> Iterator[Finding]:
-    if bias is not None and detector.reverse_bias > bias.supply:
-        wanted = write(detector.reverse_bias, "V")
+    if bias is not None and detector.resting_bias > bias.supply:
+        wanted = write(detector.resting_bias, "V")
         yield Finding(("bias", "supply"), f"{write(bias.supply, 'V')} is below the reverse bias of {wanted}")
-
-
-def _gain_known(detector: Detector) -> Iterator[Finding]:
-    wanted = detector.wanted_gain
-    if wanted not in (None, 1.0) and detector.gain is None and detector.gain_points is None:
-        yield Finding(
-            ("detector", "wanted_gain"),
-            "the record of the detector states no avalanche gain (gain_points, or gain at gain_bias)",
-        )
 
 
 class ReceiverRequest(Request):
     """A design file of a receiver."""
 
     detector: Detector
-    amplifier: OpAmpData
+    amplifier: OpAmpData | None = None
+    second_amplifier: OpAmpData | None = None  #: behind the first, or of a block; a second one of the first if left out
+    transistor: BipolarData | None = None  #: that the photocurrent flows through, or that amplifies it
+    follower: JfetData | None = None  #: that drives the far end of the detector
+    fixed_tia: FixedTiaData | None = None  #: a transimpedance amplifier that is bought whole
     signal: ReceivedSignal
     target: Target = Field(default_factory=Target.model_construct)
     load: Load = Field(default_factory=Load.model_construct)
@@ -227,9 +180,9 @@ class ReceiverRequest(Request):
     checks = (
         Check(("detector", "signal"), _seen),
         Check(("amplifier", "conditions"), amplifier_supplied),
+        Check(("second_amplifier", "conditions"), amplifier_supplied),
         Check(("conditions",), _level_within),
         Check(("detector", "bias"), _bias_reached),
-        Check(("detector",), _gain_known),
     )
 
     @property
@@ -238,4 +191,17 @@ class ReceiverRequest(Request):
         ambient = self.signal.ambient
         if isinstance(ambient, Spread):
             return ambient
-        return ambient.power.scaled(self.detector.responsivity_at(ambient.wavelength))
+        return ambient.power.scaled(self.detector.responsivity_at(ambient.wavelength) / self.detector.responsivity_gain)
+
+    @property
+    def blocks_asked(self) -> tuple[str, ...]:
+        """Names of the blocks that are to be fitted."""
+        asked = [name for name in type(self.blocks).model_fields if getattr(self.blocks, name) is not None]
+        coupled = ["ac_coupling"] if self.load.coupling == "ac" and "ac_coupling" not in asked else []
+        return (*asked, *coupled)
+
+
+class OpAmpReceiverRequest(ReceiverRequest):
+    """A design file of a receiver around an op amp."""
+
+    amplifier: OpAmpData

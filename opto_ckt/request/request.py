@@ -30,6 +30,11 @@ class Request(Table):
     assumed: Annotated[Mapping[str, Assumed], ReadBy(read_assumed)] = Field(default_factory=dict)
     fixed: Annotated[Mapping[str, float], ReadBy(read_fixed)] = Field(default_factory=dict)
 
+    @property
+    def blocks_asked(self) -> tuple[str, ...]:
+        """Names of the blocks that are to be fitted."""
+        return ()
+
     def limits(self, table: str) -> dict[str, Limits]:
         """Limits of each figure of the part in one table, typ-only figures spread as `[assumed]` or the record says."""
         record = getattr(self, table)

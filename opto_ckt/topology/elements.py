@@ -65,7 +65,7 @@ class Photodiode(Junction):
     kind: ClassVar[str] = "photodiode"
     figures: ClassVar[tuple[str, ...]] = (
         "responsivity", "capacitance", "series_resistance", "shunt_resistance", "transit_frequency",
-        "dark_current", "ambient_current", "signal_current",
+        "dark_current", "ambient_current", "signal_current", "dark_shot", "ambient_shot", "signal_shot",
     )  # fmt: skip
     absent: ClassVar[Mapping[str, float]] = {
         "series_resistance": SHORT,

@@ -21,6 +21,7 @@ class Topology:
     wires: tuple[tuple[Point, Point], ...] = ()  #: straight lines of the drawing
     marks: tuple[tuple[Point, str], ...] = ()  #: points that carry a node's symbol: ground, rail or name
     slots: Mapping[str, tuple[str, str]] = field(default_factory=dict)  #: where blocks may sit: nodes before, after
+    taps: Mapping[str, tuple[str, str]] = field(default_factory=dict)  #: where blocks may hang on; empty, nothing joins
     openings: Mapping[str, tuple[Point, Point]] = field(default_factory=dict)  #: gap left for each slot: origin, end
     end: Point = (0, 0)  #: of a block: where its ``out`` lies, its ``in`` being the origin
 
@@ -40,7 +41,7 @@ class Topology:
         return replace(self, elements=tuple(e for e in self.elements if e.ref not in refs))
 
     def with_blocks(self, blocks: Mapping[str, Topology]) -> Topology:
-        """Fill slots with blocks; an empty slot joins its two nodes, and a wire closes its gap in the drawing.
+        """Fill slots and taps with blocks; an empty slot joins its nodes, and a wire closes its gap in the drawing.
 
         A block calls its ends ``in`` and ``out`` and keeps other nodes to itself. It is drawn from the slot's origin;
         where it is wider than the gap, all that lies beyond the gap moves to the right.
@@ -58,7 +59,11 @@ class Topology:
         for slot, (before, after) in self.slots.items():
             ends = {"in": names.get(before, before), "out": names.get(after, after)}
             base = base._filled(slot, blocks.get(slot, Topology((), "", ("in", "out"))), ends)
-        return replace(base, slots={}, openings={})
+        for tap, (before, after) in self.taps.items():
+            if tap in blocks:
+                ends = {"in": names.get(before, before), "out": names.get(after, after)}
+                base = base._hung(blocks[tap].moved(base.openings[tap][0]), ends)
+        return replace(base, slots={}, taps={}, openings={})
 
     def moved(self, by: Point, beyond: float = -inf) -> Topology:
         """The same circuit drawn elsewhere, or only what lies at or right of ``beyond`` moved."""
@@ -81,9 +86,13 @@ class Topology:
         base = self.moved((room, 0), beyond=end[0]) if room else self
         drawn = block.moved(origin)
         reached, end = (origin[0] + block.end[0], origin[1] + block.end[1]), (end[0] + room, end[1])
+        return replace(base, wires=base.wires + (((reached, end),) if reached != end else ()))._hung(drawn, ends)
+
+    def _hung(self, block: Topology, ends: Mapping[str, str]) -> Topology:
+        """With a block that is drawn where it belongs, its ends called as in ``ends``."""
         return replace(
-            base,
-            elements=base.elements + tuple(renamed(element, ends) for element in drawn.elements),
-            wires=base.wires + drawn.wires + (((reached, end),) if reached != end else ()),
-            marks=base.marks + tuple((point, ends.get(node, node)) for point, node in drawn.marks),
+            self,
+            elements=self.elements + tuple(renamed(element, ends) for element in block.elements),
+            wires=self.wires + block.wires,
+            marks=self.marks + tuple((point, ends.get(node, node)) for point, node in block.marks),
         )

@@ -67,6 +67,10 @@ def _transconductances() -> dict[str, Scale]:
     return {**quotient(prefixed("A", of="nuµm"), prefixed("V", of="m")), **prefixed("S", of="nuµm")}
 
 
+def _detectivities() -> dict[str, Scale]:
+    return {"m·√Hz/W": (1, 0), "cm·√Hz/W": (1, -2), "m*sqrt(Hz)/W": (1, 0), "cm*sqrt(Hz)/W": (1, -2)}
+
+
 def _gains() -> dict[str, Scale]:
     return {"": (1, 0), **quotient(prefixed("V", of="uµmk"), prefixed("V", of="uµm"))}
 
@@ -100,6 +104,7 @@ UNITS: Mapping[str, Unit] = {
     "V/√Hz": Unit("V/√Hz", "6.5 nV/√Hz", _over(_VOLTS, ROOT_HERTZ), engineering("V/√Hz", largest="k")),
     "A/√Hz": Unit("A/√Hz", "2 pA/√Hz", _over(_AMPERES, ROOT_HERTZ), engineering("A/√Hz", largest="k")),
     "W/√Hz": Unit("W/√Hz", "5 pW/√Hz", _over(_WATTS, ROOT_HERTZ), engineering("W/√Hz", largest="k")),
+    "m·√Hz/W": Unit("m·√Hz/W", "1e9 m·√Hz/W", _detectivities, (Step("cm·√Hz/W", -2, 0.0),)),
     "A/W": Unit("A/W", "0.9 A/W", _over(_AMPERES, _WATTS), (Step("mA/W", -3, 0.0), Step("A/W", 0, 1e-2))),
     "W/A": Unit("W/A", "0.3 W/A", _over(_WATTS, _AMPERES), (Step("mW/A", -3, 0.0), Step("W/A", 0, 1e-2))),
     "A/V": Unit("A/V", "40 mA/V", _transconductances, engineering("A/V", "n", "")),

@@ -123,7 +123,7 @@ def test_a_figure_that_the_sheet_does_not_give_has_the_value_that_stands_for_it(
 
 def test_every_figure_of_the_model_that_is_no_current_or_light_has_a_limit():
     limits = limits_of(RECEIVER, request())
-    computed = {"D1.signal_current", "D1.ambient_current"}
+    computed = {f"D1.{light}_{kind}" for light in ("signal", "ambient", "dark") for kind in ("current", "shot")}
     for element in RECEIVER:
         assert {element.value_name(figure) for figure in element.figures} - computed <= set(limits)
 
@@ -187,7 +187,7 @@ def test_beyond_its_own_temperatures_a_dielectric_is_assumed():
 
 TWO_POLES = {
     "D1.responsivity": 1.0, "D1.series_resistance": SHORT, "D1.shunt_resistance": 1e15, "D1.transit_frequency": 1e15,
-    "D1.signal_current": 0.0, "D1.ambient_current": 0.0, "D1.dark_current": 0.0, "temperature": 298.15,
+    "D1.signal_shot": 0.0, "D1.ambient_shot": 0.0, "D1.dark_shot": 0.0, "temperature": 298.15,
     "U1.second_pole": 0.8e9, "U1.open_loop_gain": 1e5, "U1.common_capacitance": 1e-18, "U1.output_resistance": SHORT,
     "U1.differential_capacitance": 1e-18, "U1.voltage_noise": 1e-9, "U1.voltage_noise_corner": 1e-9,
     "U1.current_noise": 1e-15, "U1.current_noise_corner": 1e-9,

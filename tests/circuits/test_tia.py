@@ -222,14 +222,6 @@ def test_reading_twice_gives_the_same_result() -> None:
     assert sized("tia").figures == sized("tia", ("title", 'title = "My receiver"')).figures
 
 
-def test_what_is_read_but_not_done_is_refused() -> None:
-    changes = (("", '[load]\ncoupling = "ac"\n[blocks]\npost_filter = { order = 2, cutoff = "5 MHz" }'),)
-    with pytest.raises(InputError) as refused:
-        sized("tia", *changes)
-    assert "load.coupling: tia fits no coupling capacitor" in str(refused.value)
-    assert "blocks.post_filter: tia fits no filter" in str(refused.value)
-
-
 def test_a_wider_search_sends_the_choice_back() -> None:
     """Peaking that is zero at nominal and at every single limit, and is not at the corner of several together."""
     changes = (

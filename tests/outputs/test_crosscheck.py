@@ -23,12 +23,12 @@ SILENT = 1e-40  #: so little noise that a deck leaves its generator out
 GENERATORS = {
     "U1 voltage": {"U1.voltage_noise": 1e-6, "U1.current_noise": SILENT},
     "U1 current": {"U1.voltage_noise": SILENT, "U1.current_noise": 5e-12},
-    "D1 ambient shot": {"U1.voltage_noise": SILENT, "U1.current_noise": SILENT, "D1.ambient_current": 1e-3},
-    "D1 dark shot": {"U1.voltage_noise": SILENT, "U1.current_noise": SILENT, "D1.dark_current": 1e-3},
-    "D1 signal shot": {"U1.voltage_noise": SILENT, "U1.current_noise": SILENT, "D1.signal_current": 1e-3},
+    "D1 ambient shot": {"U1.voltage_noise": SILENT, "U1.current_noise": SILENT, "D1.ambient_shot": 1e-3},
+    "D1 dark shot": {"U1.voltage_noise": SILENT, "U1.current_noise": SILENT, "D1.dark_shot": 1e-3},
+    "D1 signal shot": {"U1.voltage_noise": SILENT, "U1.current_noise": SILENT, "D1.signal_shot": 1e-3},
     "R1 thermal": {
         "U1.voltage_noise": SILENT, "U1.current_noise": SILENT,
-        "D1.ambient_current": 0.0, "D1.signal_current": 0.0, "D1.dark_current": 0.0,
+        "D1.ambient_shot": 0.0, "D1.signal_shot": 0.0, "D1.dark_shot": 0.0,
     },
 }  # fmt: skip
 """Generator -> values that let it drown the others."""

@@ -127,9 +127,9 @@ def _(element: Photodiode) -> Parts:
             _own("R", element, "series_resistance", (junction, element.anode)),
         ),
         (
-            _shot(f"{ref} signal shot", inside, _named(f"{ref}.signal_current")),
-            _shot(f"{ref} ambient shot", inside, _named(f"{ref}.ambient_current")),
-            _shot(f"{ref} dark shot", inside, _named(f"{ref}.dark_current")),
+            _shot(f"{ref} signal shot", inside, _named(f"{ref}.signal_shot")),
+            _shot(f"{ref} ambient shot", inside, _named(f"{ref}.ambient_shot")),
+            _shot(f"{ref} dark shot", inside, _named(f"{ref}.dark_shot")),
             _thermal(f"{ref} shunt", inside, _named(f"{ref}.shunt_resistance")),
             _thermal(f"{ref} series", (junction, element.anode), _named(f"{ref}.series_resistance")),
         ),

@@ -88,7 +88,10 @@ def _companion_roots(coefficients: Array) -> Complex:
     matrix = np.zeros((coefficients.shape[1], order, order))
     matrix[:, np.arange(1, order), np.arange(order - 1)] = 1.0
     matrix[:, :, -1] = (-coefficients[:-1] / coefficients[-1]).T
-    return np.linalg.eigvals(matrix).astype(complex).T
+    known = np.isfinite(matrix).all(axis=(1, 2))
+    roots = np.full(coefficients.shape[::-1], complex(np.nan, np.nan))[:, :order]
+    roots[known] = np.linalg.eigvals(matrix[known])
+    return roots.T
 
 
 def _polished(roots: Complex, coefficients: Array) -> Complex:

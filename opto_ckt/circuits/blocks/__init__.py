@@ -1,1 +1,23 @@
-"""Blocks: parts of a circuit that any circuit may take."""
+"""Blocks by name, loaded when a design asks for them."""
+
+from __future__ import annotations
+
+from collections.abc import Collection, Mapping
+from importlib import import_module
+from typing import TYPE_CHECKING
+
+if TYPE_CHECKING:
+    from opto_ckt.circuit import Block
+    from opto_ckt.request import Request
+
+BLOCKS: Mapping[str, str] = {}
+"""Name, as under [blocks] and in the slots of circuits -> module whose ``BLOCK`` it is."""
+
+
+def blocks_of(request: Request, places: Collection[str]) -> dict[str, Block]:
+    """The blocks that a design asks for, as far as there are places for them, by name."""
+    return {
+        name: import_module(module).BLOCK
+        for name, module in BLOCKS.items()
+        if name in places and name in request.blocks_asked
+    }

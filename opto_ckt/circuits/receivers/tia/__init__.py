@@ -14,23 +14,17 @@ r"""Transimpedance amplifier with resistive feedback, one op amp.
 from __future__ import annotations
 
 from opto_ckt.circuit import Circuit
+from opto_ckt.circuits.receivers import avalanche, refusals
 from opto_ckt.circuits.receivers.detector import noise_band, noise_frequency
-from opto_ckt.circuits.receivers.tia import (
-    capacitor,
-    faults,
-    loads,
-    operation,
-    remarks,
-    sizing,
-    starter,
-    structure,
-)
-from opto_ckt.request import ReceiverRequest
+from opto_ckt.circuits.receivers.feedback import faults, loads, operation, remarks
+from opto_ckt.circuits.receivers.feedback.stage import summing_node
+from opto_ckt.circuits.receivers.tia import sizing, starter, structure
+from opto_ckt.request import OpAmpReceiverRequest
 
 CIRCUIT = Circuit(
     name="tia",
     title="transimpedance amplifier, resistive feedback",
-    request=ReceiverRequest,
+    request=OpAmpReceiverRequest,
     topology=structure.topology,
     offers=operation.OFFERS,
     given=operation.given,
@@ -53,6 +47,7 @@ CIRCUIT = Circuit(
     ),
     formulas=sizing.FORMULAS,
     starter=starter.STARTER,
-    refused=operation.refused,
-    input_capacitance=capacitor.input_capacitance,
+    refused=refusals.refused,
+    input_capacitance=summing_node,
+    settled=avalanche.settled,
 )

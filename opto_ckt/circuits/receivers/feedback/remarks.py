@@ -1,24 +1,24 @@
-"""What a designer ought to be told about a sized transimpedance amplifier."""
+"""What a designer ought to be told about a sized transimpedance stage."""
 
 from __future__ import annotations
 
 import numpy as np
 
-from opto_ckt.circuits.receivers.detector import POLARITY, level_factor, noise_band, wanted_bandwidth
-from opto_ckt.circuits.receivers.tia.capacitor import BUILDABLE
+from opto_ckt.circuits.receivers import avalanche
+from opto_ckt.circuits.receivers.detector import POLARITY, noise_band, one_level, wanted_bandwidth
+from opto_ckt.circuits.receivers.feedback.capacitor import BUILDABLE
 from opto_ckt.limits import Limits, Values
-from opto_ckt.request import ReceiverRequest
+from opto_ckt.request import OpAmpReceiverRequest
 from opto_ckt.units import write
 
 
-def remarks(values: Values, limits: Limits, request: ReceiverRequest) -> tuple[str, ...]:
+def remarks(values: Values, limits: Limits, request: OpAmpReceiverRequest) -> tuple[str, ...]:
     """Advice on slew rate, thick film, dark reach, polarity and capacitors too small to fit."""
-    responsivity = float(np.max(values["D1.responsivity"]))
-    r1 = float(np.max(values["R1"]))
+    r1 = float(np.max(values["feedback_resistance"]))
     found = [
         "output rises with light" if POLARITY[request.detector.output] > 0 else "output falls with light",
     ]
-    step = responsivity * request.signal.power.high * level_factor(request) * r1
+    step = float(np.max(one_level(values, request))) * r1
     bandwidth = wanted_bandwidth(request)
     if bandwidth is not None:
         needed = 2 * np.pi * bandwidth * step / 2
@@ -27,7 +27,7 @@ def remarks(values: Values, limits: Limits, request: ReceiverRequest) -> tuple[s
                 f"slew rate: the largest step asks for {write(float(needed), 'V/s')}, U1 gives"
                 f" {write(request.amplifier.slew_rate.low, 'V/s')}"
             )
-    standing = (responsivity * request.signal.power.nominal + request.ambient_current.high) * r1
+    standing = float(np.max(values["D1.signal_current"] + values["D1.ambient_current"])) * r1
     if standing > 0.05 and noise_band(request)[0] < 1e3:
         found.append(
             f"R1 carries {write(standing, 'V')} of standing photocurrent: fit thin film, thick film adds 1/f noise"
@@ -37,4 +37,4 @@ def remarks(values: Values, limits: Limits, request: ReceiverRequest) -> tuple[s
         found.append("the output cannot reach its dark level: raise conditions.input_level or add a negative supply")
     if 0 < float(np.max(values["C1"])) < BUILDABLE:
         found.append("C1 is no more than its pads: leave the pads bare, trim on the board, or lower R1")
-    return tuple(found)
+    return (*found, *avalanche.remarks(request))

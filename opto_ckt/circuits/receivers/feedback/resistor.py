@@ -1,4 +1,4 @@
-"""R1 of the transimpedance amplifier: the largest that swing, bandwidth and a bound on the gain allow."""
+"""R1 around an inverting amplifier: the largest that swing, bandwidth and a bound on the gain allow."""
 
 from __future__ import annotations
 
@@ -7,10 +7,16 @@ from math import inf
 import numpy as np
 
 from opto_ckt.circuit import Bench
-from opto_ckt.circuits.receivers.detector import POLARITY, level_factor, noise_frequency, wanted_bandwidth
-from opto_ckt.circuits.receivers.tia.capacitor import input_capacitance
+from opto_ckt.circuits.receivers.detector import (
+    POLARITY,
+    brightest,
+    noise_frequency,
+    on_the_bench,
+    one_level,
+    stage_bandwidth,
+)
+from opto_ckt.circuits.receivers.feedback.stage import Stage
 from opto_ckt.constants import ROOM_TEMPERATURE
-from opto_ckt.derivation import Derivation
 from opto_ckt.errors import InfeasibleError
 from opto_ckt.formulas import noise, noise_generator, second_order, transimpedance, transimpedance_limits
 from opto_ckt.formulas.formula import Real
@@ -18,18 +24,17 @@ from opto_ckt.request import ReceiverRequest
 from opto_ckt.units import percent, write
 
 
-def feedback_resistance(
-    request: ReceiverRequest, derivation: Derivation, bench: Bench, quality: float, overshoot: float
-) -> float:
-    """The largest R1 that swing, bandwidth and a bound on the transimpedance allow; the larger, the quieter."""
-    candidates = {"swing": _swing_resistance(request, derivation, bench, overshoot)}
-    bandwidth = wanted_bandwidth(request)
+def feedback_resistance(stage: Stage, overshoot: float) -> float:
+    """The largest resistance that swing, bandwidth and a bound on the transimpedance allow; the larger, the quieter."""
+    request, derivation = stage.request, stage.derivation
+    candidates = {"swing": _swing_resistance(stage, overshoot)}
+    bandwidth = stage_bandwidth(request)
     if bandwidth is not None:
-        candidates["bandwidth"] = _bandwidth_resistance(request, derivation, bench, quality, bandwidth)
+        candidates["bandwidth"] = _bandwidth_resistance(stage, bandwidth)
     bound = request.require.get("transimpedance")
     if bound is not None and bound.max:
         candidates["transimpedance"] = bound.max / _most(request)
-    quiet = _quiet_resistance(request, derivation, bench)
+    quiet = _quiet_resistance(stage)
     if quiet is not None and not np.isfinite(min(candidates.values())):
         candidates["noise"] = quiet
     binding = min(candidates, key=lambda name: candidates[name])
@@ -47,25 +52,25 @@ def feedback_resistance(
     return chosen
 
 
-def _quiet_resistance(request: ReceiverRequest, derivation: Derivation, bench: Bench) -> float | None:
+def _quiet_resistance(stage: Stage) -> float | None:
     """Least R1 whose thermal noise leaves room for the other generators under a bound on the noise; None if unasked."""
+    request, derivation, bench = stage.request, stage.derivation, stage.bench
     bounds = []
     hottest = bench.high("temperature")
+    hot = on_the_bench(request, bench, hottest)
     if (bound := request.require.get("input_noise_density")) is not None and bound.max:
         bounds.append(bound.max)
     if (bound := request.require.get("nep_density")) is not None and bound.max:
-        bounds.append(bound.max * float(request.detector.responsivity_at(request.signal.wavelength)))
+        bounds.append(bound.max * hot["D1.responsivity"])
     if not bounds:
         return None
-    dark = float(request.detector.dark_current_at(hottest, bench.high("D1.dark_current")))
-    steady = dark + bench.high("signal.ambient")
     others = (
-        float(noise.shot_noise(current=steady)) ** 2
+        float(noise.shot_noise(current=hot["D1.dark_shot"] + hot["D1.ambient_shot"])) ** 2
         + bench.high("U1.current_noise") ** 2
         + float(
             noise.capacitance_current_noise(
                 voltage_noise=bench.high("U1.voltage_noise"),
-                capacitance=sum(input_capacitance(request, bench).values()),
+                capacitance=stage.input_capacitance,
                 frequency=noise_frequency(request),
             )
         )
@@ -83,20 +88,18 @@ def _quiet_resistance(request: ReceiverRequest, derivation: Derivation, bench: B
     )
 
 
-def _swing_resistance(request: ReceiverRequest, derivation: Derivation, bench: Bench, overshoot: float) -> float:
-    """R1 that puts the one level of most light, at the hottest corner, just inside the swing."""
-    detector, hottest = request.detector, bench.high("temperature")
-    light = float(detector.responsivity_at(request.signal.wavelength)) * request.signal.power.high
-    light *= level_factor(request) * (bench.high("D1.responsivity") / bench.nominal("D1.responsivity"))
-    steady = bench.high("signal.ambient")
-    dark = float(detector.dark_current_at(hottest, bench.high("D1.dark_current")))
+def _swing_resistance(stage: Stage, overshoot: float) -> float:
+    """R1 that puts the one level of most light, at its worst corner, just inside the swing."""
+    request, bench = stage.request, stage.bench
+    most = brightest(request, bench)
+    light, steady, dark = float(one_level(most, request)), most["D1.ambient_current"], most["D1.dark_current"]
     spread = (1 + overshoot) * _most(request)
     rail = _headroom(request, bench) - bench.high("U1.offset_voltage")
     if rail <= 0:
         raise InfeasibleError(
             f"the output has no headroom: {write(rail, 'V')} between its resting level and its limit",
             [
-                f"conditions.input_level {'lower' if POLARITY[detector.output] > 0 else 'higher'}",
+                f"conditions.input_level {'lower' if POLARITY[request.detector.output] > 0 else 'higher'}",
                 f"conditions.supply wider by {write(-rail, 'V')}",
             ],
         )
@@ -107,9 +110,10 @@ def _swing_resistance(request: ReceiverRequest, derivation: Derivation, bench: B
     swing, current = min(swings.values(), key=lambda pair: pair[0] / pair[1] if pair[1] else inf)
     if not current:
         return inf
-    reason = f"{write(swing, 'V')} / {write(current, 'A')}: one level + ambient + dark at {write(hottest, '°C')},"
+    at = write(most["temperature"], "°C")
+    reason = f"{write(swing, 'V')} / {write(current, 'A')}: one level + ambient + dark at {at},"
     reason += f" {percent(spread - 1)} for overshoot and tolerance"
-    return derivation.compute(
+    return stage.derivation.compute(
         "R1 from swing", transimpedance.feedback_resistance, reason=reason, swing=swing, current=current
     )
 
@@ -128,11 +132,9 @@ def _headroom(request: ReceiverRequest, bench: Bench) -> float:
     return level - bench.high("supply.negative") - bench.high("U1.swing_to_negative")
 
 
-def _bandwidth_resistance(
-    request: ReceiverRequest, derivation: Derivation, bench: Bench, quality: float, bandwidth: float
-) -> float:
+def _bandwidth_resistance(stage: Stage, bandwidth: float) -> float:
     """Largest R1 that keeps the bandwidth at every corner of op amp and capacitance, with C_f sized at nominal."""
-    nominal = sum(input_capacitance(request, bench).values())
+    bench, quality, nominal = stage.bench, stage.quality, stage.input_capacitance
     scale = bench.high("D1.capacitance") / bench.nominal("D1.capacitance")
     gain_bandwidth = bench.nominal("U1.gain_bandwidth")
     start = transimpedance_limits.largest_feedback_resistance(
@@ -161,7 +163,7 @@ def _bandwidth_resistance(
     largest = float(resistances[reaching[-1]]) if len(reaching) else float(start) / 10
     # the closed form at the capacitance that gives the same R1 shows where the figure comes from
     worst = start / largest * nominal
-    return derivation.compute(
+    return stage.derivation.compute(
         "R1 from bandwidth",
         transimpedance_limits.largest_feedback_resistance,
         reason=f"{write(bandwidth, 'Hz')} kept at slow and fast op amp, least and most capacitance",

@@ -1,13 +1,13 @@
-"""What happens to the transimpedance amplifier when a joint opens, a part shorts or a supply is missing."""
+"""What happens to a transimpedance stage when a joint opens, a part shorts or a supply is missing."""
 
 from __future__ import annotations
 
 import numpy as np
 
 from opto_ckt.circuit import Fault, FaultOutcome
-from opto_ckt.circuits.receivers.detector import POLARITY, level_factor
+from opto_ckt.circuits.receivers.detector import POLARITY, one_level
 from opto_ckt.limits import Lanes, Values
-from opto_ckt.request import ReceiverRequest
+from opto_ckt.request import OpAmpReceiverRequest
 from opto_ckt.topology import OPEN, SHORT
 from opto_ckt.units import write
 
@@ -17,7 +17,7 @@ DIODE_DROP = 0.3  #: beyond a rail at which an input's protection begins to cond
 OVERLOAD = 10.0  #: light beyond the most asked for, as when a connector is probed with a test source
 
 
-def faults(request: ReceiverRequest) -> tuple[Fault, ...]:
+def faults(request: OpAmpReceiverRequest) -> tuple[Fault, ...]:
     """The cases of a receiver; each computed by overriding values."""
     return (
         Fault("detector open", {"D1.responsivity": 0.0, "D1.dark_current": 0.0, "signal.ambient": 0.0}),
@@ -30,25 +30,27 @@ def faults(request: ReceiverRequest) -> tuple[Fault, ...]:
     )
 
 
-def outcome(fault: Fault, values: Values, request: ReceiverRequest) -> FaultOutcome:
+def outcome(fault: Fault, values: Values, request: OpAmpReceiverRequest) -> FaultOutcome:
     """Output voltage and current into the summing node that the fault leads to, over all lanes."""
     sign = POLARITY[request.detector.output]
     level = np.asarray(values["input_level"], dtype=float)
-    light = values["D1.responsivity"] * values["signal.power"] * level_factor(request) + values["signal.ambient"]
+    light = one_level(values, request) + values["D1.ambient_current"]
     drop = sign * (level - values["supply.bias"])
-    through_diode = light + values["D1.dark_current"] + np.abs(drop) / values["D1.shunt_resistance"]
-    wanted = level + sign * through_diode * values["R1"]
+    through_diode = (
+        light + values["D1.dark_current"] + np.abs(drop) / (values["D1.shunt_resistance"] + values.get("R10", 0.0))
+    )
+    wanted = level + sign * through_diode * values["feedback_resistance"]
     upper = values["supply.positive"] - np.minimum(values["U1.swing_to_positive"], values["supply.positive"])
     lower = values["supply.negative"] + np.minimum(values["U1.swing_to_negative"], np.abs(values["supply.negative"]))
     output = np.clip(wanted, lower, upper)
-    feedback = np.abs(output - level) / values["R1"]
+    feedback = np.abs(output - level) / values["feedback_resistance"]
     excess = np.maximum(through_diode - feedback, 0.0)
     beyond = (values["supply.bias"] < values["supply.negative"] - DIODE_DROP) | (
         values["supply.bias"] > values["supply.positive"] + DIODE_DROP
     )
     outdone = excess > 1e-6 * through_diode
     pulled = bool(np.any(outdone))
-    to_bias = np.abs(output - values["supply.bias"]) / values["R1"]
+    to_bias = np.abs(output - values["supply.bias"]) / values["feedback_resistance"]
     through_diode = np.where(outdone & ~beyond, np.minimum(to_bias, through_diode), through_diode)
     excess = np.where(beyond & outdone, excess, 0.0)
     limit = _diode_limit(request)
@@ -56,7 +58,7 @@ def outcome(fault: Fault, values: Values, request: ReceiverRequest) -> FaultOutc
     return FaultOutcome(_sentence(np.asarray(output), np.asarray(excess), np.asarray(through_diode), ok, pulled), ok)
 
 
-def _diode_limit(request: ReceiverRequest) -> float:
+def _diode_limit(request: OpAmpReceiverRequest) -> float:
     limit = request.detector.photocurrent_max
     return np.inf if limit is None else limit
 

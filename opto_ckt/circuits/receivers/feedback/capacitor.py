@@ -1,16 +1,16 @@
-"""C1 of the transimpedance amplifier: its window between ringing and too slow or unstable, and its place in it."""
+"""C1 of a transimpedance stage: its window between ringing and too slow or unstable, and its place in it."""
 
 from __future__ import annotations
 
-from collections.abc import Mapping, Sequence
+from collections.abc import Sequence
 from itertools import product
 from math import inf, isfinite
 
 import numpy as np
 
 from opto_ckt.circuit import Bench, Fitted
-from opto_ckt.circuits.receivers.detector import wanted_bandwidth
-from opto_ckt.derivation import Derivation
+from opto_ckt.circuits.receivers.detector import stage_bandwidth
+from opto_ckt.circuits.receivers.feedback.stage import Stage
 from opto_ckt.errors import InfeasibleError
 from opto_ckt.formulas import second_order, transimpedance, transimpedance_limits
 from opto_ckt.limits import Lanes
@@ -24,42 +24,27 @@ DECIDES = ("U1.gain_bandwidth", "U1.second_pole", "D1.capacitance")  #: limits w
 ALLOWED_PEAKING = float(second_order.peaking(quality=1.0))  #: where nothing is asked for: 1.25 dB
 
 
-def input_capacitance(request: ReceiverRequest, bench: Bench) -> dict[str, float]:
-    """Capacitance of the summing node by where it comes from, nominal. [F]"""
-    capacitance = bench.nominal("D1.capacitance")
-    return {
-        "D1 at its bias": float(request.detector.capacitance_at(request.detector.reverse_bias, capacitance)),
-        "U1 common mode": bench.nominal("U1.common_capacitance"),
-        "U1 differential": bench.nominal("U1.differential_capacitance"),
-        "board": bench.nominal("CB"),
-    }
-
-
-def feedback_capacitor(
-    request: ReceiverRequest,
-    derivation: Derivation,
-    bench: Bench,
-    r1: float,
-    quality: float,
-    others: Mapping[str, float],
-) -> tuple[Fitted, float]:
+def feedback_capacitor(stage: Stage, resistance: float) -> tuple[Fitted, float]:
     """C1 for the wanted Q on the whole network, moved into its window; and the overshoot left at the worst corner.
 
     Raises
     ------
     InfeasibleError : what damps the response is more than a decompensated op amp stands.
     """
+    request, bench, quality, capacitance = stage.request, stage.bench, stage.quality, stage.input_capacitance
     series, stray = request.preferred.capacitors.series, bench.nominal("CS")
-    capacitance = sum(input_capacitance(request, bench).values())
     gain_bandwidth = bench.nominal("U1.gain_bandwidth")
     with np.errstate(invalid="ignore"):
         closed_form = transimpedance.feedback_capacitance(
-            feedback_resistance=r1, input_capacitance=capacitance, gain_bandwidth=gain_bandwidth, quality=quality
+            feedback_resistance=resistance,
+            input_capacitance=capacitance,
+            gain_bandwidth=gain_bandwidth,
+            quality=quality,
         )
     total = max(float(np.nan_to_num(closed_form)), stray)
-    found = bench.evaluate({"R1": r1, "C1": total * SCAN - stray, **others})
+    found = bench.evaluate({**stage.resistors(resistance), **stage.others, "C1": total * SCAN - stray})
     wanted = _where_quality(total * SCAN, found["quality_factor"], quality)
-    corners = _Corners(request, bench, r1, others)
+    corners = _Corners(stage, resistance)
     low, high = _window(request, corners, total * COARSE)
     stable = _largest_stable(bench, capacitance)
     if low > stable and isfinite(low):
@@ -67,15 +52,15 @@ def feedback_capacitor(
     high = min(high, stable)
     aim = min(max(wanted, low), high) if low <= high else min(low if isfinite(low) else wanted, stable)
     overshoot = min(float(corners.worst(np.array([aim]), ("overshoot",))["overshoot"][1][0]), 1.0)
-    if "C1" in request.fixed:
-        derivation.note("C1", "fixed in the design file")
-        return Fitted("C1", request.fixed["C1"], series, fixed=True), overshoot
-    reason = _reason(request, quality, (wanted, total, aim), (low, high), stray)
-    derivation.compute(
+    fixed = stage.fixed("C1")
+    if fixed is not None:
+        return Fitted("C1", fixed, series, fixed=True), overshoot
+    reason = _reason(quality, (wanted, total, aim), (low, high), stray)
+    stage.derivation.compute(
         "C1",
         transimpedance.feedback_capacitance,
         reason=reason,
-        feedback_resistance=r1,
+        feedback_resistance=resistance,
         input_capacitance=capacitance,
         gain_bandwidth=gain_bandwidth,
         quality=quality,
@@ -86,7 +71,6 @@ def feedback_capacitor(
 
 
 def _reason(
-    request: ReceiverRequest,
     quality: float,
     totals: tuple[float, float, float],
     window: tuple[float, float],
@@ -121,9 +105,10 @@ def _unstable(bench: Bench, capacitance: float, low: float, stable: float) -> In
 class _Corners:
     """The circuit at every combination of the limits that decide, C1 and strays at both ends of their spread."""
 
-    def __init__(self, request: ReceiverRequest, bench: Bench, r1: float, others: Mapping[str, float]) -> None:
-        self._bench, self._stock = bench, request.preferred.capacitors
-        self._fixed = {"R1": r1, **others}
+    def __init__(self, stage: Stage, resistance: float) -> None:
+        bench = self._bench = stage.bench
+        self._stock = stage.request.preferred.capacitors
+        self._fixed = {**stage.resistors(resistance), **stage.others}
         self._stray, self._spread = bench.nominal("CS"), bench.high("CS") - bench.nominal("CS")
         self._settings = list(product(*((bench.low(name), bench.high(name)) for name in DECIDES)))
 
@@ -156,7 +141,7 @@ def _window(request: ReceiverRequest, corners: _Corners, totals: Lanes) -> tuple
         & (worst["phase_margin"][0] >= (margin or 0.0))
     )
     low = float(totals[damped[0]]) if len(damped) else inf
-    bandwidth = wanted_bandwidth(request)
+    bandwidth = stage_bandwidth(request)
     if bandwidth is None:
         return low, inf
     wide = np.flatnonzero(worst["bandwidth"][0] >= bandwidth)

@@ -1,0 +1,130 @@
+"""What a transimpedance stage is at a temperature, a supply and a light: its levels at DC and its figures.
+
+What depends on the feedback resistance reads ``feedback_resistance``, which `biased` writes: R1, or what stands for it.
+"""
+
+from __future__ import annotations
+
+from functools import cached_property
+
+import numpy as np
+
+from opto_ckt.analyses.network import Evaluation
+from opto_ckt.circuit import OnDemand
+from opto_ckt.circuits.receivers.amplifier import either_sign, warmed
+from opto_ckt.circuits.receivers.board import load_limits, summing_node_limits
+from opto_ckt.circuits.receivers.detector import POLARITY, detector_limits
+from opto_ckt.circuits.receivers.feed import bias_limit, fed
+from opto_ckt.circuits.receivers.figures import OFFERS as RECEIVER_OFFERS
+from opto_ckt.circuits.receivers.figures import ReceiverFigures
+from opto_ckt.formulas.front_end import output_offset
+from opto_ckt.formulas.reference import divided_voltage, parallel_resistance
+from opto_ckt.limits import Figures, Lanes, Limit, Requirement, Values
+from opto_ckt.request import OpAmpReceiverRequest
+
+OFFERS = (*RECEIVER_OFFERS, "dc_offset", "dark_output")
+LEAST_MARGIN = 45.0  #: of the phase, where no other bound is asked for; common practice [°]
+
+
+def given(request: OpAmpReceiverRequest) -> dict[str, Limit]:
+    """Strays, load, bias supply; the offset of the op amp with either sign."""
+    return {
+        **detector_limits(request),
+        **summing_node_limits(request),
+        **load_limits(request),
+        **either_sign(request.amplifier),
+        "supply.bias": bias_limit(request),
+    }
+
+
+def bias(values: Values, request: OpAmpReceiverRequest) -> dict[str, float | Lanes]:
+    """Level, reverse bias, and what the diode and the amplifier are at the temperature of each lane; R1 alone."""
+    return biased(values, request, values["R1"])
+
+
+def biased(values: Values, request: OpAmpReceiverRequest, feedback: float | Lanes) -> dict[str, float | Lanes]:
+    """As `bias`, with a feedback resistance. [Ω]"""
+    level: float | Lanes = 0.0
+    if "R2" in values:
+        level = divided_voltage(voltage=values["supply.positive"], upper=values["R2"], lower=values["R3"])
+    found: dict[str, float | Lanes] = {
+        **values,
+        **fed(values, request, level),
+        **warmed(values, request.amplifier),
+        "feedback_resistance": feedback,
+    }
+    return {**found, **_levels(found, request)}
+
+
+def _levels(values: Values, request: OpAmpReceiverRequest) -> dict[str, float | Lanes]:
+    """Node voltages at the average light: the currents into the summing node balance, at finite open-loop gain."""
+    sign = POLARITY[request.detector.output]
+    light = values["D1.responsivity"] * values["signal.power"] + values["D1.ambient_current"]
+    shunt, level = 1 / values["D1.shunt_resistance"], values["input_level"]
+    inner = 1 / values["feedback_resistance"] + 1 / values["RB"] + shunt
+    wanted = level + values["U1.offset"]
+    drawn = wanted * inner - level * shunt + values["U1.bias_current"] + sign * (light + values["D1.dark_current"])
+    output = drawn / (1 / values["feedback_resistance"] + inner / values["U1.open_loop_gain"])
+    return {"node.amp": output, "node.sum": wanted - output / values["U1.open_loop_gain"]}
+
+
+class FeedbackFigures(ReceiverFigures):
+    """The receiver's figures, and its levels at DC."""
+
+    def __init__(self, values: Values, evaluation: Evaluation, request: OpAmpReceiverRequest) -> None:
+        self._dark = dark(values, request)
+        super().__init__(
+            values, evaluation, request, headroom=headroom(values, request), dark_shift=self._dark["shift"]
+        )
+
+    @cached_property
+    def dc_offset(self) -> Lanes:
+        """All errors of the output in the dark with one sign. [V]"""
+        return self._dark["offset"]
+
+    @cached_property
+    def dark_output(self) -> Lanes:
+        """Output voltage in the dark. [V]"""
+        return self._dark["output"]
+
+
+def figures(values: Values, evaluation: Evaluation, request: OpAmpReceiverRequest) -> Figures:
+    """Every figure that the receiver offers, each computed when it is asked for."""
+    return OnDemand(FeedbackFigures(values, evaluation, request), OFFERS)
+
+
+def headroom(values: Values, request: OpAmpReceiverRequest) -> float | Lanes:
+    """From the level to the output's limit in the direction of the signal. [V]"""
+    if POLARITY[request.detector.output] > 0:
+        return values["supply.positive"] - values["U1.swing_to_positive"] - values["input_level"]
+    return values["input_level"] - values["supply.negative"] - values["U1.swing_to_negative"]
+
+
+def dark(values: Values, request: OpAmpReceiverRequest) -> dict[str, Lanes]:
+    """Output in the dark: all errors with one sign; the voltage itself; its shift towards the signal's limit."""
+    shunt = parallel_resistance(first=values["D1.shunt_resistance"], second=values["RB"])
+    shift = values["feedback_resistance"] * values["D1.dark_current"]
+    sign, offset = POLARITY[request.detector.output], values["U1.offset"]
+
+    def error(dark_current: float | Lanes) -> Lanes:
+        return np.asarray(
+            output_offset(
+                offset_voltage=np.abs(offset),
+                bias_current=values["U1.bias_current"],
+                dark_current=dark_current,
+                feedback_resistance=values["feedback_resistance"],
+                shunt_resistance=shunt,
+            )
+        )
+
+    return {
+        "offset": error(values["D1.dark_current"]),
+        "output": np.asarray(values["input_level"] + sign * shift + np.copysign(1, offset) * error(0.0)),
+        "shift": np.asarray(shift + error(0.0)),
+    }
+
+
+def implied(request: OpAmpReceiverRequest) -> tuple[Requirement, ...]:
+    """The output must not reach its limit at the most light asked for, and the loop must not ring."""
+    most = request.signal.power.high
+    return (Requirement("overload", "min", most, most), Requirement("phase_margin", "min", LEAST_MARGIN, LEAST_MARGIN))

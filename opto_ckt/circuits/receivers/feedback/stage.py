@@ -1,0 +1,65 @@
+"""What R1 and C1 are sized around: the stage without its feedback."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Mapping
+from dataclasses import dataclass, field
+
+from opto_ckt.circuit import Bench
+from opto_ckt.derivation import Derivation
+from opto_ckt.formulas import second_order
+from opto_ckt.limits import Lanes, Values
+from opto_ckt.request import OpAmpReceiverRequest
+
+QUALITY: Mapping[str, float] = {"flat": 0.5**0.5, "bessel": 3**-0.5, "critical": 0.5}
+"""Q of a second-order response by its name."""
+
+
+def _alone(resistance: float | Lanes) -> Values:
+    return {"R1": resistance}
+
+
+@dataclass(frozen=True)
+class Stage:
+    """An inverting amplifier whose feedback resistance and capacitance are wanted."""
+
+    request: OpAmpReceiverRequest
+    derivation: Derivation
+    bench: Bench
+    capacitance: Mapping[str, float]  #: of the summing node without the feedback, itemised, nominal [F]
+    others: Mapping[str, float] = field(default_factory=dict)  #: exact values of the parts that are sized already
+    resistors: Callable[[float | Lanes], Values] = _alone  #: what is fitted for a feedback resistance
+
+    @property
+    def input_capacitance(self) -> float:
+        """Of the summing node, all items together. [F]"""
+        return sum(self.capacitance.values())
+
+    @property
+    def quality(self) -> float:
+        """Q that the response asked for has; maximally flat where neither a name nor a bound says otherwise."""
+        request = self.request
+        if request.target.response is not None:
+            return QUALITY[request.target.response]
+        peaking = request.require.get("peaking")
+        if peaking is not None and peaking.max:
+            return float(second_order.quality_for_peaking(peaking=peaking.max / 2))
+        return QUALITY["flat"]
+
+    def fixed(self, ref: str) -> float | None:
+        """The value that the engineer insists on, noted as the reason of the part."""
+        value = self.request.fixed.get(ref)
+        if value is not None:
+            self.derivation.note(ref, "fixed in the design file")
+        return value
+
+
+def summing_node(request: OpAmpReceiverRequest, bench: Bench) -> dict[str, float]:
+    """Capacitance of the summing node by where it comes from, nominal. [F]"""
+    capacitance = bench.nominal("D1.capacitance")
+    return {
+        "D1 at its bias": float(request.detector.capacitance_at(request.detector.resting_bias, capacitance)),
+        "U1 common mode": bench.nominal("U1.common_capacitance"),
+        "U1 differential": bench.nominal("U1.differential_capacitance"),
+        "board": bench.nominal("CB"),
+    }
