@@ -9,11 +9,25 @@ from opto_ckt.request.request import Request
 
 if TYPE_CHECKING:
     from opto_ckt.request.driver import LaserDriverRequest
-    from opto_ckt.request.receiver import OpAmpReceiverRequest, ReceiverRequest
+    from opto_ckt.request.receiver import (
+        BootstrapRequest,
+        CascodeRequest,
+        OpAmpReceiverRequest,
+        ReceiverRequest,
+    )
 
-__all__ = ["LaserDriverRequest", "OpAmpReceiverRequest", "ReceiverRequest", "Request"]
+__all__ = [
+    "BootstrapRequest",
+    "CascodeRequest",
+    "LaserDriverRequest",
+    "OpAmpReceiverRequest",
+    "ReceiverRequest",
+    "Request",
+]
 
 LOADED_ON_USE = {
+    "BootstrapRequest": "receiver",
+    "CascodeRequest": "receiver",
     "OpAmpReceiverRequest": "receiver",
     "ReceiverRequest": "receiver",
     "LaserDriverRequest": "driver",

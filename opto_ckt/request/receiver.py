@@ -205,3 +205,15 @@ class OpAmpReceiverRequest(ReceiverRequest):
     """A design file of a receiver around an op amp."""
 
     amplifier: OpAmpData
+
+
+class BootstrapRequest(OpAmpReceiverRequest):
+    """A design file of a receiver whose detector is driven back by a follower."""
+
+    follower: JfetData
+
+
+class CascodeRequest(OpAmpReceiverRequest):
+    """A design file of a receiver whose photocurrent passes a transistor."""
+
+    transistor: BipolarData

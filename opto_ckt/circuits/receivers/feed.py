@@ -64,20 +64,23 @@ def feed_drawn(request: ReceiverRequest, far: Point) -> tuple[Point, dict[str, t
     return supply, {"bias_filter": (supply, far)}
 
 
-def fed(values: Values, request: ReceiverRequest, level: float | Lanes) -> dict[str, float | Lanes]:
+def fed(
+    values: Values, request: ReceiverRequest, level: float | Lanes, series: float | Lanes = 0.0
+) -> dict[str, float | Lanes]:
     """The detector in its feed: reverse bias left at the average light, and all that follows from it.
 
     Parameters
     ----------
     values : before bias.
     level : voltage of the end that feeds the amplifier. [V]
+    series : of the circuit's own between supply and far end, besides a filter's. [Ω]
     """
     sign = POLARITY[request.detector.output]
     node = bias_node(request)
     here = {"level": level, GROUND: 0.0}
     supply = here[node] if node in here else values[f"supply.{node}"]
     resting = sign * (level - supply)
-    resistance = values.get("R10", 0.0)
+    resistance = values.get("R10", 0.0) + series
 
     def left(reverse_bias: float | Lanes) -> dict[str, float | Lanes]:
         return detected({**values, "detector.reverse_bias": reverse_bias}, request)

@@ -42,18 +42,38 @@ def bias(values: Values, request: OpAmpReceiverRequest) -> dict[str, float | Lan
     return biased(values, request, values["R1"])
 
 
-def biased(values: Values, request: OpAmpReceiverRequest, feedback: float | Lanes) -> dict[str, float | Lanes]:
-    """As `bias`, with a feedback resistance. [Ω]"""
-    level: float | Lanes = 0.0
-    if "R2" in values:
-        level = divided_voltage(voltage=values["supply.positive"], upper=values["R2"], lower=values["R3"])
+def biased(
+    values: Values,
+    request: OpAmpReceiverRequest,
+    feedback: float | Lanes,
+    *,
+    series: float | Lanes = 0.0,
+    leak: float | Lanes = 0.0,
+) -> dict[str, float | Lanes]:
+    """As `bias`, with what a circuit has of its own.
+
+    Parameters
+    ----------
+    feedback : resistance around the amplifier. [Ω]
+    series : between the detector and its supply, besides a filter's. [Ω]
+    leak : current that parts beside detector and amplifier draw from the summing node. [A]
+    """
+    level = level_voltage(values)
     found: dict[str, float | Lanes] = {
         **values,
-        **fed(values, request, level),
+        **fed(values, request, level, series),
         **warmed(values, request.amplifier),
         "feedback_resistance": feedback,
+        "summing_leak": leak,
     }
     return {**found, **_levels(found, request)}
+
+
+def level_voltage(values: Values) -> float | Lanes:
+    """Of the + input: ground, or what the divider of a single supply makes. [V]"""
+    if "R2" not in values:
+        return 0.0
+    return divided_voltage(voltage=values["supply.positive"], upper=values["R2"], lower=values["R3"])
 
 
 def _levels(values: Values, request: OpAmpReceiverRequest) -> dict[str, float | Lanes]:
@@ -64,6 +84,7 @@ def _levels(values: Values, request: OpAmpReceiverRequest) -> dict[str, float | 
     inner = 1 / values["feedback_resistance"] + 1 / values["RB"] + shunt
     wanted = level + values["U1.offset"]
     drawn = wanted * inner - level * shunt + values["U1.bias_current"] + sign * (light + values["D1.dark_current"])
+    drawn = drawn + values["summing_leak"]
     output = drawn / (1 / values["feedback_resistance"] + inner / values["U1.open_loop_gain"])
     return {"node.amp": output, "node.sum": wanted - output / values["U1.open_loop_gain"]}
 
@@ -110,7 +131,7 @@ def dark(values: Values, request: OpAmpReceiverRequest) -> dict[str, Lanes]:
         return np.asarray(
             output_offset(
                 offset_voltage=np.abs(offset),
-                bias_current=values["U1.bias_current"],
+                bias_current=values["U1.bias_current"] + np.abs(values["summing_leak"]),
                 dark_current=dark_current,
                 feedback_resistance=values["feedback_resistance"],
                 shunt_resistance=shunt,

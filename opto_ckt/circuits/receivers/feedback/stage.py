@@ -28,6 +28,7 @@ class Stage:
     bench: Bench
     capacitance: Mapping[str, float]  #: of the summing node without the feedback, itemised, nominal [F]
     others: Mapping[str, float] = field(default_factory=dict)  #: exact values of the parts that are sized already
+    other_noise: float = 0.0  #: of parts beside detector and amplifier, as a current of the detector [A/√Hz]
     resistors: Callable[[float | Lanes], Values] = _alone  #: what is fitted for a feedback resistance
 
     @property
