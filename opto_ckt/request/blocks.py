@@ -14,7 +14,15 @@ class PostFilter(Table):
     cutoff: Annotated[float, Unit("Hz", "7.5 MHz")]
 
 
+class GainStage(Table):
+    """Voltage gain behind the first amplifier."""
+
+    gain: Annotated[float | None, Unit("V/V", "10 V/V")] = None  #: else what require.transimpedance leaves for it
+
+
 class ReceiverBlocks(Table):
     """Blocks that are fitted; one that is left out is not."""
+
+    gain_stage: GainStage | None = None
 
     post_filter: PostFilter | None = None

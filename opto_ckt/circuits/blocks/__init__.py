@@ -10,7 +10,9 @@ if TYPE_CHECKING:
     from opto_ckt.circuit import Block
     from opto_ckt.request import Request
 
-BLOCKS: Mapping[str, str] = {}
+BLOCKS: Mapping[str, str] = {
+    "gain_stage": "opto_ckt.circuits.blocks.gain_stage",
+}
 """Name, as under [blocks] and in the slots of circuits -> module whose ``BLOCK`` it is."""
 
 

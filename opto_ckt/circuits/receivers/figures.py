@@ -127,7 +127,12 @@ class ReceiverFigures:
     def overload(self) -> Lanes:
         """Average power at which the one level reaches the limit of the amplifier's output. [W]"""
         gain = self.transimpedance if self._stage_gain is None else self._stage_gain
-        left = (self._headroom - self._dark_shift) / (gain * (1 + self.overshoot)) - self._ambient
+        reach = (self._headroom - self._dark_shift) / gain
+        if "second.gain" in self._values:
+            second, offset = self._values["second.gain"], np.abs(self._values["second.offset"])
+            later = self._values["second.headroom"] - second * self._dark_shift - offset
+            reach = np.minimum(reach, later / (gain * second))
+        left = reach / (1 + self.overshoot) - self._ambient
         return np.asarray(np.maximum(left, 0.0) / (self._responsivity * level_factor(self._request)))
 
     @cached_property

@@ -5,12 +5,13 @@ from __future__ import annotations
 from collections.abc import Sequence
 from itertools import product
 from math import inf, isfinite
+from typing import NamedTuple
 
 import numpy as np
 
 from opto_ckt.circuit import Bench, Fitted
 from opto_ckt.circuits.receivers.detector import stage_bandwidth
-from opto_ckt.circuits.receivers.feedback.stage import Stage
+from opto_ckt.circuits.receivers.feedback.stage import Stage, capacitor_deviation
 from opto_ckt.errors import InfeasibleError
 from opto_ckt.formulas import second_order, transimpedance, transimpedance_limits
 from opto_ckt.limits import Lanes
@@ -24,8 +25,16 @@ DECIDES = ("U1.gain_bandwidth", "U1.second_pole", "D1.capacitance")  #: limits w
 ALLOWED_PEAKING = float(second_order.peaking(quality=1.0))  #: where nothing is asked for: 1.25 dB
 
 
-def feedback_capacitor(stage: Stage, resistance: float) -> tuple[Fitted, float]:
-    """C1 for the wanted Q on the whole network, moved into its window; and the overshoot left at the worst corner.
+class Damped(NamedTuple):
+    """C1, and what it leaves."""
+
+    fitted: Fitted
+    overshoot: float  #: at the worst corner
+    windowed: bool  #: some C1 both damps and keeps the bandwidth at every corner
+
+
+def feedback_capacitor(stage: Stage, resistance: float) -> Damped:
+    """C1 for the wanted Q on the whole network, moved into its window.
 
     Raises
     ------
@@ -54,7 +63,7 @@ def feedback_capacitor(stage: Stage, resistance: float) -> tuple[Fitted, float]:
     overshoot = min(float(corners.worst(np.array([aim]), ("overshoot",))["overshoot"][1][0]), 1.0)
     fixed = stage.fixed("C1")
     if fixed is not None:
-        return Fitted("C1", fixed, series, fixed=True), overshoot
+        return Damped(Fitted("C1", fixed, series, fixed=True), overshoot, True)
     reason = _reason(quality, (wanted, total, aim), (low, high), stray)
     stage.derivation.compute(
         "C1",
@@ -67,7 +76,8 @@ def feedback_capacitor(stage: Stage, resistance: float) -> tuple[Fitted, float]:
     )
     exact = max(aim - stray, 0.0)
     bare = exact < BUILDABLE
-    return Fitted("C1", exact, series, low=0.0 if bare else exact / 2, high=stable - stray, omittable=bare), overshoot
+    part = Fitted("C1", exact, series, low=0.0 if bare else exact / 2, high=stable - stray, omittable=bare)
+    return Damped(part, overshoot, low <= high)
 
 
 def _reason(
@@ -106,17 +116,15 @@ class _Corners:
     """The circuit at every combination of the limits that decide, C1 and strays at both ends of their spread."""
 
     def __init__(self, stage: Stage, resistance: float) -> None:
+        self._stage = stage
         bench = self._bench = stage.bench
-        self._stock = stage.request.preferred.capacitors
         self._fixed = {**stage.resistors(resistance), **stage.others}
-        self._stray, self._spread = bench.nominal("CS"), bench.high("CS") - bench.nominal("CS")
+        self._stray = bench.nominal("CS")
         self._settings = list(product(*((bench.low(name), bench.high(name)) for name in DECIDES)))
 
     def worst(self, totals: Lanes, names: Sequence[str]) -> dict[str, tuple[Lanes, Lanes]]:
         """Least and greatest of each figure over the corners, for each total C_f."""
-        fitted = np.maximum(totals - self._stray, 0.0)
-        tolerance = np.where(fitted < 10e-12, self._stock.tolerance_below_10pF, self._stock.tolerance * fitted)
-        deviation = np.minimum(tolerance, fitted) + self._spread
+        deviation = capacitor_deviation(self._stage, totals - self._stray)
         ends = np.array([totals - deviation - self._stray, totals + deviation - self._stray])
         lanes = {name: np.repeat([s[i] for s in self._settings], ends.size) for i, name in enumerate(DECIDES)}
         found = self._bench.evaluate({**self._fixed, **lanes, "C1": np.tile(ends.ravel(), len(self._settings))})

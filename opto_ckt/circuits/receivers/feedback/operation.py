@@ -74,18 +74,28 @@ class FeedbackFigures(ReceiverFigures):
     def __init__(self, values: Values, evaluation: Evaluation, request: OpAmpReceiverRequest) -> None:
         self._dark = dark(values, request)
         super().__init__(
-            values, evaluation, request, headroom=headroom(values, request), dark_shift=self._dark["shift"]
+            values,
+            evaluation,
+            request,
+            headroom=headroom(values, request),
+            dark_shift=self._dark["shift"],
+            stage_gain=values["feedback_resistance"] if request.blocks_asked else None,
         )
 
     @cached_property
     def dc_offset(self) -> Lanes:
         """All errors of the output in the dark with one sign. [V]"""
-        return self._dark["offset"]
+        return self._behind(self._dark["offset"], 1.0)
 
     @cached_property
     def dark_output(self) -> Lanes:
         """Output voltage in the dark. [V]"""
-        return self._dark["output"]
+        return self._behind(self._dark["output"], np.sign(self._values.get("second.offset", 0.0)))
+
+    def _behind(self, level: Lanes, sign: Lanes | float) -> Lanes:
+        """A level of the amplifier behind the gain stage, where there is one, whose own error has a sign. [V]"""
+        values = self._values
+        return np.asarray(level * values.get("second.gain", 1.0) + sign * np.abs(values.get("second.offset", 0.0)))
 
 
 def figures(values: Values, evaluation: Evaluation, request: OpAmpReceiverRequest) -> Figures:

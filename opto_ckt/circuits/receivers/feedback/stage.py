@@ -5,6 +5,9 @@ from __future__ import annotations
 from collections.abc import Callable, Mapping
 from dataclasses import dataclass, field
 
+import numpy as np
+
+from opto_ckt.analyses.corners import SMALL_CAPACITOR
 from opto_ckt.circuit import Bench
 from opto_ckt.derivation import Derivation
 from opto_ckt.formulas import second_order
@@ -63,3 +66,11 @@ def summing_node(request: OpAmpReceiverRequest, bench: Bench) -> dict[str, float
         "U1 differential": bench.nominal("U1.differential_capacitance"),
         "board": bench.nominal("CB"),
     }
+
+
+def capacitor_deviation(stage: Stage, fitted: Lanes) -> Lanes:
+    """By how much the capacitance across R1 may differ from nominal: C1's tolerance, and the strays' spread. [F]"""
+    stock, stray = stage.request.preferred.capacitors, stage.bench.high("CS") - stage.bench.nominal("CS")
+    part = np.maximum(fitted, 0.0)
+    tolerance = np.where(part < SMALL_CAPACITOR, stock.tolerance_below_10pF, stock.tolerance * part)
+    return np.asarray(np.minimum(tolerance, part) + stray)

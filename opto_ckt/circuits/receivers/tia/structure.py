@@ -18,6 +18,7 @@ from opto_ckt.topology import (
 )
 
 SUM: Point = (3, 2.5)
+OUT: Point = (10.5, 2)
 
 
 def topology(request: OpAmpReceiverRequest) -> Topology:
@@ -34,7 +35,7 @@ def topology(request: OpAmpReceiverRequest) -> Topology:
         OpAmp("U1", plus=level, minus="sum", out="amp", positive="positive", negative=negative, role="amplifier",
               table="amplifier", at=(6, 2), facing=RIGHT),
         *rails,
-        Terminal("OUT", "out", at=(10.5, 2)),
+        Terminal("OUT", "out", at=OUT),
         Capacitor("CS", "sum", "amp", role="stray across R1", fitted=False),
         Capacitor("CB", "sum", GROUND, role="board", fitted=False),
         Resistor("RB", "sum", GROUND, role="leakage", fitted=False),
@@ -52,7 +53,7 @@ def topology(request: OpAmpReceiverRequest) -> Topology:
             (SUM, (6, 2.5)),
             ((5, 2.5), (5, 6)),
             ((9, 2), (9, 6)),
-            ((8, 2), (10.5, 2)),
+            ((8, 2), board.line_start(OUT)),
             ((5.4, 1.5), (6, 1.5)),
             *divider_wires,
             *(() if raised else (((5.4, 1.5), (5.4, 1)),)),
@@ -67,5 +68,5 @@ def topology(request: OpAmpReceiverRequest) -> Topology:
         ),
         slots={"bias_filter": (bias_node(request), "far"), **board.SLOTS},
         taps=board.TAPS,
-        openings=openings | board.openings((10.5, 2)),
+        openings=openings | board.openings(OUT),
     )
