@@ -13,7 +13,7 @@ from opto_ckt.circuit import Bench, Fitted
 from opto_ckt.circuits.receivers.detector import stage_bandwidth
 from opto_ckt.circuits.receivers.feedback.stage import Stage, capacitor_deviation
 from opto_ckt.errors import InfeasibleError
-from opto_ckt.formulas import second_order, transimpedance, transimpedance_limits
+from opto_ckt.formulas import second_order, transimpedance
 from opto_ckt.limits import Lanes
 from opto_ckt.request import ReceiverRequest
 from opto_ckt.units import write
@@ -22,6 +22,7 @@ BUILDABLE = 0.2e-12  #: a fitted capacitor below this is no more than its own pa
 SCAN = np.geomspace(1 / 20, 20, 121)  #: total C_f tried at nominal, as multiples of the closed form
 COARSE = SCAN[::2]  #: tried at corners
 DECIDES = ("U1.gain_bandwidth", "U1.second_pole", "D1.capacitance")  #: limits whose combinations make the corners
+LOADS = ("D1.capacitance", "U1.common_capacitance", "U1.differential_capacitance", "CB")  #: of the summing node
 ALLOWED_PEAKING = float(second_order.peaking(quality=1.0))  #: where nothing is asked for: 1.25 dB
 
 
@@ -55,7 +56,7 @@ def feedback_capacitor(stage: Stage, resistance: float) -> Damped:
     wanted = _where_quality(total * SCAN, found["quality_factor"], quality)
     corners = _Corners(stage, resistance)
     low, high = _window(request, corners, total * COARSE)
-    stable = _largest_stable(bench, capacitance)
+    stable = _largest_stable(stage, resistance, total * SCAN)
     if low > stable and isfinite(low):
         raise _unstable(bench, capacitance, low, stable)
     high = min(high, stable)
@@ -107,7 +108,7 @@ def _unstable(bench: Bench, capacitance: float, low: float, stable: float) -> In
         f" minimum stable gain {gain:.3g} of U1",
         [
             f"minimum stable gain of U1 ≤ {1 + capacitance / low:.3g}",
-            f"{write((gain - 1) * low - capacitance, 'F')} more from summing node to ground",
+            f"{write(max((gain - 1) * low - capacitance, 0.0), 'F')} more from summing node to ground",
         ],
     )
 
@@ -156,14 +157,17 @@ def _window(request: ReceiverRequest, corners: _Corners, totals: Lanes) -> tuple
     return low, float(totals[wide[-1]]) if len(wide) else 0.0
 
 
-def _largest_stable(bench: Bench, capacitance: float) -> float:
-    """Total C_f above which a decompensated op amp is below its minimum stable gain. [F]"""
-    gain = bench.nominal("U1.minimum_stable_gain")
+def _largest_stable(stage: Stage, resistance: float, totals: Lanes) -> float:
+    """Total C_f above which a decompensated op amp is below its minimum stable gain at its worst corner. [F]"""
+    bench, gain = stage.bench, stage.bench.nominal("U1.minimum_stable_gain")
     if gain <= 1:
         return inf
-    return float(
-        transimpedance_limits.largest_feedback_capacitance(input_capacitance=capacitance, minimum_stable_gain=gain)
-    )
+    fitted = totals - bench.nominal("CS")
+    least = {name: bench.low(name) for name in LOADS}
+    values = {**stage.resistors(resistance), **stage.others, **least}
+    found = bench.evaluate({**values, "C1": fitted + capacitor_deviation(stage, fitted)})["noise_gain"]
+    kept = np.flatnonzero(found >= gain)
+    return float(totals[kept[-1]]) if len(kept) else 0.0
 
 
 def _where_quality(tried: Lanes, qualities: Lanes, wanted: float) -> float:

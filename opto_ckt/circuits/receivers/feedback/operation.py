@@ -18,11 +18,12 @@ from opto_ckt.circuits.receivers.feed import bias_limit, fed
 from opto_ckt.circuits.receivers.figures import OFFERS as RECEIVER_OFFERS
 from opto_ckt.circuits.receivers.figures import ReceiverFigures
 from opto_ckt.formulas.front_end import output_offset
+from opto_ckt.formulas.loop import noise_gain_plateau
 from opto_ckt.formulas.reference import divided_voltage, parallel_resistance
 from opto_ckt.limits import Figures, Lanes, Limit, Requirement, Values
 from opto_ckt.request import OpAmpReceiverRequest
 
-OFFERS = (*RECEIVER_OFFERS, "dc_offset", "dark_output")
+OFFERS = (*RECEIVER_OFFERS, "noise_gain", "dc_offset", "dark_output")
 LEAST_MARGIN = 45.0  #: of the phase, where no other bound is asked for; common practice [°]
 
 
@@ -83,6 +84,16 @@ class FeedbackFigures(ReceiverFigures):
         )
 
     @cached_property
+    def noise_gain(self) -> Lanes:
+        """Of high frequencies, where the capacitances divide: 1 + C_in/C_f. [V/V]"""
+        values = self._values
+        loads = ("D1.capacitance", "U1.common_capacitance", "U1.differential_capacitance", "CB")
+        capacitance = sum(values[name] for name in loads) + values.get("C3", 0.0)
+        return np.asarray(
+            noise_gain_plateau(input_capacitance=capacitance, feedback_capacitance=values["C1"] + values["CS"])
+        )
+
+    @cached_property
     def dc_offset(self) -> Lanes:
         """All errors of the output in the dark with one sign. [V]"""
         return self._behind(self._dark["offset"], 1.0)
@@ -136,5 +147,6 @@ def dark(values: Values, request: OpAmpReceiverRequest) -> dict[str, Lanes]:
 
 def implied(request: OpAmpReceiverRequest) -> tuple[Requirement, ...]:
     """The output must not reach its limit at the most light asked for, and the loop must not ring."""
-    most = request.signal.power.high
-    return (Requirement("overload", "min", most, most), Requirement("phase_margin", "min", LEAST_MARGIN, LEAST_MARGIN))
+    most, gain = request.signal.power.high, request.amplifier.minimum_stable_gain.nominal
+    needs = [Requirement("overload", "min", most, most), Requirement("phase_margin", "min", LEAST_MARGIN, LEAST_MARGIN)]
+    return (*needs, Requirement("noise_gain", "min", gain, 1.0)) if gain > 1 else tuple(needs)

@@ -18,6 +18,7 @@ from opto_ckt.topology import (
 )
 
 SUM: Point = (3, 2.5)
+ADDED: Point = (0.5, 2.5)  #: where capacitance to ground is added for a decompensated op amp
 OUT: Point = (10.5, 2)
 
 
@@ -28,6 +29,11 @@ def topology(request: OpAmpReceiverRequest) -> Topology:
     supply, openings = feed_drawn(request, far)
     rails, rail_marks = board.rails(request, 13)
     divider, divider_marks, divider_wires = board.level(request, 13)
+    added = (
+        [Capacitor("C3", "sum", GROUND, role="for stability", at=ADDED, to=(ADDED[0], 0.5))]
+        if lifts_noise_gain(request)
+        else []
+    )
     elements: list[Element] = [
         photodiode(request, SUM, far),
         Resistor("R1", "sum", "amp", role="feedback", at=(5, 4.5), to=(9, 4.5)),
@@ -40,6 +46,7 @@ def topology(request: OpAmpReceiverRequest) -> Topology:
         Capacitor("CB", "sum", GROUND, role="board", fitted=False),
         Resistor("RB", "sum", GROUND, role="leakage", fitted=False),
         *bias_elements(request),
+        *added,
         *divider,
         *board.load(request),
     ]  # fmt: skip
@@ -50,7 +57,7 @@ def topology(request: OpAmpReceiverRequest) -> Topology:
         output=("out", GROUND),
         loop="U1",
         wires=(
-            (SUM, (6, 2.5)),
+            (ADDED if added else SUM, (6, 2.5)),
             ((5, 2.5), (5, 6)),
             ((9, 2), (9, 6)),
             ((8, 2), board.line_start(OUT)),
@@ -63,6 +70,7 @@ def topology(request: OpAmpReceiverRequest) -> Topology:
             ((7, 1), negative),
             (supply, bias_node(request)),
             ((5.4, 1.5) if raised else (5.4, 1), level),
+            *([((ADDED[0], 0.5), GROUND)] if added else []),
             *rail_marks,
             *divider_marks,
         ),
@@ -70,3 +78,8 @@ def topology(request: OpAmpReceiverRequest) -> Topology:
         taps=board.TAPS,
         openings=openings | board.openings(OUT),
     )
+
+
+def lifts_noise_gain(request: OpAmpReceiverRequest) -> bool:
+    """Whether the op amp is decompensated: a place for capacitance to ground then, empty where none is needed."""
+    return request.amplifier.minimum_stable_gain.nominal > 1
