@@ -10,6 +10,7 @@ if TYPE_CHECKING:
 
 CIRCUITS: dict[str, str] = {
     "tia": "opto_ckt.circuits.receivers.tia",
+    "tia-tee": "opto_ckt.circuits.receivers.tia_tee",
     "laser-current": "opto_ckt.circuits.drivers.laser_current",
 }
 """Name -> module whose ``CIRCUIT`` it is."""

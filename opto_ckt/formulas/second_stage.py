@@ -13,8 +13,8 @@ def gain_for_transimpedance(*, transimpedance: Real, first: Real) -> Real:
 
     Parameters
     ----------
-    transimpedance : Z_t wanted of both stages. [V/A]
-    first : Z_1 of the first. [V/A]
+    transimpedance : Z_t wanted of both stages. [Ω]
+    first : Z_1 of the first. [Ω]
 
     Returns
     -------
@@ -59,8 +59,8 @@ def second_stage_bandwidth(*, gain_bandwidth: Real, transimpedance: Real, first:
     Parameters
     ----------
     gain_bandwidth : GBW of the second op amp. [Hz]
-    transimpedance : Z_t wanted of both stages. [V/A]
-    first : Z_1 of the first. [V/A]
+    transimpedance : Z_t wanted of both stages. [Ω]
+    first : Z_1 of the first. [Ω]
 
     Returns
     -------

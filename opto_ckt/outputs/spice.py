@@ -122,9 +122,13 @@ def _transient(scene: Scene) -> str:
 
 
 def _temperature(scene: Scene) -> str:
-    """Noise and junctions hold at the scene's own temperature; reltol settles junctions finer than noise needs."""
+    """Noise and junctions hold at the scene's own temperature.
+
+    reltol settles junctions finer than noise needs; gmin keeps what a simulator adds across a clamp, and the shot noise
+    of that, far below the currents of faint light.
+    """
     celsius = number(round(scene.values["temperature"] - ZERO_CELSIUS, 6))
-    return card(".options", f"temp={celsius}", f"tnom={celsius}", "reltol=1e-6")
+    return card(".options", f"temp={celsius}", f"tnom={celsius}", "reltol=1e-6", "gmin=1e-15")
 
 
 def _expected(result: Result, scene: Scene, kind: str) -> list[str]:

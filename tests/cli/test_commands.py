@@ -82,7 +82,7 @@ def test_a_bad_design_ends_in_3_with_every_problem_at_its_line() -> None:
 
 
 @pytest.mark.parametrize(
-    ("text", "said"), [(design(circuit='"tea"'), "tia, laser-current"), ("", "stdin: is empty"), ("a = [", "TOML")]
+    ("text", "said"), [(design(circuit='"tea"'), ", ".join(CIRCUITS)), ("", "stdin: is empty"), ("a = [", "TOML")]
 )
 def test_what_is_no_design_ends_in_3(text: str, said: str) -> None:
     ended = run("size", "-", stdin=text)

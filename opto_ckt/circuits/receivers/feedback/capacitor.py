@@ -11,16 +11,14 @@ import numpy as np
 
 from opto_ckt.circuit import Bench, Fitted
 from opto_ckt.circuits.receivers.detector import stage_bandwidth
-from opto_ckt.circuits.receivers.feedback.stage import Stage, capacitor_deviation
+from opto_ckt.circuits.receivers.feedback.stage import Stage, part_tolerance
 from opto_ckt.errors import InfeasibleError
 from opto_ckt.formulas import second_order, transimpedance
 from opto_ckt.limits import Lanes
 from opto_ckt.request import ReceiverRequest
 from opto_ckt.units import write
 
-BUILDABLE = 0.2e-12  #: a fitted capacitor below this is no more than its own pads [F]
-SCAN = np.geomspace(1 / 20, 20, 121)  #: total C_f tried at nominal, as multiples of the closed form
-COARSE = SCAN[::2]  #: tried at corners
+SCAN = np.geomspace(1 / 20, 20, 121)  #: total C_f tried at nominal, every other at corners, re the closed form
 DECIDES = ("U1.gain_bandwidth", "U1.second_pole", "D1.capacitance")  #: limits whose combinations make the corners
 LOADS = ("D1.capacitance", "U1.common_capacitance", "U1.differential_capacitance", "CB")  #: of the summing node
 ALLOWED_PEAKING = float(second_order.peaking(quality=1.0))  #: where nothing is asked for: 1.25 dB
@@ -52,11 +50,12 @@ def feedback_capacitor(stage: Stage, resistance: float) -> Damped:
             quality=quality,
         )
     total = max(float(np.nan_to_num(closed_form)), stray)
-    found = bench.evaluate({**stage.resistors(resistance), **stage.others, "C1": total * SCAN - stray})
-    wanted = _where_quality(total * SCAN, found["quality_factor"], quality)
+    scanned = np.maximum(total * SCAN, stray)
+    found = bench.evaluate({**stage.resistors(resistance), **stage.others, **stage.capacitors(scanned - stray)})
+    wanted = _where_quality(scanned, found["quality_factor"], quality)
     corners = _Corners(stage, resistance)
-    low, high = _window(request, corners, total * COARSE)
-    stable = _largest_stable(stage, resistance, total * SCAN)
+    low, high = _window(request, corners, scanned[::2])
+    stable = _largest_stable(stage, resistance, scanned)
     if low > stable and isfinite(low):
         raise _unstable(bench, capacitance, low, stable)
     high = min(high, stable)
@@ -65,7 +64,7 @@ def feedback_capacitor(stage: Stage, resistance: float) -> Damped:
     fixed = stage.fixed("C1")
     if fixed is not None:
         return Damped(Fitted("C1", fixed, series, fixed=True), overshoot, True)
-    reason = _reason(quality, (wanted, total, aim), (low, high), stray)
+    reason = _reason(quality, (wanted, total, aim), (low, high), stray, stage.smallest)
     stage.derivation.compute(
         "C1",
         transimpedance.feedback_capacitance,
@@ -76,7 +75,7 @@ def feedback_capacitor(stage: Stage, resistance: float) -> Damped:
         quality=quality,
     )
     exact = max(aim - stray, 0.0)
-    bare = exact < BUILDABLE
+    bare = exact < stage.smallest
     part = Fitted("C1", exact, series, low=0.0 if bare else exact / 2, high=stable - stray, omittable=bare)
     return Damped(part, overshoot, low <= high)
 
@@ -86,6 +85,7 @@ def _reason(
     totals: tuple[float, float, float],
     window: tuple[float, float],
     stray: float,
+    smallest: float,
 ) -> str:
     wanted, closed_form, aim = totals
     low, high = (write(max(edge - stray, 0.0), "F") if isfinite(edge) else "open" for edge in window)
@@ -96,7 +96,7 @@ def _reason(
     if abs(aim / wanted - 1) > 0.02:
         said += ", moved into its window"
     said += f"; window over corners {ends}; {write(stray, 'F')} more is stray"
-    if aim - stray < BUILDABLE:
+    if aim - stray < smallest:
         said += "; no more than bare pads: not to be built as a part"
     return said if window[0] <= window[1] else said + "; the window is empty"
 
@@ -125,10 +125,14 @@ class _Corners:
 
     def worst(self, totals: Lanes, names: Sequence[str]) -> dict[str, tuple[Lanes, Lanes]]:
         """Least and greatest of each figure over the corners, for each total C_f."""
-        deviation = capacitor_deviation(self._stage, totals - self._stray)
-        ends = np.array([totals - deviation - self._stray, totals + deviation - self._stray])
+        fitted = totals - self._stray
+        tolerance = part_tolerance(self._stage, fitted)
+        ends = np.maximum([fitted - tolerance, fitted + tolerance], 0.0)
+        strays = np.repeat([self._bench.low("CS"), self._bench.high("CS")], len(totals))
+        count = len(self._settings)
         lanes = {name: np.repeat([s[i] for s in self._settings], ends.size) for i, name in enumerate(DECIDES)}
-        found = self._bench.evaluate({**self._fixed, **lanes, "C1": np.tile(ends.ravel(), len(self._settings))})
+        parts = self._stage.capacitors(np.tile(ends.ravel(), count))
+        found = self._bench.evaluate({**self._fixed, **lanes, **parts, "CS": np.tile(strays, count)})
         shape = (2 * len(self._settings), len(totals))
         return {
             name: (
@@ -165,7 +169,8 @@ def _largest_stable(stage: Stage, resistance: float, totals: Lanes) -> float:
     fitted = totals - bench.nominal("CS")
     least = {name: bench.low(name) for name in LOADS}
     values = {**stage.resistors(resistance), **stage.others, **least}
-    found = bench.evaluate({**values, "C1": fitted + capacitor_deviation(stage, fitted)})["noise_gain"]
+    most = stage.capacitors(np.maximum(fitted + part_tolerance(stage, fitted), 0.0))
+    found = bench.evaluate({**values, **most, "CS": bench.high("CS")})["noise_gain"]
     kept = np.flatnonzero(found >= gain)
     return float(totals[kept[-1]]) if len(kept) else 0.0
 

@@ -1,6 +1,7 @@
 """What a transimpedance stage is at a temperature, a supply and a light: its levels at DC and its figures.
 
-What depends on the feedback resistance reads ``feedback_resistance``, which `biased` writes: R1, or what stands for it.
+What depends on the feedback reads ``feedback_resistance`` and ``feedback_ratio``, which `biased` writes: R1 and
+nothing, or what a network in its place has.
 """
 
 from __future__ import annotations
@@ -43,8 +44,16 @@ def bias(values: Values, request: OpAmpReceiverRequest) -> dict[str, float | Lan
     return biased(values, request, values["R1"])
 
 
-def biased(values: Values, request: OpAmpReceiverRequest, feedback: float | Lanes) -> dict[str, float | Lanes]:
-    """As `bias`, with a feedback resistance. [Ω]"""
+def biased(
+    values: Values, request: OpAmpReceiverRequest, feedback: float | Lanes, ratio: float | Lanes = 0.0
+) -> dict[str, float | Lanes]:
+    """As `bias`, with any feedback.
+
+    Parameters
+    ----------
+    feedback : output voltage for a current into the summing node. [Ω]
+    ratio : gain from the summing node's voltage to the output at no current, less 1. [V/V]
+    """
     level: float | Lanes = 0.0
     if "R2" in values:
         level = divided_voltage(voltage=values["supply.positive"], upper=values["R2"], lower=values["R3"])
@@ -53,19 +62,20 @@ def biased(values: Values, request: OpAmpReceiverRequest, feedback: float | Lane
         **fed(values, request, level),
         **warmed(values, request.amplifier),
         "feedback_resistance": feedback,
+        "feedback_ratio": ratio,
     }
     return {**found, **_levels(found, request)}
 
 
 def _levels(values: Values, request: OpAmpReceiverRequest) -> dict[str, float | Lanes]:
     """Node voltages at the average light: the currents into the summing node balance, at finite open-loop gain."""
-    sign = POLARITY[request.detector.output]
+    sign, feedback = POLARITY[request.detector.output], values["feedback_resistance"]
     light = values["D1.responsivity"] * values["signal.power"] + values["D1.ambient_current"]
     shunt, level = 1 / values["D1.shunt_resistance"], values["input_level"]
-    inner = 1 / values["feedback_resistance"] + 1 / values["RB"] + shunt
     wanted = level + values["U1.offset"]
-    drawn = wanted * inner - level * shunt + values["U1.bias_current"] + sign * (light + values["D1.dark_current"])
-    output = drawn / (1 / values["feedback_resistance"] + inner / values["U1.open_loop_gain"])
+    current = values["U1.bias_current"] - level * shunt + sign * (light + values["D1.dark_current"])
+    gain = 1 + values["feedback_ratio"] + feedback * (1 / values["RB"] + shunt)
+    output = (wanted * gain + feedback * current) / (1 + gain / values["U1.open_loop_gain"])
     return {"node.amp": output, "node.sum": wanted - output / values["U1.open_loop_gain"]}
 
 
@@ -90,8 +100,12 @@ class FeedbackFigures(ReceiverFigures):
         loads = ("D1.capacitance", "U1.common_capacitance", "U1.differential_capacitance", "CB")
         capacitance = sum(values[name] for name in loads) + values.get("C3", 0.0)
         return np.asarray(
-            noise_gain_plateau(input_capacitance=capacitance, feedback_capacitance=values["C1"] + values["CS"])
+            noise_gain_plateau(input_capacitance=capacitance, feedback_capacitance=self._feedback_capacitance())
         )
+
+    def _feedback_capacitance(self) -> Lanes | float:
+        """From the output to the summing node, strays included. [F]"""
+        return self._values["C1"] + self._values["CS"]
 
     @cached_property
     def dc_offset(self) -> Lanes:
@@ -129,7 +143,8 @@ def dark(values: Values, request: OpAmpReceiverRequest) -> dict[str, Lanes]:
 
     def error(dark_current: float | Lanes) -> Lanes:
         return np.asarray(
-            output_offset(
+            values["feedback_ratio"] * np.abs(offset)
+            + output_offset(
                 offset_voltage=np.abs(offset),
                 bias_current=values["U1.bias_current"],
                 dark_current=dark_current,

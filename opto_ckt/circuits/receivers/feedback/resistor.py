@@ -17,7 +17,7 @@ from opto_ckt.circuits.receivers.detector import (
     stage_bandwidth,
     wanted_transimpedance,
 )
-from opto_ckt.circuits.receivers.feedback.stage import Stage, capacitor_deviation
+from opto_ckt.circuits.receivers.feedback.stage import Stage, part_tolerance
 from opto_ckt.constants import ROOM_TEMPERATURE
 from opto_ckt.errors import InfeasibleError
 from opto_ckt.formulas import noise, noise_generator, second_order, transimpedance, transimpedance_limits
@@ -168,7 +168,7 @@ def _bandwidth_resistance(stage: Stage, bandwidth: float, second: Callable[[Lane
             feedback_resistance=resistances, input_capacitance=nominal, gain_bandwidth=gain_bandwidth, quality=quality
         )
     fitted = np.nan_to_num(np.maximum(fitted, bench.nominal("CS")), nan=bench.nominal("CS"))
-    deviation = capacitor_deviation(stage, fitted - bench.nominal("CS"))
+    deviation = part_tolerance(stage, fitted - bench.nominal("CS")) + bench.high("CS") - bench.nominal("CS")
     kept = np.full(len(resistances), inf)
     for speed in (bench.low("U1.gain_bandwidth"), bench.high("U1.gain_bandwidth")):
         for load in (nominal / scale, nominal * scale):
