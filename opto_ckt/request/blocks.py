@@ -2,9 +2,12 @@
 
 from __future__ import annotations
 
+from collections.abc import Iterator
 from typing import Annotated
 
-from opto_ckt.parts.record import Table, Unit, Whole
+from opto_ckt.parts.record import Check, Choice, Finding, Table, Unit, Whole
+from opto_ckt.request.tables import RATIO
+from opto_ckt.units import percent
 
 
 class PostFilter(Table):
@@ -20,9 +23,25 @@ class GainStage(Table):
     gain: Annotated[float | None, Unit("V/V", "10 V/V")] = None  #: else what require.transimpedance leaves for it
 
 
+def _part_of_a_level(droop: float | None) -> Iterator[Finding]:
+    if droop is not None and not 0 < droop < 1:
+        yield Finding(("droop",), f"{percent(droop)} is not between 0 and 100 %; a usual one is 5 %")
+
+
+class AcCoupling(Table):
+    """Coupling capacitor at the output."""
+
+    droop: Annotated[float | None, RATIO] = None  #: of a level after the longest run of equal bits
+    low_cutoff: Annotated[float | None, Unit("Hz", "1 kHz")] = None
+
+    choices = (Choice("the coupling", (("droop",), ("low_cutoff",)), needed=False),)
+    checks = (Check(("droop",), _part_of_a_level),)
+
+
 class ReceiverBlocks(Table):
     """Blocks that are fitted; one that is left out is not."""
 
     gain_stage: GainStage | None = None
 
     post_filter: PostFilter | None = None
+    ac_coupling: AcCoupling | None = None

@@ -18,6 +18,7 @@ from opto_ckt.circuits.receivers.detector import (
 )
 from opto_ckt.constants import BOLTZMANN
 from opto_ckt.formulas import decision
+from opto_ckt.formulas.front_end import droop
 from opto_ckt.formulas.photodiode import photon_energy
 from opto_ckt.limits import Lanes, Values
 from opto_ckt.request import ReceiverRequest
@@ -76,6 +77,14 @@ class ReceiverFigures:
         if self._reference is None:
             return np.full(self._evaluation.lanes, np.nan)
         return response.low_cutoff(self._evaluation, self._reference)
+
+    @cached_property
+    def droop(self) -> Lanes:
+        """Share of a level lost by the end of the longest run of equal bits; nan of a receiver that passes DC. [1]"""
+        signal = self._request.signal
+        if signal.bit_rate is None:
+            return np.full(self._evaluation.lanes, np.nan)
+        return np.asarray(droop(corner=self.low_cutoff, duration=signal.run_length / signal.bit_rate))
 
     @cached_property
     def peaking(self) -> Lanes:

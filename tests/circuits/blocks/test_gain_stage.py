@@ -15,8 +15,11 @@ from opto_ckt.formulas.second_stage import (
     upper_feedback_resistance,
 )
 from opto_ckt.outputs.crosscheck import crosscheck
+from opto_ckt.outputs.simulators import ENGINES as SIMULATORS
 from opto_ckt.outputs.wiring import drawing_faults
 from tests.circuits.sized import model, sized
+
+ENGINES = [engine for engine in SIMULATORS if engine == "neospice" or which("ngspice")]
 
 SPLIT = (
     ("power ", 'power = { typ = "2 µW", max = "5 µW" }'),
@@ -71,9 +74,7 @@ def test_the_drawing_joins_what_the_topology_joins() -> None:
     assert drawing_faults(sized("tia", *SPLIT).topology) == []
 
 
-@pytest.mark.parametrize(
-    "engine", ["neospice", pytest.param("ngspice", marks=pytest.mark.skipif(not which("ngspice"), reason="no ngspice"))]
-)
+@pytest.mark.parametrize("engine", ENGINES)
 def test_decks_agree(engine: str) -> None:
     assert [row for row in crosscheck(sized("tia", *SPLIT), engine) if not row.ok] == []
 
