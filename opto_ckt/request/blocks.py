@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Iterator
-from typing import Annotated
+from typing import Annotated, Literal
 
 from opto_ckt.parts.record import Check, Choice, Finding, Table, Unit, Whole
 from opto_ckt.request.tables import RATIO
@@ -13,8 +13,15 @@ from opto_ckt.units import percent
 class PostFilter(Table):
     """Low-pass behind the amplifier."""
 
-    order: Annotated[int, Whole(1, 4)] = 2
-    cutoff: Annotated[float, Unit("Hz", "7.5 MHz")]
+    order: Annotated[int, Whole(1, 5)] = 2
+    cutoff: Annotated[float, Unit("Hz", "7.5 MHz")]  #: of receiver and filter together
+    kind: Literal["rc", "active", "ladder"] | None = None  #: else by the order
+    response: Literal["bessel", "flat"] = "bessel"  #: of the filter by itself
+
+    @property
+    def form(self) -> str:
+        """Kind of filter: as asked for, else the simplest of its order."""
+        return self.kind or {1: "rc", 2: "active"}.get(self.order, "ladder")
 
 
 class GainStage(Table):

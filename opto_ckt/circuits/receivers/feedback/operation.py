@@ -110,7 +110,8 @@ class FeedbackFigures(ReceiverFigures):
     @cached_property
     def dc_offset(self) -> Lanes:
         """All errors of the output in the dark with one sign. [V]"""
-        return self._behind(self._dark["offset"], 1.0)
+        later = self._values.get("filter.offset", 0.0)
+        return self._behind(self._dark["offset"], 1.0) + later
 
     @cached_property
     def dark_output(self) -> Lanes:
