@@ -24,6 +24,13 @@ class PostFilter(Table):
         return self.kind or {1: "rc", 2: "active"}.get(self.order, "ladder")
 
 
+class BiasFilter(Table):
+    """Resistor and capacitor between the bias supply and the detector."""
+
+    droop: Annotated[float | None, Unit("V", "0.2 V")] = None  #: most the bias may fall at most light
+    corner: Annotated[float | None, Unit("Hz", "1 kHz")] = None  #: else from bias.ripple
+
+
 class GainStage(Table):
     """Voltage gain behind the first amplifier."""
 
@@ -48,6 +55,7 @@ class AcCoupling(Table):
 class ReceiverBlocks(Table):
     """Blocks that are fitted; one that is left out is not."""
 
+    bias_filter: BiasFilter | None = None
     gain_stage: GainStage | None = None
 
     post_filter: PostFilter | None = None

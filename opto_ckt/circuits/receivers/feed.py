@@ -76,8 +76,9 @@ def fed(values: Values, request: ReceiverRequest, level: float | Lanes) -> dict[
     node = bias_node(request)
     here = {"level": level, GROUND: 0.0}
     supply = here[node] if node in here else values[f"supply.{node}"]
-    resting = sign * (level - supply)
     resistance = values.get("R10", 0.0)
+    held = 1 / (1 + resistance / values["R11"]) if "R11" in values else 1.0  #: share of the supply that a bleed leaves
+    resting, resistance = sign * (level - supply * held), resistance * held
 
     def left(reverse_bias: float | Lanes) -> dict[str, float | Lanes]:
         return detected({**values, "detector.reverse_bias": reverse_bias}, request)
