@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Iterator
-from typing import Annotated, Literal
+from typing import Annotated, ClassVar, Literal
 
 from opto_ckt.parts.record import Check, Choice, Finding, Table, Unit, Whole
 from opto_ckt.request.tables import RATIO
@@ -42,14 +42,24 @@ def _part_of_a_level(droop: float | None) -> Iterator[Finding]:
         yield Finding(("droop",), f"{percent(droop)} is not between 0 and 100 %; a usual one is 5 %")
 
 
-class AcCoupling(Table):
-    """Coupling capacitor at the output."""
+class LowCutoff(Table):
+    """Where DC is taken away, and how far up."""
 
     droop: Annotated[float | None, RATIO] = None  #: of a level after the longest run of equal bits
     low_cutoff: Annotated[float | None, Unit("Hz", "1 kHz")] = None
 
-    choices = (Choice("the coupling", (("droop",), ("low_cutoff",)), needed=False),)
-    checks = (Check(("droop",), _part_of_a_level),)
+    choices: ClassVar[tuple[Choice, ...]] = (Choice("the cut-off", (("droop",), ("low_cutoff",)), needed=False),)
+    checks: ClassVar[tuple[Check, ...]] = (Check(("droop",), _part_of_a_level),)
+
+
+class AcCoupling(LowCutoff):
+    """Coupling capacitor at the output."""
+
+
+class Servo(LowCutoff):
+    """Loop that takes the steady light away."""
+
+    range: Annotated[float | None, Unit("A", "50 µA")] = None  #: of steady current; else all that the design has
 
 
 class ReceiverBlocks(Table):
@@ -60,3 +70,4 @@ class ReceiverBlocks(Table):
 
     post_filter: PostFilter | None = None
     ac_coupling: AcCoupling | None = None
+    servo: Servo | None = None

@@ -10,6 +10,7 @@ from __future__ import annotations
 import numpy as np
 
 from opto_ckt.circuit import Bench, Block, Fitted, Refusal, Stress
+from opto_ckt.circuits.blocks.cutoff import allowed
 from opto_ckt.circuits.receivers.board import level_node
 from opto_ckt.derivation import Derivation
 from opto_ckt.formulas.coupling import corner_for_droop, droop_penalty
@@ -22,7 +23,6 @@ from opto_ckt.units import percent, write
 RETURN = 10e3  #: R40 without a load of its own: far below leakages; common practice [Ω]
 BESIDE_LOAD = 10.0  #: R40 over the load that it stands beside; common practice
 SHRUNK = 0.75  #: what a class 2 capacitor keeps over temperature and ageing, common practice
-DROOP = 0.05  #: where neither droop nor cut-off is asked for; common practice
 
 
 def topology(request: ReceiverRequest) -> Topology:
@@ -41,34 +41,18 @@ def topology(request: ReceiverRequest) -> Topology:
     )
 
 
-def corner(request: ReceiverRequest) -> float | None:
-    """Highest low cut-off that is allowed. [Hz]"""
-    asked, signal = request.blocks.ac_coupling, request.signal
-    if asked is not None and asked.low_cutoff is not None:
-        return asked.low_cutoff
-    if signal.bit_rate is None:
-        return signal.band.min if signal.band is not None and signal.band.min else None
-    droop = DROOP if asked is None or asked.droop is None else asked.droop
-    return float(corner_for_droop(droop=droop, duration=signal.run_length / signal.bit_rate))
-
-
 def propose(request: ReceiverRequest, derivation: Derivation, bench: Bench, exact: Values) -> tuple[Fitted, ...]:
     """R40 beside the load, C40 for the low cut-off at its worst tolerance."""
-    wanted, load = corner(request), request.load.resistance
+    corner, reason = allowed(request, request.blocks.ac_coupling) or (1.0, "")
+    load, stock = request.load.resistance, request.preferred.bypass
     back = request.fixed.get("R40", RETURN if load is None else BESIDE_LOAD * load)
     derivation.note(
         "R40", f"{write(RETURN, 'Ω')}, common practice" if load is None else f"{BESIDE_LOAD:g} times the load"
     )
     total = back if load is None else float(parallel_resistance(first=back, second=load))
-    stock, signal = request.preferred.bypass, request.signal
-    asked = request.blocks.ac_coupling
-    reason = f"cut-off at {write(wanted or 0.0, 'Hz')}"
-    if signal.bit_rate is not None and (asked is None or asked.low_cutoff is None):
-        droop = DROOP if asked is None or asked.droop is None else asked.droop
-        reason += f": {percent(droop)} of droop after {signal.run_length} equal bits"
     capacitance = request.fixed.get("C40") or derivation.compute(
         "C40", filter_capacitance, reason=f"{reason}, tolerance and class 2 taken off",
-        resistance=total, corner=SHRUNK * (1 - stock.tolerance) * (wanted or 1.0),
+        resistance=total, corner=SHRUNK * (1 - stock.tolerance) * corner,
     )  # fmt: skip
     series = request.preferred.resistors.series
     return (
@@ -98,7 +82,7 @@ def remarks(values: Values, limits: Limits, request: ReceiverRequest) -> tuple[s
 
 def refused(request: ReceiverRequest) -> tuple[Refusal, ...]:
     """An analog band that begins at DC."""
-    if corner(request) is None:
+    if allowed(request, request.blocks.ac_coupling) is None:
         message = "needs low_cutoff in it, or min under signal.band: this band begins at dc"
         return (Refusal(("blocks", "ac_coupling"), message),)
     return ()

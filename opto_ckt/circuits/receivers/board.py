@@ -24,6 +24,7 @@ SLOTS: Mapping[str, tuple[str, str]] = {
     "ac_coupling": ("filtered", "out"),
 }
 TAPS: Mapping[str, tuple[str, str]] = {"servo": ("amp", "sum"), "decision": ("out", "decided")}
+SERVO: Point = (3, -6)  #: where a servo is drawn, below the amplifier
 GAP = 0.25  #: on the drawing, that an empty slot takes up
 STRAY_SPREAD = 0.2  #: a stray capacitance is taken as known to this share
 
@@ -106,7 +107,12 @@ def openings(end: Point) -> dict[str, tuple[Point, Point]]:
     x, y = end
     starts = [x - GAP * (len(SLOTS) - index) for index in range(len(SLOTS))]
     line = {slot: ((start, y), (start + GAP, y)) for slot, start in zip(SLOTS, starts, strict=True)}
-    return line | dict.fromkeys(TAPS, (end, end))
+    return line | dict.fromkeys(TAPS, (end, end)) | {"servo": (SERVO, SERVO)}
+
+
+def servo_marks(request: ReceiverRequest, amplifier: Point, summing: Point) -> list[tuple[Point, str]]:
+    """Names of the nodes that a servo, drawn apart, is tied to; nothing without one."""
+    return [(amplifier, "amp"), (summing, "sum")] if "servo" in request.blocks_asked else []
 
 
 def line_start(end: Point) -> Point:

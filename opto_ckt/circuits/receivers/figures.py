@@ -134,15 +134,19 @@ class ReceiverFigures:
 
     @cached_property
     def overload(self) -> Lanes:
-        """Average power at which the one level reaches the limit of the amplifier's output. [W]"""
+        """Average power at which a one reaches the limit of an amplifier, or its average that of a servo. [W]"""
         gain = self.transimpedance if self._stage_gain is None else self._stage_gain
         reach = (self._headroom - self._dark_shift) / gain
         if "second.gain" in self._values:
             second, offset = self._values["second.gain"], np.abs(self._values["second.offset"])
             later = self._values["second.headroom"] - second * self._dark_shift - offset
             reach = np.minimum(reach, later / (gain * second))
-        left = reach / (1 + self.overshoot) - self._ambient
-        return np.asarray(np.maximum(left, 0.0) / (self._responsivity * level_factor(self._request)))
+        left = reach / (1 + self.overshoot) - (0.0 if "servo.range" in self._values else self._ambient)
+        found = left / level_factor(self._request)
+        if "servo.range" in self._values:
+            standing = self._ambient + self._values[f"{self._detector}.dark_current"]
+            found = np.minimum(found, self._values["servo.range"] - standing)
+        return np.asarray(np.maximum(found, 0.0) / self._responsivity)
 
     @cached_property
     def output_noise(self) -> Lanes:

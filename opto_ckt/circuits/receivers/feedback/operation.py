@@ -137,7 +137,13 @@ def headroom(values: Values, request: OpAmpReceiverRequest) -> float | Lanes:
 
 
 def dark(values: Values, request: OpAmpReceiverRequest) -> dict[str, Lanes]:
-    """Output in the dark: all errors with one sign; the voltage itself; its shift towards the signal's limit."""
+    """Output in the dark: all errors with one sign; the voltage itself; its shift towards the signal's limit.
+
+    A servo holds the output, whatever the errors before it.
+    """
+    if "servo.offset" in values:
+        held = np.asarray(values["servo.offset"], dtype=float)
+        return {"offset": np.abs(held), "output": values["input_level"] + held, "shift": np.abs(held)}
     shunt = parallel_resistance(first=values["D1.shunt_resistance"], second=values["RB"])
     shift = values["feedback_resistance"] * values["D1.dark_current"]
     sign, offset = POLARITY[request.detector.output], values["U1.offset"]

@@ -69,6 +69,7 @@ def topology(request: OpAmpReceiverRequest) -> Topology:
             ((7, 3), "positive"),
             ((7, 1), negative),
             (supply, bias_node(request)),
+            *board.servo_marks(request, (9, 4.5), SUM),
             ((5.4, 1.5) if raised else (5.4, 1), level),
             *([((ADDED[0], 0.5), GROUND)] if added else []),
             *rail_marks,

@@ -75,6 +75,7 @@ def topology(request: OpAmpReceiverRequest) -> Topology:
             ((8, 1), negative),
             ((6.4, 1), GROUND),
             (supply, bias_node(request)),
+            *board.servo_marks(request, (RIGHT_END, 4), SUM),
             *resistor_marks,
             *capacitor_marks,
             *rail_marks,
