@@ -9,6 +9,7 @@ if TYPE_CHECKING:
     from opto_ckt.circuit import Circuit
 
 CIRCUITS: dict[str, str] = {
+    "load-resistor": "opto_ckt.circuits.receivers.load_resistor",
     "tia": "opto_ckt.circuits.receivers.tia",
     "tia-tee": "opto_ckt.circuits.receivers.tia_tee",
     "laser-current": "opto_ckt.circuits.drivers.laser_current",

@@ -18,6 +18,7 @@ from opto_ckt.units import write
 POINTS_AC = 50  #: a decade
 POINTS_NOISE = 50  #: 50 points a decade integrate noise to 0.02 % by trapezoids
 STEP = 0.01  #: height of the step of light, as a share of it
+FAINT = 1e-6  #: light that stands for the resting one in a scene without any [W]
 SMALL_STEP = 2e-4  #: of the set voltage: small enough for what is not linear
 MARK = "* written by opto-ckt; it is overwritten when the design is sized again\n"
 
@@ -127,7 +128,7 @@ def _rest(topology: Topology, scene: Scene) -> float:
 
 def step_height(topology: Topology, scene: Scene) -> float:
     """By how much the input steps. [W or V]"""
-    return step_share(topology) * (_rest(topology, scene) or abs(scene.values.get("set_voltage", 1.0)))
+    return step_share(topology) * (_rest(topology, scene) or abs(scene.values.get("set_voltage", FAINT)))
 
 
 def _transient(scene: Scene) -> str:

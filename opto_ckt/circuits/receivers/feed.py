@@ -64,13 +64,16 @@ def feed_drawn(request: ReceiverRequest, far: Point) -> tuple[Point, dict[str, t
     return supply, {"bias_filter": (supply, far)}
 
 
-def fed(values: Values, request: ReceiverRequest, level: float | Lanes) -> dict[str, float | Lanes]:
+def fed(
+    values: Values, request: ReceiverRequest, level: float | Lanes, load: float | Lanes = 0.0
+) -> dict[str, float | Lanes]:
     """The detector in its feed: reverse bias left at the average light, and all that follows from it.
 
     Parameters
     ----------
     values : before bias.
-    level : voltage of the end that feeds the amplifier. [V]
+    level : voltage of the end that feeds the amplifier, or beyond a load there. [V]
+    load : between that level and the detector. [Ω]
     """
     sign = POLARITY[request.detector.output]
     node = bias_node(request)
@@ -83,17 +86,18 @@ def fed(values: Values, request: ReceiverRequest, level: float | Lanes) -> dict[
     def left(reverse_bias: float | Lanes) -> dict[str, float | Lanes]:
         return detected({**values, "detector.reverse_bias": reverse_bias}, request)
 
-    bias = resting
-    if np.any(resistance):
-        bias = resting - resistance * _drawn(values, left(resting))
+    bias, total = resting, resistance + load
+    if np.any(total):
+        bias = resting - total * _drawn(values, left(resting))
         if gain_follows(request.detector):
-            bias = _settled(values, left, resting, resistance)
+            bias = _settled(values, left, resting, total)
+    found = left(bias)
     return {
         "input_level": level,
         "supply.bias": supply,
         "detector.reverse_bias": bias,
-        "node.far": level - sign * bias,
-        **left(bias),
+        "node.far": level - sign * (bias + load * _drawn(values, found)),
+        **found,
     }
 
 
