@@ -130,6 +130,16 @@ class Scene:
 
 
 @dataclass(frozen=True)
+class Alternative:
+    """What another circuit would give for the same request with the same parts."""
+
+    circuit: str
+    verdict: str  #: in words
+    figures: Mapping[str, float] = field(default_factory=dict)  #: a few, at nominal
+    parts: int | None = None  #: that an assembler fits
+
+
+@dataclass(frozen=True)
 class Result:
     """Everything found for one design; outputs are written from it alone."""
 
@@ -151,6 +161,7 @@ class Result:
     noise_band: tuple[float, float]  #: [Hz]
     input_capacitance: Mapping[str, float] = field(default_factory=dict)  #: itemised, of the summing node [F]
     limits: Limits = field(default_factory=dict)  #: of every value, so that corners can be told in figures
+    alternatives: tuple[Alternative, ...] = ()  #: where they were asked for
 
     @property
     def verdict(self) -> Literal["met", "missed", "none"]:

@@ -37,11 +37,12 @@ def opening(evaluation: Evaluation, bit: float, run: int = LONGEST, reference: A
     instants = period * (np.arange(INSTANTS)[:, None] + 0.5) / INSTANTS
     poles = np.where(np.isnan(modes.poles), -1.0, modes.poles)
     weights = np.where(poles.imag > 0, 2.0, np.where(poles.imag < 0, 0.0, 1.0))
-    level = modes.constant if reference is None else np.copysign(reference, _highest(modes.constant, modes.residues))
     with np.errstate(divide="ignore", invalid="ignore", over="ignore"):
         late = [(residue * weight) * np.exp(pole * instants)
                 for pole, residue, weight in zip(poles, modes.residues, weights, strict=True)]  # fmt: skip
-        sample = (modes.constant + sum((mode.real for mode in late), np.zeros_like(instants))) / level
+        sample = modes.constant + sum((mode.real for mode in late), np.zeros_like(instants))
+        level = modes.constant if reference is None else np.copysign(reference, _farthest(sample))
+        sample = sample / level
         largest, total = sample, np.abs(sample)
         a_bit = np.exp(poles * period)
         late = [mode * (step - 1) for mode, step in zip(late, a_bit, strict=True)]
@@ -55,6 +56,6 @@ def opening(evaluation: Evaluation, bit: float, run: int = LONGEST, reference: A
     return np.where(evaluation.stable, (2 * largest - total).max(axis=0), np.nan)
 
 
-def _highest(constant: Array, residues: NDArray[np.complex128]) -> Array:
-    """What has the sign of the step: its final value, of an AC-coupled network minus what decays last and least."""
-    return np.where(np.abs(constant) > 0, constant, -residues.real.sum(axis=0))
+def _farthest(sample: Array) -> Array:
+    """Of each lane the sample that lies farthest from zero: it has the sign of the step."""
+    return np.asarray(np.take_along_axis(sample, np.abs(sample).argmax(axis=0)[None, :], axis=0)[0])

@@ -9,8 +9,10 @@ if TYPE_CHECKING:
     from opto_ckt.circuit import Circuit
 
 CIRCUITS: dict[str, str] = {
+    "load-resistor": "opto_ckt.circuits.receivers.load_resistor",
     "tia": "opto_ckt.circuits.receivers.tia",
     "tia-bootstrap": "opto_ckt.circuits.receivers.tia_bootstrap",
+    "tia-tee": "opto_ckt.circuits.receivers.tia_tee",
     "laser-current": "opto_ckt.circuits.drivers.laser_current",
 }
 """Name -> module whose ``CIRCUIT`` it is."""

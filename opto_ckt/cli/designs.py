@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import sys
 from collections.abc import Callable
+from dataclasses import replace
 
 from opto_ckt.circuit import Circuit
 from opto_ckt.circuits import CIRCUITS, load
@@ -31,10 +32,15 @@ def read_starter(circuit: Circuit) -> ReadDesign:
     return read_text(circuit.starter, circuit.name, circuit_of=_request_of, circuits=CIRCUITS)
 
 
-def sized(path: str) -> Result:
-    """Read and size one design."""
+def sized(path: str, *, compared: bool = False) -> Result:
+    """Read and size one design; ``compared``: beside the other circuits that would take it."""
     read = read_design(path)
-    return size(read, load(read.request.circuit))
+    result = size(read, load(read.request.circuit))
+    if not compared:
+        return result
+    from opto_ckt.design.comparison import alternatives
+
+    return replace(result, alternatives=alternatives(read.request, CIRCUITS, load))
 
 
 def ended(results: list[Result], say: Callable[[str], None]) -> int:

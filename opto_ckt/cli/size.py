@@ -23,7 +23,7 @@ def command(
     from opto_ckt.outputs.report import page
     from opto_ckt.outputs.result_json import result_json
 
-    result = sized(design)
+    result = sized(design, compared=verbose)
     if out is not None:
         from opto_ckt.cli.files import every_file
         from opto_ckt.cli.writing import write

@@ -103,6 +103,51 @@ def servo_corner(*, feedback_resistance: Real, injection_resistance: Real, time_
     return feedback_resistance / (2 * pi * injection_resistance * time_constant)
 
 
+@source("Ohm's law: the integrator at its limit")
+def injection_resistance(*, headroom: Real, current: Real) -> Real:
+    r"""Largest resistance through which a servo takes a wanted steady current away.
+
+    .. math:: R_{inj} = V/I
+
+    Parameters
+    ----------
+    headroom : V from the level to the integrator's limit. [V]
+    current : I, steady. [A]
+
+    Returns
+    -------
+    R_inj; its thermal noise current adds to that of the feedback. [Ω]
+
+    Notes
+    -----
+    Summing node at the level.
+    """
+    return headroom / current
+
+
+@source("derived: `servo_corner` solved for the time constant")
+def servo_time_constant(*, feedback_resistance: Real, injection_resistance: Real, corner: Real) -> Real:
+    r"""Time constant of the integrator that puts the high-pass corner where it is wanted.
+
+    .. math:: \tau = \frac{R_f}{2\pi R_{inj} f}
+
+    Parameters
+    ----------
+    feedback_resistance : R_f. [Ω]
+    injection_resistance : R_inj, integrator to summing node. [Ω]
+    corner : f of the high-pass. [Hz]
+
+    Returns
+    -------
+    τ. [s]
+
+    Notes
+    -----
+    f much below the bandwidth of the stage.
+    """
+    return feedback_resistance / (2 * pi * injection_resistance * corner)
+
+
 @source("derived: a follower of gain A drives the far end of the diode; common practice, from memory")
 def bootstrapped_capacitance(
     *, diode: Real, gate_drain: Real, gate_source: Real, follower_gain: Real

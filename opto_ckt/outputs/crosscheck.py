@@ -11,9 +11,9 @@ import numpy as np
 from opto_ckt.analyses import noise, response, stability
 from opto_ckt.analyses.network import Evaluation, Network
 from opto_ckt.analyses.network.expansion import expand
-from opto_ckt.outputs.readings import falls_to, integrated, phase_margin_of, rise_time_of
+from opto_ckt.outputs.readings import falls_to, integrated, phase_margin_of, rise_time_of, rises_to
 from opto_ckt.outputs.simulators import Vectors, run
-from opto_ckt.outputs.spice import deck_of, is_linear, levels, output_node
+from opto_ckt.outputs.spice import deck_of, is_linear, levels, output_node, step_height
 from opto_ckt.result import Result, Scene
 from opto_ckt.units import percent, write
 
@@ -94,16 +94,35 @@ def _levels(result: Result, scene: Scene, plot: Vectors, bounds: Bounds) -> Iter
 
 def _response(result: Result, scene: Scene, evaluation: Evaluation, plot: Vectors, bounds: Bounds) -> Iterator[Row]:
     frequency, answer = plot["frequency"], np.abs(plot[f"v({output_node(result.topology)})"])
-    corner = float(response.bandwidth(evaluation)[0])
+    midband, reference = _midband(scene), _reference(scene, evaluation)
+    corner = float(response.bandwidth(evaluation, reference)[0])
     middle = corner if np.isfinite(corner) else float(np.sqrt(frequency[0] * frequency[-1]))
     for index in _nearest(frequency, [middle * spot for spot in SPOTS]):
         predicted = abs(complex(response.transfer_at(evaluation, frequency[index])[0]))
         apart = 20 * float(np.log10(answer[index] / predicted))
         at = write(float(frequency[index]), "Hz")
         yield Row(scene.name, f"gain at {at}", predicted, float(answer[index]), "1", apart, bounds.gain, "dB")
+    passed = float(answer[0] if midband is None else answer[_nearest(frequency, [midband])[0]])
     if np.isfinite(corner):
-        simulated = falls_to(frequency, answer, float(answer[0]) * 0.5**0.5)
+        above = slice(None) if midband is None else frequency >= midband
+        simulated = falls_to(frequency[above], answer[above], passed * 0.5**0.5)
         yield _share(scene, "-3 dB frequency", corner, simulated, "Hz", bounds.bandwidth)
+    if midband is not None and reference is not None:
+        predicted = float(response.low_cutoff(evaluation, reference)[0])
+        simulated = rises_to(frequency, answer, passed * 0.5**0.5)
+        yield _share(scene, "lower -3 dB frequency", predicted, simulated, "Hz", bounds.bandwidth)
+
+
+def _midband(scene: Scene) -> float | None:
+    """Frequency at which gain is stated where DC does not pass; None where it does. [Hz]"""
+    low = scene.expected.get("low_cutoff", np.nan)
+    return float(np.sqrt(low * scene.expected["bandwidth"])) if np.isfinite(low) else None
+
+
+def _reference(scene: Scene, evaluation: Evaluation) -> float | None:
+    """Magnitude of the gain there. [V per unit of input]"""
+    midband = _midband(scene)
+    return None if midband is None else abs(complex(response.transfer_at(evaluation, midband)[0]))
 
 
 def _noise(result: Result, scene: Scene, evaluation: Evaluation, plot: Vectors, bounds: Bounds) -> Iterator[Row]:
@@ -134,9 +153,11 @@ def _loop(scene: Scene, evaluation: Evaluation, plot: Vectors, bounds: Bounds) -
 
 
 def _step(result: Result, scene: Scene, evaluation: Evaluation, plot: Vectors, bounds: Bounds) -> Iterator[Row]:
-    predicted = float(response.rise_time(evaluation)[0])
+    reference = _reference(scene, evaluation)
+    predicted = float(response.rise_time(evaluation, reference)[0])
     if np.isfinite(predicted):
-        simulated = rise_time_of(plot["time"], plot[f"v({output_node(result.topology)})"])
+        height = None if reference is None else reference * step_height(result.topology, scene)
+        simulated = rise_time_of(plot["time"], plot[f"v({output_node(result.topology)})"], height)
         yield _share(scene, "rise time", predicted, simulated, "s", bounds.rise_time)
 
 

@@ -46,9 +46,15 @@ def integrated(frequency: Curve, density: Curve, low: float, high: float) -> flo
     return float(np.sqrt(pieces.sum()))
 
 
-def rise_time_of(time: Curve, answer: Curve) -> float:
-    """10-90 % of the step from the first value to the last. [s]"""
-    share = (answer - answer[0]) / (answer[-1] - answer[0])
+def rises_to(frequency: Curve, magnitude: Curve, level: float) -> float:
+    """Frequency at which a magnitude first rises through a level, linear in dB over log f; nan where it does not."""
+    return falls_to(frequency, 1 / magnitude, 1 / level)
+
+
+def rise_time_of(time: Curve, answer: Curve, height: float | None = None) -> float:
+    """10-90 % of the step from the first value to the last, or by a height in its direction. [s]"""
+    far = answer[np.argmax(np.abs(answer - answer[0]))] - answer[0]
+    share = (answer - answer[0]) / (answer[-1] - answer[0] if height is None else np.copysign(height, far))
     return _first_time(time, share, 0.9) - _first_time(time, share, 0.1)
 
 

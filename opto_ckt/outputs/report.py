@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections.abc import Iterator, Sequence
 
 from opto_ckt.figures import FIGURES
+from opto_ckt.outputs.alternatives_text import alternatives
 from opto_ckt.outputs.columns import GAP, aligned, packed, padded, width, wrapped
 from opto_ckt.outputs.derivation_text import steps
 from opto_ckt.outputs.figure_text import decibel_text, figure_text
@@ -42,6 +43,7 @@ def page(result: Result, *, verbose: bool = False, colour: bool = False, columns
         _cautions(result, columns),
         _list("Assumed, where a sheet gives a typical figure only", result.assumed),
         _list("Not checked", result.not_checked),
+        _alternatives(result, columns),
         _conventions(result, columns),
         _derivation(result, columns) if verbose else iter(()),
     )
@@ -226,6 +228,14 @@ def _list(heading: str, entries: Sequence[str]) -> Iterator[Line]:
     if entries:
         yield heading, BOLD
         for text in packed(entries, 2, PAGE):
+            yield text, ""
+
+
+def _alternatives(result: Result, columns: int | None) -> Iterator[Line]:
+    if result.alternatives:
+        yield "Other circuits, same request and parts", BOLD
+    for sentence in alternatives(result):
+        for text in wrapped(sentence, 2, columns):
             yield text, ""
 
 

@@ -48,6 +48,15 @@ def record(result: Result) -> dict[str, Any]:
         "assumed": list(result.assumed),
         "cautions": list(result.cautions),
         "not_checked": list(result.not_checked),
+        "alternatives": [
+            {
+                "circuit": other.circuit,
+                "verdict": other.verdict,
+                "figures": _numbers(other.figures),
+                "parts": other.parts,
+            }
+            for other in result.alternatives
+        ],
     }
 
 

@@ -18,6 +18,7 @@ from opto_ckt.units import write
 POINTS_AC = 50  #: a decade
 POINTS_NOISE = 50  #: 50 points a decade integrate noise to 0.02 % by trapezoids
 STEP = 0.01  #: height of the step of light, as a share of it
+FAINT = 1e-6  #: light that stands for the resting one in a scene without any [W]
 SMALL_STEP = 2e-4  #: of the set voltage: small enough for what is not linear
 MARK = "* written by opto-ckt; it is overwritten when the design is sized again\n"
 
@@ -80,7 +81,9 @@ def ac_span(scene: Scene) -> tuple[float, float]:
     """Whole decades from far below to far beyond the bandwidth."""
     middle = scene.expected.get("bandwidth") or scene.expected.get("loop_bandwidth") or 1e6
     decade = floor(log10(middle)) if np.isfinite(middle) and middle > 0 else 6
-    return 10.0 ** (decade - 4), 10.0 ** (decade + 3)
+    low = scene.expected.get("low_cutoff", np.nan)
+    first = floor(log10(low)) - 1 if np.isfinite(low) and low > 0 else decade
+    return 10.0 ** min(decade - 4, first), 10.0 ** (decade + 3)
 
 
 def noise_span(result: Result) -> tuple[float, float]:
@@ -90,10 +93,14 @@ def noise_span(result: Result) -> tuple[float, float]:
 
 
 def step_times(scene: Scene) -> tuple[float, float, float]:
-    """Start of the step, end of the run and largest time step: by the rise time expected, and by a slower tail."""
+    """Start of the step, end of the run and largest time step: by the rise time expected, and by a slower tail.
+
+    The sag of a circuit that does not pass DC is no tail to wait for.
+    """
     rise = scene.expected.get("rise_time", 1e-6)
     rise = rise if np.isfinite(rise) and rise > 0 else 1e-6
-    tail = float(np.nan_to_num(scene.expected.get("settling_time", 0.0)))
+    passes_dc = not np.isfinite(scene.expected.get("low_cutoff", np.nan))
+    tail = float(np.nan_to_num(scene.expected.get("settling_time", 0.0))) if passes_dc else 0.0
     return rise, rise + max(30 * rise, tail), rise / 60
 
 
@@ -110,10 +117,18 @@ def _circuit(topology: Topology, values: Mapping[str, float], pulse: str) -> str
 
 def _pulse(topology: Topology, scene: Scene) -> str:
     start, end, longest = step_times(scene)
-    rest = scene.values["signal.power"] if source(topology) == "vpw" else 0.0
-    height = step_share(topology) * (rest or abs(scene.values.get("set_voltage", 1.0)))
+    rest, height = _rest(topology, scene), step_height(topology, scene)
     times = (start, longest / 10, longest / 10, 10 * end, 20 * end)
     return f"pulse({number(rest)} {number(rest + height)} {' '.join(number(t) for t in times)})"
+
+
+def _rest(topology: Topology, scene: Scene) -> float:
+    return scene.values["signal.power"] if source(topology) == "vpw" else 0.0
+
+
+def step_height(topology: Topology, scene: Scene) -> float:
+    """By how much the input steps. [W or V]"""
+    return step_share(topology) * (_rest(topology, scene) or abs(scene.values.get("set_voltage", FAINT)))
 
 
 def _transient(scene: Scene) -> str:
@@ -122,9 +137,13 @@ def _transient(scene: Scene) -> str:
 
 
 def _temperature(scene: Scene) -> str:
-    """Noise and junctions hold at the scene's own temperature; reltol settles junctions finer than noise needs."""
+    """Noise and junctions hold at the scene's own temperature.
+
+    reltol settles junctions finer than noise needs; gmin keeps what a simulator adds across a clamp, and the shot noise
+    of that, far below the currents of faint light.
+    """
     celsius = number(round(scene.values["temperature"] - ZERO_CELSIUS, 6))
-    return card(".options", f"temp={celsius}", f"tnom={celsius}", "reltol=1e-6")
+    return card(".options", f"temp={celsius}", f"tnom={celsius}", "reltol=1e-6", "gmin=1e-15")
 
 
 def _expected(result: Result, scene: Scene, kind: str) -> list[str]:
@@ -133,7 +152,7 @@ def _expected(result: Result, scene: Scene, kind: str) -> list[str]:
     units = {figure.name: figure.unit for figure in result.figures}
 
     def figure(figure_name: str, words: str) -> str:
-        if figure_name not in found:
+        if figure_name not in found or figure_name not in units:
             return ""
         return comment(f"expect {words}: {write(found[figure_name], units[figure_name], digits=5)}")
 
@@ -142,6 +161,7 @@ def _expected(result: Result, scene: Scene, kind: str) -> list[str]:
         "ac": [
             comment(f"answer: v({node}) for 1 {'W of light' if optical else 'V of signal'} ({input_name})"),
             figure("bandwidth", "-3 dB frequency"),
+            figure("low_cutoff", "lower -3 dB frequency"),
             figure("peaking", "peaking"),
             figure("current", "current through the sense resistor"),
         ],

@@ -102,11 +102,13 @@ class ReceivedSignal(Table):
 
 
 class Target(Table):
-    """Shape of the response, and where noise is stated."""
+    """Shape of the response, where noise is stated, and which form of a circuit is wanted where it has several."""
 
     response: Literal["flat", "bessel", "critical"] | None = None
     noise_frequency: Annotated[float | None, Unit("Hz", "1 MHz")] = None
     noise_band: Band | None = None
+    front_end: Literal["low_impedance", "high_impedance"] = "low_impedance"  #: of a load resistor
+    tee: Literal["resistive", "capacitive", "both"] = "resistive"  #: which part of the feedback is a tee
 
 
 class ReceiverConditions(Conditions):

@@ -66,3 +66,20 @@ def test_no_pattern_of_ten_bits_closes_the_eye_further():
 def test_a_shut_eye_is_negative():
     evaluation = _ladder(("R1", "C1")).evaluate({"R1": 1e3, "C1": 1e-12})
     assert opening(evaluation, 0.3e-9)[0] < 0
+
+
+def test_a_coupling_capacitor_costs_what_a_run_sags() -> None:
+    """High-pass behind one pole far above the bit rate: of a full eye each of the run's other bits takes its share."""
+    primitives = (
+        Primitive("R", "R1", ("n0", "0"), lambda v: v["R1"]),
+        Primitive("C", "C1", ("n0", "n1"), lambda v: v["C1"]),
+        Primitive("R", "R2", ("n1", "0"), lambda v: v["R2"]),
+        Primitive("C", "C2", ("n1", "0"), lambda v: v["C2"]),
+    )
+    network = Network(Expansion(primitives, (), ("0", "n0"), lambda v: -1.0, ("n1", "0")))
+    evaluation = network.evaluate({"R1": 1.0, "C1": 1e-6, "R2": 1e3, "C2": 1e-12})
+    bit, run = 1e-7, 20
+    reference = np.abs(response.transfer_at(evaluation, 1e6))
+    sag = -np.expm1(-bit / 1.001e-3)
+    found = float(opening(evaluation, bit, run, reference)[0])
+    assert found == pytest.approx(1 - run * sag, abs=2e-4)

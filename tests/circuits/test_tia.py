@@ -142,9 +142,36 @@ def test_no_headroom_is_refused_with_the_way_out() -> None:
     assert any("input_level lower" in remedy for remedy in refused.value.remedies)
 
 
-def test_a_decompensated_amplifier_without_a_window_is_refused() -> None:
-    with pytest.raises(InfeasibleError, match="minimum stable gain") as refused:
-        sized("tia", ("junction_max", 'junction_max = "150 °C"\nminimum_stable_gain = "40"'))
+def decompensated(gain: float, *changes: tuple[str, str]):
+    sheet = f'junction_max = "150 °C"\nminimum_stable_gain = "{gain}"'
+    faster = (("gain_bandwidth ", 'gain_bandwidth = "1.6 GHz"'), ("second_pole ", 'second_pole = "900 MHz"'))
+    return sized("tia", ("junction_max", sheet), *faster, *changes)
+
+
+def test_a_decompensated_amplifier_keeps_its_noise_gain_at_every_corner() -> None:
+    """Texas Instruments, OPA657 SBOS197E p. 12: 1 + C_in/C_f no less than the minimum stable gain."""
+    result = decompensated(40)
+    assert result.verdict == "met", [row for row in result.requirements if not row.met]
+    assert result.figure("noise_gain").low >= 40
+    value = {part.ref: part.value for part in result.parts}
+    capacitance = sum(result.input_capacitance.values()) + value["C3"]
+    stray = result.scenes[0].values["CS"]
+    assert result.figure("noise_gain").nominal == pytest.approx(1 + capacitance / (value["C1"] + stray), rel=1e-6)
+
+
+def test_capacitance_to_ground_is_added_only_where_the_window_needs_it() -> None:
+    parts = {part.ref: part for part in decompensated(7).parts}
+    assert not parts["C3"].fitted
+    assert {part.ref for part in sized("tia").parts}.isdisjoint({"C3"})
+
+
+def test_added_capacitance_costs_bandwidth() -> None:
+    assert decompensated(40).figure("bandwidth").nominal < 0.8 * decompensated(7).figure("bandwidth").nominal
+
+
+def test_a_decompensated_amplifier_that_no_capacitance_helps_is_refused() -> None:
+    with pytest.raises(InfeasibleError, match="noise gain") as refused:
+        decompensated(3000)
     assert refused.value.remedies
 
 

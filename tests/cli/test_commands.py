@@ -82,7 +82,7 @@ def test_a_bad_design_ends_in_3_with_every_problem_at_its_line() -> None:
 
 
 @pytest.mark.parametrize(
-    ("text", "said"), [(design(circuit='"tea"'), "tia, laser-current"), ("", "stdin: is empty"), ("a = [", "TOML")]
+    ("text", "said"), [(design(circuit='"tea"'), ", ".join(CIRCUITS)), ("", "stdin: is empty"), ("a = [", "TOML")]
 )
 def test_what_is_no_design_ends_in_3(text: str, said: str) -> None:
     ended = run("size", "-", stdin=text)
@@ -92,9 +92,9 @@ def test_what_is_no_design_ends_in_3(text: str, said: str) -> None:
 
 
 def test_a_figure_that_the_circuit_does_not_offer_ends_in_3() -> None:
-    ended = run("size", "-", stdin=design(bandwidth='{ min = "8 MHz" }\ndroop = { max = 0.1 }'))
+    ended = run("size", "-", stdin=design(bandwidth='{ min = "8 MHz" }\nharmonic_3 = { max = "-40 dB" }'))
     assert ended.returncode == 3
-    assert "tia has no droop" in ended.stderr.decode()
+    assert "tia has no harmonic_3" in ended.stderr.decode()
 
 
 def test_a_file_that_is_not_there_ends_in_3() -> None:

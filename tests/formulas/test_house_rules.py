@@ -79,6 +79,7 @@ BY_NAME = {  # where an equation holds only for figures that suit one another
     "junction_to_case": 1.0,
     "low": 10.0,
     "low_current": 1e-3,
+    "safe": 0.4,
     "second_slope": 0.25,
     "second_threshold": 12e-3,
     "stated_current": 20e-3,

@@ -29,9 +29,7 @@ from tests.near import near
 
 
 def vcsel(temperature):
-    return vcsel_threshold(
-        minimum=1e-3, junction_temperature=temperature, minimum_temperature=310.0, curvature=1.1e-4
-    )
+    return vcsel_threshold(minimum=1e-3, junction_temperature=temperature, minimum_temperature=310.0, curvature=1.1e-4)
 
 
 def fading(temperature):
@@ -104,9 +102,7 @@ def test_relaxation_is_the_two_pole_low_pass():
     assert f_r == near(8e9)
     gamma = damping_rate(relaxation_frequency=f_r, damping_factor=0.3e-9, lifetime=1e-9)
     assert gamma == near(0.3e-9 * 64e18 + 1e9)
-    edge = bandwidth(
-        natural_frequency=f_r, quality=relaxation_quality(relaxation_frequency=f_r, damping_rate=gamma)
-    )
+    edge = bandwidth(natural_frequency=f_r, quality=relaxation_quality(relaxation_frequency=f_r, damping_rate=gamma))
     assert modulation_response(frequency=edge, relaxation_frequency=f_r, damping_rate=gamma) == near(0.5**0.5)
 
 

@@ -39,6 +39,7 @@ SHAPE: dict[str, Any] = {
     "assumed": [TEXT],
     "cautions": [TEXT],
     "not_checked": [TEXT],
+    "alternatives": [{"circuit": TEXT, "verdict": TEXT, "figures": (dict,), "parts": (int, type(None))}],
 }  # fmt: skip
 
 

@@ -139,9 +139,7 @@ def test_self_consistent_temperature():
     room = settle_at_power(power=5e-3, case_temperature=ROOM, **LASER, **LAWS)
     sagged = settle_at_current(current=room.current, case_temperature=ZERO_CELSIUS + 70, **LASER, **LAWS)
     assert sagged.power == printed("0.001174333")
-    cold = current_for_power(
-        power=5e-3, threshold=threshold(ZERO_CELSIUS + 85), slope=slope(ZERO_CELSIUS + 85)
-    )
+    cold = current_for_power(power=5e-3, threshold=threshold(ZERO_CELSIUS + 85), slope=slope(ZERO_CELSIUS + 85))
     assert cold == printed("50.4e-3")
 
 

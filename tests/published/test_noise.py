@@ -217,9 +217,7 @@ def test_johnson_table_3_7_is_3_db_low_at_the_corner():
     assert impedance * thermal_current_noise(resistance=1e8, temperature=300.0) == printed("9.07746e-7")
     assert impedance * 1.1e-15 == printed("7.75755e-8")
     assert impedance * shot_noise(current=1e-9) == printed("1.26242e-6")
-    gain = noise_gain(
-        frequency=1e3, feedback_resistance=1e8, input_capacitance=160e-12, feedback_capacitance=1.6e-12
-    )
+    gain = noise_gain(frequency=1e3, feedback_resistance=1e8, input_capacitance=160e-12, feedback_capacitance=1.6e-12)
     assert 1e-8 * gain == printed("7.16101e-7")
 
 

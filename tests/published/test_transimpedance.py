@@ -40,9 +40,7 @@ def closed_loop(gain_bandwidth, feedback_resistance, input_capacitance, feedback
         (49e-12, 8e-12, "7.75e-12", 20.5e6, "2.05487e7", "0.905616", "2.30510e7", "0.717943", 21.0e6),
     ],
 )
-def test_lmh6611_table_4(
-    total, fitted, intercept, calculated, natural, quality, exact_bandwidth, exact_peak, bench
-):
+def test_lmh6611_table_4(total, fitted, intercept, calculated, natural, quality, exact_bandwidth, exact_peak, bench):
     """Texas Instruments, LMH6611 data sheet SNOSB00K (2013), p. 32, table 4, first and second row.
 
     The calculated 29.3 MHz and 20.5 MHz are cut off, hence 0.5 %. The measured bandwidths hold board strays that the
@@ -85,9 +83,9 @@ def test_opa607_9_2():
 
 def test_lmh6624():
     """Texas Instruments, LMH6624 data sheet SNOSA42G: 124 MHz; 1.2 kΩ and 10 pF of the diode from memory."""
-    assert intercept_frequency(
-        feedback_resistance=1.2e3, input_capacitance=12.9e-12, gain_bandwidth=1.5e9
-    ) == printed("124e6")
+    assert intercept_frequency(feedback_resistance=1.2e3, input_capacitance=12.9e-12, gain_bandwidth=1.5e9) == printed(
+        "124e6"
+    )
 
 
 def test_ad823a():
@@ -96,9 +94,9 @@ def test_ad823a():
     Measured 2.2 MHz with 1.2 pF and 1.2 MHz with 2.7 pF hold board strays: 40 % and 20 % are the bounds stated for
     them; 1.2 pF printed for the intercept is exact to its digits.
     """
-    assert intercept_capacitance(
-        feedback_resistance=50e3, input_capacitance=7.5e-12, gain_bandwidth=17e6
-    ) == printed("1.2e-12")
+    assert intercept_capacitance(feedback_resistance=50e3, input_capacitance=7.5e-12, gain_bandwidth=17e6) == printed(
+        "1.2e-12"
+    )
     for fitted, exact, bench, bound in ((1.2e-12, "3.04411e6", 2.2e6, 0.4), (2.7e-12, "1.39377e6", 1.2e6, 0.2)):
         f_0, q = closed_loop(17e6, 50e3, 7.5e-12, fitted)
         f_3 = bandwidth(natural_frequency=f_0, quality=q)

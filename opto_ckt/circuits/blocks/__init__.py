@@ -10,7 +10,13 @@ if TYPE_CHECKING:
     from opto_ckt.circuit import Block
     from opto_ckt.request import Request
 
-BLOCKS: Mapping[str, str] = {}
+BLOCKS: Mapping[str, str] = {
+    "bias_filter": "opto_ckt.circuits.blocks.bias_filter",
+    "gain_stage": "opto_ckt.circuits.blocks.gain_stage",
+    "post_filter": "opto_ckt.circuits.blocks.post_filter",
+    "ac_coupling": "opto_ckt.circuits.blocks.ac_coupling",
+    "servo": "opto_ckt.circuits.blocks.servo",
+}
 """Name, as under [blocks] and in the slots of circuits -> module whose ``BLOCK`` it is."""
 
 

@@ -18,8 +18,14 @@ from opto_ckt.units import write
 LEVEL_CURRENT = 100e-6  #: through the level's divider, common practice: far above the input bias current [A]
 LEVEL_CORNER = 10.0  #: of the level's filter, common practice: below the band of nearly all signals [Hz]
 BYPASS = 100e-9  #: common practice, at each supply pin [F]
-SLOTS: Mapping[str, tuple[str, str]] = {"post_filter": ("amp", "filtered"), "ac_coupling": ("filtered", "out")}
+SLOTS: Mapping[str, tuple[str, str]] = {
+    "gain_stage": ("amp", "raised"),
+    "post_filter": ("raised", "filtered"),
+    "ac_coupling": ("filtered", "out"),
+}
 TAPS: Mapping[str, tuple[str, str]] = {"servo": ("amp", "sum"), "decision": ("out", "decided")}
+SERVO: Point = (3, -6)  #: where a servo is drawn, below the amplifier
+GAP = 0.25  #: on the drawing, that an empty slot takes up
 STRAY_SPREAD = 0.2  #: a stray capacitance is taken as known to this share
 
 
@@ -97,8 +103,21 @@ def summing_node_limits(request: ReceiverRequest) -> dict[str, Limit]:
 
 
 def openings(end: Point) -> dict[str, tuple[Point, Point]]:
-    """Where blocks behind the amplifier are drawn from: the end of its output line."""
-    return dict.fromkeys((*SLOTS, *TAPS), (end, end))
+    """Gaps for the blocks of the output line, one after the other up to its end; what hangs on it hangs at the end."""
+    x, y = end
+    starts = [x - GAP * (len(SLOTS) - index) for index in range(len(SLOTS))]
+    line = {slot: ((start, y), (start + GAP, y)) for slot, start in zip(SLOTS, starts, strict=True)}
+    return line | dict.fromkeys(TAPS, (end, end)) | {"servo": (SERVO, SERVO)}
+
+
+def servo_marks(request: ReceiverRequest, amplifier: Point, summing: Point) -> list[tuple[Point, str]]:
+    """Names of the nodes that a servo, drawn apart, is tied to; nothing without one."""
+    return [(amplifier, "amp"), (summing, "sum")] if "servo" in request.blocks_asked else []
+
+
+def line_start(end: Point) -> Point:
+    """Where the amplifier's own output line ends and the gaps for blocks begin, given where all of it ends."""
+    return (end[0] - GAP * len(SLOTS), end[1])
 
 
 def exactly(value: float) -> Limit:

@@ -20,6 +20,7 @@ POLARITY = {"cathode": 1.0, "anode": -1.0}
 
 BANDWIDTH_PER_BIT_RATE = 0.7  #: common practice, between noise and eye closure
 MIDBAND = 0.01  #: of the bandwidth: where the gain of a data receiver that does not pass DC is stated
+GAIN_ROOM = 1.05  #: transimpedance aimed at over the least asked for: tolerances of three resistors; ours
 FILTER_ROOM = 1.6  #: bandwidth of a stage over that of stage and filter together where a filter follows; ours
 
 
@@ -168,6 +169,14 @@ def stage_bandwidth(request: ReceiverRequest) -> float | None:
     if wanted is None or request.blocks.post_filter is None:
         return wanted
     return FILTER_ROOM * max(wanted, request.blocks.post_filter.cutoff)
+
+
+def wanted_transimpedance(request: ReceiverRequest) -> float | None:
+    """Transimpedance aimed at: between the bounds required, or just above the lower; None without that. [V/A]"""
+    bound = request.require.get("transimpedance")
+    if bound is None or not bound.min:
+        return None
+    return (bound.min * bound.max) ** 0.5 if bound.max else GAIN_ROOM * bound.min
 
 
 def noise_frequency(request: ReceiverRequest) -> float:

@@ -65,37 +65,44 @@ def feed_drawn(request: ReceiverRequest, far: Point) -> tuple[Point, dict[str, t
 
 
 def fed(
-    values: Values, request: ReceiverRequest, level: float | Lanes, series: float | Lanes = 0.0
+    values: Values,
+    request: ReceiverRequest,
+    level: float | Lanes,
+    load: float | Lanes = 0.0,
+    series: float | Lanes = 0.0,
 ) -> dict[str, float | Lanes]:
     """The detector in its feed: reverse bias left at the average light, and all that follows from it.
 
     Parameters
     ----------
     values : before bias.
-    level : voltage of the end that feeds the amplifier. [V]
+    level : voltage of the end that feeds the amplifier, or beyond a load there. [V]
+    load : between that level and the detector. [Ω]
     series : of the circuit's own between supply and far end, besides a filter's. [Ω]
     """
     sign = POLARITY[request.detector.output]
     node = bias_node(request)
     here = {"level": level, GROUND: 0.0}
     supply = here[node] if node in here else values[f"supply.{node}"]
-    resting = sign * (level - supply)
-    resistance = values.get("R10", 0.0) + series
+    resistance = values.get("R10", 0.0)
+    held = 1 / (1 + resistance / values["R11"]) if "R11" in values else 1.0  #: share of the supply that a bleed leaves
+    resting, resistance = sign * (level - supply * held), resistance * held + series
 
     def left(reverse_bias: float | Lanes) -> dict[str, float | Lanes]:
         return detected({**values, "detector.reverse_bias": reverse_bias}, request)
 
-    bias = resting
-    if np.any(resistance):
-        bias = resting - resistance * _drawn(values, left(resting))
+    bias, total = resting, resistance + load
+    if np.any(total):
+        bias = resting - total * _drawn(values, left(resting))
         if gain_follows(request.detector):
-            bias = _settled(values, left, resting, resistance)
+            bias = _settled(values, left, resting, total)
+    found = left(bias)
     return {
         "input_level": level,
         "supply.bias": supply,
         "detector.reverse_bias": bias,
-        "node.far": level - sign * bias,
-        **left(bias),
+        "node.far": level - sign * (bias + load * _drawn(values, found)),
+        **found,
     }
 
 

@@ -18,6 +18,7 @@ from opto_ckt.circuits.receivers.detector import (
 )
 from opto_ckt.constants import BOLTZMANN
 from opto_ckt.formulas import decision
+from opto_ckt.formulas.front_end import droop
 from opto_ckt.formulas.photodiode import photon_energy
 from opto_ckt.limits import Lanes, Values
 from opto_ckt.request import ReceiverRequest
@@ -78,6 +79,14 @@ class ReceiverFigures:
         return response.low_cutoff(self._evaluation, self._reference)
 
     @cached_property
+    def droop(self) -> Lanes:
+        """Share of a level lost by the end of the longest run of equal bits; nan of a receiver that passes DC. [1]"""
+        signal = self._request.signal
+        if signal.bit_rate is None:
+            return np.full(self._evaluation.lanes, np.nan)
+        return np.asarray(droop(corner=self.low_cutoff, duration=signal.run_length / signal.bit_rate))
+
+    @cached_property
     def peaking(self) -> Lanes:
         """Highest gain over that at DC or in midband. [dB]"""
         return response.peaking(self._evaluation, self._reference)
@@ -125,10 +134,19 @@ class ReceiverFigures:
 
     @cached_property
     def overload(self) -> Lanes:
-        """Average power at which the one level reaches the limit of the amplifier's output. [W]"""
+        """Average power at which a one reaches the limit of an amplifier, or its average that of a servo. [W]"""
         gain = self.transimpedance if self._stage_gain is None else self._stage_gain
-        left = (self._headroom - self._dark_shift) / (gain * (1 + self.overshoot)) - self._ambient
-        return np.asarray(np.maximum(left, 0.0) / (self._responsivity * level_factor(self._request)))
+        reach = (self._headroom - self._dark_shift) / gain
+        if "second.gain" in self._values:
+            second, offset = self._values["second.gain"], np.abs(self._values["second.offset"])
+            later = self._values["second.headroom"] - second * self._dark_shift - offset
+            reach = np.minimum(reach, later / (gain * second))
+        left = reach / (1 + self.overshoot) - (0.0 if "servo.range" in self._values else self._ambient)
+        found = left / level_factor(self._request)
+        if "servo.range" in self._values:
+            standing = self._ambient + self._values[f"{self._detector}.dark_current"]
+            found = np.minimum(found, self._values["servo.range"] - standing)
+        return np.asarray(np.maximum(found, 0.0) / self._responsivity)
 
     @cached_property
     def output_noise(self) -> Lanes:

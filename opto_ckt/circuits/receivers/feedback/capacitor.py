@@ -5,27 +5,35 @@ from __future__ import annotations
 from collections.abc import Sequence
 from itertools import product
 from math import inf, isfinite
+from typing import NamedTuple
 
 import numpy as np
 
 from opto_ckt.circuit import Bench, Fitted
 from opto_ckt.circuits.receivers.detector import stage_bandwidth
-from opto_ckt.circuits.receivers.feedback.stage import Stage
+from opto_ckt.circuits.receivers.feedback.stage import Stage, part_tolerance
 from opto_ckt.errors import InfeasibleError
-from opto_ckt.formulas import second_order, transimpedance, transimpedance_limits
+from opto_ckt.formulas import second_order, transimpedance
 from opto_ckt.limits import Lanes
 from opto_ckt.request import ReceiverRequest
 from opto_ckt.units import write
 
-BUILDABLE = 0.2e-12  #: a fitted capacitor below this is no more than its own pads [F]
-SCAN = np.geomspace(1 / 20, 20, 121)  #: total C_f tried at nominal, as multiples of the closed form
-COARSE = SCAN[::2]  #: tried at corners
+SCAN = np.geomspace(1 / 20, 20, 121)  #: total C_f tried at nominal, every other at corners, re the closed form
 DECIDES = ("U1.gain_bandwidth", "U1.second_pole", "D1.capacitance")  #: limits whose combinations make the corners
+LOADS = ("D1.capacitance", "U1.common_capacitance", "U1.differential_capacitance", "CB")  #: of the summing node
 ALLOWED_PEAKING = float(second_order.peaking(quality=1.0))  #: where nothing is asked for: 1.25 dB
 
 
-def feedback_capacitor(stage: Stage, resistance: float) -> tuple[Fitted, float]:
-    """C1 for the wanted Q on the whole network, moved into its window; and the overshoot left at the worst corner.
+class Damped(NamedTuple):
+    """C1, and what it leaves."""
+
+    fitted: Fitted
+    overshoot: float  #: at the worst corner
+    windowed: bool  #: some C1 both damps and keeps the bandwidth at every corner
+
+
+def feedback_capacitor(stage: Stage, resistance: float) -> Damped:
+    """C1 for the wanted Q on the whole network, moved into its window.
 
     Raises
     ------
@@ -42,11 +50,12 @@ def feedback_capacitor(stage: Stage, resistance: float) -> tuple[Fitted, float]:
             quality=quality,
         )
     total = max(float(np.nan_to_num(closed_form)), stray)
-    found = bench.evaluate({**stage.resistors(resistance), **stage.others, "C1": total * SCAN - stray})
-    wanted = _where_quality(total * SCAN, found["quality_factor"], quality)
+    scanned = np.maximum(total * SCAN, stray)
+    found = bench.evaluate({**stage.resistors(resistance), **stage.others, **stage.capacitors(scanned - stray)})
+    wanted = _where_quality(scanned, found["quality_factor"], quality)
     corners = _Corners(stage, resistance)
-    low, high = _window(request, corners, total * COARSE)
-    stable = _largest_stable(bench, capacitance)
+    low, high = _window(request, corners, scanned[::2])
+    stable = _largest_stable(stage, resistance, scanned)
     if low > stable and isfinite(low):
         raise _unstable(bench, capacitance, low, stable)
     high = min(high, stable)
@@ -54,8 +63,8 @@ def feedback_capacitor(stage: Stage, resistance: float) -> tuple[Fitted, float]:
     overshoot = min(float(corners.worst(np.array([aim]), ("overshoot",))["overshoot"][1][0]), 1.0)
     fixed = stage.fixed("C1")
     if fixed is not None:
-        return Fitted("C1", fixed, series, fixed=True), overshoot
-    reason = _reason(quality, (wanted, total, aim), (low, high), stray)
+        return Damped(Fitted("C1", fixed, series, fixed=True), overshoot, True)
+    reason = _reason(quality, (wanted, total, aim), (low, high), stray, stage.smallest)
     stage.derivation.compute(
         "C1",
         transimpedance.feedback_capacitance,
@@ -66,8 +75,9 @@ def feedback_capacitor(stage: Stage, resistance: float) -> tuple[Fitted, float]:
         quality=quality,
     )
     exact = max(aim - stray, 0.0)
-    bare = exact < BUILDABLE
-    return Fitted("C1", exact, series, low=0.0 if bare else exact / 2, high=stable - stray, omittable=bare), overshoot
+    bare = exact < stage.smallest
+    part = Fitted("C1", exact, series, low=0.0 if bare else exact / 2, high=stable - stray, omittable=bare)
+    return Damped(part, overshoot, low <= high)
 
 
 def _reason(
@@ -75,6 +85,7 @@ def _reason(
     totals: tuple[float, float, float],
     window: tuple[float, float],
     stray: float,
+    smallest: float,
 ) -> str:
     wanted, closed_form, aim = totals
     low, high = (write(max(edge - stray, 0.0), "F") if isfinite(edge) else "open" for edge in window)
@@ -85,7 +96,7 @@ def _reason(
     if abs(aim / wanted - 1) > 0.02:
         said += ", moved into its window"
     said += f"; window over corners {ends}; {write(stray, 'F')} more is stray"
-    if aim - stray < BUILDABLE:
+    if aim - stray < smallest:
         said += "; no more than bare pads: not to be built as a part"
     return said if window[0] <= window[1] else said + "; the window is empty"
 
@@ -97,7 +108,7 @@ def _unstable(bench: Bench, capacitance: float, low: float, stable: float) -> In
         f" minimum stable gain {gain:.3g} of U1",
         [
             f"minimum stable gain of U1 ≤ {1 + capacitance / low:.3g}",
-            f"{write((gain - 1) * low - capacitance, 'F')} more from summing node to ground",
+            f"{write(max((gain - 1) * low - capacitance, 0.0), 'F')} more from summing node to ground",
         ],
     )
 
@@ -106,20 +117,23 @@ class _Corners:
     """The circuit at every combination of the limits that decide, C1 and strays at both ends of their spread."""
 
     def __init__(self, stage: Stage, resistance: float) -> None:
+        self._stage = stage
         bench = self._bench = stage.bench
-        self._stock = stage.request.preferred.capacitors
         self._fixed = {**stage.resistors(resistance), **stage.others}
-        self._stray, self._spread = bench.nominal("CS"), bench.high("CS") - bench.nominal("CS")
-        self._settings = list(product(*((bench.low(name), bench.high(name)) for name in DECIDES)))
+        self._stray = bench.nominal("CS")
+        self._decides = (*DECIDES, *stage.decides)
+        self._settings = list(product(*((bench.low(name), bench.high(name)) for name in self._decides)))
 
     def worst(self, totals: Lanes, names: Sequence[str]) -> dict[str, tuple[Lanes, Lanes]]:
         """Least and greatest of each figure over the corners, for each total C_f."""
-        fitted = np.maximum(totals - self._stray, 0.0)
-        tolerance = np.where(fitted < 10e-12, self._stock.tolerance_below_10pF, self._stock.tolerance * fitted)
-        deviation = np.minimum(tolerance, fitted) + self._spread
-        ends = np.array([totals - deviation - self._stray, totals + deviation - self._stray])
-        lanes = {name: np.repeat([s[i] for s in self._settings], ends.size) for i, name in enumerate(DECIDES)}
-        found = self._bench.evaluate({**self._fixed, **lanes, "C1": np.tile(ends.ravel(), len(self._settings))})
+        fitted = totals - self._stray
+        tolerance = part_tolerance(self._stage, fitted)
+        ends = np.maximum([fitted - tolerance, fitted + tolerance], 0.0)
+        strays = np.repeat([self._bench.low("CS"), self._bench.high("CS")], len(totals))
+        count = len(self._settings)
+        lanes = {name: np.repeat([s[i] for s in self._settings], ends.size) for i, name in enumerate(self._decides)}
+        parts = self._stage.capacitors(np.tile(ends.ravel(), count))
+        found = self._bench.evaluate({**self._fixed, **lanes, **parts, "CS": np.tile(strays, count)})
         shape = (2 * len(self._settings), len(totals))
         return {
             name: (
@@ -148,14 +162,18 @@ def _window(request: ReceiverRequest, corners: _Corners, totals: Lanes) -> tuple
     return low, float(totals[wide[-1]]) if len(wide) else 0.0
 
 
-def _largest_stable(bench: Bench, capacitance: float) -> float:
-    """Total C_f above which a decompensated op amp is below its minimum stable gain. [F]"""
-    gain = bench.nominal("U1.minimum_stable_gain")
+def _largest_stable(stage: Stage, resistance: float, totals: Lanes) -> float:
+    """Total C_f above which a decompensated op amp is below its minimum stable gain at its worst corner. [F]"""
+    bench, gain = stage.bench, stage.bench.nominal("U1.minimum_stable_gain")
     if gain <= 1:
         return inf
-    return float(
-        transimpedance_limits.largest_feedback_capacitance(input_capacitance=capacitance, minimum_stable_gain=gain)
-    )
+    fitted = totals - bench.nominal("CS")
+    least = {name: bench.low(name) for name in LOADS}
+    values = {**stage.resistors(resistance), **stage.others, **least}
+    most = stage.capacitors(np.maximum(fitted + part_tolerance(stage, fitted), 0.0))
+    found = bench.evaluate({**values, **most, "CS": bench.high("CS")})["noise_gain"]
+    kept = np.flatnonzero(found >= gain)
+    return float(totals[kept[-1]]) if len(kept) else 0.0
 
 
 def _where_quality(tried: Lanes, qualities: Lanes, wanted: float) -> float:

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+import numpy as np
+
 from opto_ckt.circuit import Heat, Stress
 from opto_ckt.circuits.receivers import board
 from opto_ckt.circuits.receivers.detector import one_level
@@ -20,6 +22,7 @@ def stresses(values: Values, request: OpAmpReceiverRequest) -> tuple[Stress, ...
     return (
         Stress("R1", power=current**2 * values["R1"], voltage=current * values["R1"], current=current),
         Stress("C1", voltage=current * values["R1"]),
+        Stress("C3", voltage=np.abs(values["input_level"])),
         *around(values, request),
     )
 

@@ -1,6 +1,7 @@
 """What a transimpedance stage is at a temperature, a supply and a light: its levels at DC and its figures.
 
-What depends on the feedback resistance reads ``feedback_resistance``, which `biased` writes: R1, or what stands for it.
+What depends on the feedback reads ``feedback_resistance`` and ``feedback_ratio``, which `biased` writes: R1 and
+nothing, or what a network in its place has.
 """
 
 from __future__ import annotations
@@ -18,11 +19,12 @@ from opto_ckt.circuits.receivers.feed import bias_limit, fed
 from opto_ckt.circuits.receivers.figures import OFFERS as RECEIVER_OFFERS
 from opto_ckt.circuits.receivers.figures import ReceiverFigures
 from opto_ckt.formulas.front_end import output_offset
+from opto_ckt.formulas.loop import noise_gain_plateau
 from opto_ckt.formulas.reference import divided_voltage, parallel_resistance
 from opto_ckt.limits import Figures, Lanes, Limit, Requirement, Values
 from opto_ckt.request import OpAmpReceiverRequest
 
-OFFERS = (*RECEIVER_OFFERS, "dc_offset", "dark_output")
+OFFERS = (*RECEIVER_OFFERS, "noise_gain", "dc_offset", "dark_output")
 LEAST_MARGIN = 45.0  #: of the phase, where no other bound is asked for; common practice [°]
 
 
@@ -46,24 +48,27 @@ def biased(
     values: Values,
     request: OpAmpReceiverRequest,
     feedback: float | Lanes,
+    ratio: float | Lanes = 0.0,
     *,
     series: float | Lanes = 0.0,
     leak: float | Lanes = 0.0,
 ) -> dict[str, float | Lanes]:
-    """As `bias`, with what a circuit has of its own.
+    """As `bias`, with any feedback, and with what a circuit has of its own.
 
     Parameters
     ----------
-    feedback : resistance around the amplifier. [Ω]
+    feedback : output voltage for a current into the summing node. [Ω]
+    ratio : gain from the summing node's voltage to the output at no current, less 1. [V/V]
     series : between the detector and its supply, besides a filter's. [Ω]
     leak : current that parts beside detector and amplifier draw from the summing node. [A]
     """
     level = level_voltage(values)
     found: dict[str, float | Lanes] = {
         **values,
-        **fed(values, request, level, series),
+        **fed(values, request, level, series=series),
         **warmed(values, request.amplifier),
         "feedback_resistance": feedback,
+        "feedback_ratio": ratio,
         "summing_leak": leak,
     }
     return {**found, **_levels(found, request)}
@@ -78,14 +83,14 @@ def level_voltage(values: Values) -> float | Lanes:
 
 def _levels(values: Values, request: OpAmpReceiverRequest) -> dict[str, float | Lanes]:
     """Node voltages at the average light: the currents into the summing node balance, at finite open-loop gain."""
-    sign = POLARITY[request.detector.output]
+    sign, feedback = POLARITY[request.detector.output], values["feedback_resistance"]
     light = values["D1.responsivity"] * values["signal.power"] + values["D1.ambient_current"]
     shunt, level = 1 / values["D1.shunt_resistance"], values["input_level"]
-    inner = 1 / values["feedback_resistance"] + 1 / values["RB"] + shunt
     wanted = level + values["U1.offset"]
-    drawn = wanted * inner - level * shunt + values["U1.bias_current"] + sign * (light + values["D1.dark_current"])
-    drawn = drawn + values["summing_leak"]
-    output = drawn / (1 / values["feedback_resistance"] + inner / values["U1.open_loop_gain"])
+    current = values["U1.bias_current"] - level * shunt + sign * (light + values["D1.dark_current"])
+    current = current + values["summing_leak"]
+    gain = 1 + values["feedback_ratio"] + feedback * (1 / values["RB"] + shunt)
+    output = (wanted * gain + feedback * current) / (1 + gain / values["U1.open_loop_gain"])
     return {"node.amp": output, "node.sum": wanted - output / values["U1.open_loop_gain"]}
 
 
@@ -95,18 +100,43 @@ class FeedbackFigures(ReceiverFigures):
     def __init__(self, values: Values, evaluation: Evaluation, request: OpAmpReceiverRequest) -> None:
         self._dark = dark(values, request)
         super().__init__(
-            values, evaluation, request, headroom=headroom(values, request), dark_shift=self._dark["shift"]
+            values,
+            evaluation,
+            request,
+            headroom=headroom(values, request),
+            dark_shift=self._dark["shift"],
+            stage_gain=values["feedback_resistance"] if request.blocks_asked else None,
         )
+
+    @cached_property
+    def noise_gain(self) -> Lanes:
+        """Of high frequencies, where the capacitances divide: 1 + C_in/C_f. [V/V]"""
+        values = self._values
+        loads = ("D1.capacitance", "U1.common_capacitance", "U1.differential_capacitance", "CB")
+        capacitance = sum(values[name] for name in loads) + values.get("C3", 0.0)
+        return np.asarray(
+            noise_gain_plateau(input_capacitance=capacitance, feedback_capacitance=self._feedback_capacitance())
+        )
+
+    def _feedback_capacitance(self) -> Lanes | float:
+        """From the output to the summing node, strays included. [F]"""
+        return self._values["C1"] + self._values["CS"]
 
     @cached_property
     def dc_offset(self) -> Lanes:
         """All errors of the output in the dark with one sign. [V]"""
-        return self._dark["offset"]
+        later = self._values.get("filter.offset", 0.0)
+        return self._behind(self._dark["offset"], 1.0) + later
 
     @cached_property
     def dark_output(self) -> Lanes:
         """Output voltage in the dark. [V]"""
-        return self._dark["output"]
+        return self._behind(self._dark["output"], np.sign(self._values.get("second.offset", 0.0)))
+
+    def _behind(self, level: Lanes, sign: Lanes | float) -> Lanes:
+        """A level of the amplifier behind the gain stage, where there is one, whose own error has a sign. [V]"""
+        values = self._values
+        return np.asarray(level * values.get("second.gain", 1.0) + sign * np.abs(values.get("second.offset", 0.0)))
 
 
 def figures(values: Values, evaluation: Evaluation, request: OpAmpReceiverRequest) -> Figures:
@@ -122,14 +152,21 @@ def headroom(values: Values, request: OpAmpReceiverRequest) -> float | Lanes:
 
 
 def dark(values: Values, request: OpAmpReceiverRequest) -> dict[str, Lanes]:
-    """Output in the dark: all errors with one sign; the voltage itself; its shift towards the signal's limit."""
+    """Output in the dark: all errors with one sign; the voltage itself; its shift towards the signal's limit.
+
+    A servo holds the output, whatever the errors before it.
+    """
+    if "servo.offset" in values:
+        held = np.asarray(values["servo.offset"], dtype=float)
+        return {"offset": np.abs(held), "output": values["input_level"] + held, "shift": np.abs(held)}
     shunt = parallel_resistance(first=values["D1.shunt_resistance"], second=values["RB"])
     shift = values["feedback_resistance"] * values["D1.dark_current"]
     sign, offset = POLARITY[request.detector.output], values["U1.offset"]
 
     def error(dark_current: float | Lanes) -> Lanes:
         return np.asarray(
-            output_offset(
+            values["feedback_ratio"] * np.abs(offset)
+            + output_offset(
                 offset_voltage=np.abs(offset),
                 bias_current=values["U1.bias_current"] + np.abs(values["summing_leak"]),
                 dark_current=dark_current,
@@ -147,5 +184,6 @@ def dark(values: Values, request: OpAmpReceiverRequest) -> dict[str, Lanes]:
 
 def implied(request: OpAmpReceiverRequest) -> tuple[Requirement, ...]:
     """The output must not reach its limit at the most light asked for, and the loop must not ring."""
-    most = request.signal.power.high
-    return (Requirement("overload", "min", most, most), Requirement("phase_margin", "min", LEAST_MARGIN, LEAST_MARGIN))
+    most, gain = request.signal.power.high, request.amplifier.minimum_stable_gain.nominal
+    needs = [Requirement("overload", "min", most, most), Requirement("phase_margin", "min", LEAST_MARGIN, LEAST_MARGIN)]
+    return (*needs, Requirement("noise_gain", "min", gain, 1.0)) if gain > 1 else tuple(needs)

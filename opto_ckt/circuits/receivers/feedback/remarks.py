@@ -6,7 +6,7 @@ import numpy as np
 
 from opto_ckt.circuits.receivers import avalanche
 from opto_ckt.circuits.receivers.detector import POLARITY, noise_band, one_level, wanted_bandwidth
-from opto_ckt.circuits.receivers.feedback.capacitor import BUILDABLE
+from opto_ckt.circuits.receivers.feedback.stage import BUILDABLE, LARGEST_CHIP
 from opto_ckt.limits import Limits, Values
 from opto_ckt.request import OpAmpReceiverRequest
 from opto_ckt.units import write
@@ -35,6 +35,10 @@ def remarks(values: Values, limits: Limits, request: OpAmpReceiverRequest) -> tu
     dark = float(np.min(values["input_level"])) - float(np.min(values["supply.negative"]))
     if dark < request.amplifier.swing_to_negative.high:
         found.append("the output cannot reach its dark level: raise conditions.input_level or add a negative supply")
+    if float(np.max(values.get("R1", 0.0))) > LARGEST_CHIP:
+        found.append(
+            f"R1 is beyond the {write(LARGEST_CHIP, 'Ω')} of usual chip resistors: a high-ohmic special, or tia-tee"
+        )
     if 0 < float(np.max(values["C1"])) < BUILDABLE:
-        found.append("C1 is no more than its pads: leave the pads bare, trim on the board, or lower R1")
+        found.append("C1 is no more than its pads: leave them bare, trim on the board, lower R1, or tia-tee")
     return (*found, *avalanche.remarks(request))

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from math import inf
 
 import numpy as np
@@ -14,12 +15,16 @@ from opto_ckt.circuits.receivers.detector import (
     on_the_bench,
     one_level,
     stage_bandwidth,
+    wanted_transimpedance,
 )
-from opto_ckt.circuits.receivers.feedback.stage import Stage
+from opto_ckt.circuits.receivers.feedback.stage import Stage, part_tolerance
 from opto_ckt.constants import ROOM_TEMPERATURE
 from opto_ckt.errors import InfeasibleError
 from opto_ckt.formulas import noise, noise_generator, second_order, transimpedance, transimpedance_limits
 from opto_ckt.formulas.formula import Real
+from opto_ckt.formulas.second_stage import second_stage_bandwidth
+from opto_ckt.formulas.transit import combined_bandwidth
+from opto_ckt.limits import Lanes
 from opto_ckt.request import ReceiverRequest
 from opto_ckt.units import percent, write
 
@@ -28,12 +33,12 @@ def feedback_resistance(stage: Stage, overshoot: float) -> float:
     """The largest resistance that swing, bandwidth and a bound on the transimpedance allow; the larger, the quieter."""
     request, derivation = stage.request, stage.derivation
     candidates = {"swing": _swing_resistance(stage, overshoot)}
-    bandwidth = stage_bandwidth(request)
-    if bandwidth is not None:
-        candidates["bandwidth"] = _bandwidth_resistance(stage, bandwidth)
     bound = request.require.get("transimpedance")
     if bound is not None and bound.max:
         candidates["transimpedance"] = bound.max / _most(request)
+    bandwidth = stage_bandwidth(request)
+    if bandwidth is not None:
+        candidates["bandwidth"] = _bandwidth_resistance(stage, bandwidth, _second_stage(stage))
     quiet = _quiet_resistance(stage)
     if quiet is not None and not np.isfinite(min(candidates.values())):
         candidates["noise"] = quiet
@@ -133,7 +138,24 @@ def _headroom(request: ReceiverRequest, bench: Bench) -> float:
     return level - bench.high("supply.negative") - bench.high("U1.swing_to_negative")
 
 
-def _bandwidth_resistance(stage: Stage, bandwidth: float) -> float:
+def _second_stage(stage: Stage) -> Callable[[Lanes], Lanes]:
+    """Bandwidth of the gain stage behind an R1, at its slow corner; without one there is no bound. [Hz]"""
+    asked = stage.request.blocks.gain_stage
+    if asked is None:
+        return lambda resistance: np.full_like(resistance, inf)
+    record = stage.request.second_amplifier or stage.request.amplifier
+    slowest, gain = record.limits(stage.request.assumed)["gain_bandwidth"].low, asked.gain
+    wanted = wanted_transimpedance(stage.request)
+
+    def bandwidth(resistance: Lanes) -> Lanes:
+        both = np.maximum(wanted or 0.0, resistance) if gain is None else gain * resistance
+        found = second_stage_bandwidth(gain_bandwidth=slowest, transimpedance=both, first=resistance)
+        return np.asarray(found)
+
+    return bandwidth
+
+
+def _bandwidth_resistance(stage: Stage, bandwidth: float, second: Callable[[Lanes], Lanes]) -> float:
     """Largest R1 that keeps the bandwidth at every corner of op amp and capacitance, with C_f sized at nominal."""
     bench, quality, nominal = stage.bench, stage.quality, stage.input_capacitance
     scale = bench.high("D1.capacitance") / bench.nominal("D1.capacitance")
@@ -147,10 +169,11 @@ def _bandwidth_resistance(stage: Stage, bandwidth: float) -> float:
             feedback_resistance=resistances, input_capacitance=nominal, gain_bandwidth=gain_bandwidth, quality=quality
         )
     fitted = np.nan_to_num(np.maximum(fitted, bench.nominal("CS")), nan=bench.nominal("CS"))
+    deviation = part_tolerance(stage, fitted - bench.nominal("CS")) + bench.high("CS") - bench.nominal("CS")
     kept = np.full(len(resistances), inf)
     for speed in (bench.low("U1.gain_bandwidth"), bench.high("U1.gain_bandwidth")):
         for load in (nominal / scale, nominal * scale):
-            for capacitance in (0.9 * fitted, 1.1 * fitted):
+            for capacitance in (np.maximum(fitted - deviation, 0.0), fitted + deviation):
                 parts: dict[str, Real] = {
                     "feedback_resistance": resistances,
                     "input_capacitance": load,
@@ -160,8 +183,11 @@ def _bandwidth_resistance(stage: Stage, bandwidth: float) -> float:
                 natural = transimpedance.natural_frequency(**parts)
                 q = transimpedance.quality_factor(**parts)
                 kept = np.minimum(kept, second_order.bandwidth(natural_frequency=natural, quality=q))
+    kept = np.asarray(combined_bandwidth(first=kept, second=second(resistances)))
     reaching = np.flatnonzero(kept >= bandwidth)
-    largest = float(resistances[reaching[-1]]) if len(reaching) else float(start) / 10
+    widest = int(np.argmax(kept))
+    missed = float(resistances[widest]) if widest else float(start) / 10
+    largest = float(resistances[reaching[-1]]) if len(reaching) else missed
     # the closed form at the capacitance that gives the same R1 shows where the figure comes from
     worst = start / largest * nominal
     return stage.derivation.compute(

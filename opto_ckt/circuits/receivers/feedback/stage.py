@@ -5,18 +5,27 @@ from __future__ import annotations
 from collections.abc import Callable, Mapping
 from dataclasses import dataclass, field
 
+import numpy as np
+
+from opto_ckt.analyses.corners import SMALL_CAPACITOR
 from opto_ckt.circuit import Bench
 from opto_ckt.derivation import Derivation
 from opto_ckt.formulas import second_order
 from opto_ckt.limits import Lanes, Values
 from opto_ckt.request import OpAmpReceiverRequest
 
+BUILDABLE = 0.2e-12  #: a fitted capacitor below this is no more than its own pads [F]
+LARGEST_CHIP = 10e6  #: of the usual series of chip resistors; common practice [Ω]
 QUALITY: Mapping[str, float] = {"flat": 0.5**0.5, "bessel": 3**-0.5, "critical": 0.5}
 """Q of a second-order response by its name."""
 
 
-def _alone(resistance: float | Lanes) -> Values:
+def _resistor(resistance: float | Lanes) -> Values:
     return {"R1": resistance}
+
+
+def _capacitor(capacitance: float | Lanes) -> Values:
+    return {"C1": capacitance}
 
 
 @dataclass(frozen=True)
@@ -29,7 +38,11 @@ class Stage:
     capacitance: Mapping[str, float]  #: of the summing node without the feedback, itemised, nominal [F]
     others: Mapping[str, float] = field(default_factory=dict)  #: exact values of the parts that are sized already
     other_noise: float = 0.0  #: of parts beside detector and amplifier, as a current of the detector [A/√Hz]
-    resistors: Callable[[float | Lanes], Values] = _alone  #: what is fitted for a feedback resistance
+    decides: tuple[str, ...] = ()  #: limits that make the corners of C1, besides those of op amp and detector
+    resistors: Callable[[float | Lanes], Values] = _resistor  #: what is fitted for a feedback resistance
+    capacitors: Callable[[float | Lanes], Values] = _capacitor  #: what is fitted for a feedback capacitance
+    spread: float | None = None  #: of that capacitance, where it is not one part of the preferred tolerance
+    smallest: float = BUILDABLE  #: capacitance that can be built [F]
 
     @property
     def input_capacitance(self) -> float:
@@ -64,3 +77,12 @@ def summing_node(request: OpAmpReceiverRequest, bench: Bench) -> dict[str, float
         "U1 differential": bench.nominal("U1.differential_capacitance"),
         "board": bench.nominal("CB"),
     }
+
+
+def part_tolerance(stage: Stage, fitted: Lanes) -> Lanes:
+    """By how much what is fitted as feedback capacitance may differ from nominal. [F]"""
+    stock, part = stage.request.preferred.capacitors, np.maximum(fitted, 0.0)
+    if stage.spread is not None:
+        return np.asarray(stage.spread * part)
+    tolerance = np.where(part < SMALL_CAPACITOR, stock.tolerance_below_10pF, stock.tolerance * part)
+    return np.asarray(np.minimum(tolerance, part))

@@ -10,6 +10,7 @@ from opto_ckt.analyses.network import Evaluation
 from opto_ckt.circuit import OnDemand
 from opto_ckt.circuits.receivers.feedback import operation
 from opto_ckt.circuits.receivers.tia_bootstrap import follower
+from opto_ckt.formulas.loop import noise_gain_plateau
 from opto_ckt.limits import Figures, Lanes, Requirement, Values
 from opto_ckt.request import BootstrapRequest
 
@@ -25,6 +26,14 @@ def bias(values: Values, request: BootstrapRequest) -> dict[str, float | Lanes]:
 
 class BootstrapFigures(operation.FeedbackFigures):
     """Those of the stage, and what is left to its follower."""
+
+    @cached_property
+    def noise_gain(self) -> Lanes:
+        """Of high frequencies, with what the follower leaves of the detector's capacitance. [V/V]"""
+        values = self._values
+        around = ("U1.common_capacitance", "U1.differential_capacitance", "CB")
+        left = follower.left_capacitance(values) + sum(values[name] for name in around)
+        return np.asarray(noise_gain_plateau(input_capacitance=left, feedback_capacitance=self._feedback_capacitance()))
 
     @cached_property
     def compliance_margin(self) -> Lanes:

@@ -34,7 +34,7 @@ def bought(values: Values, request: BootstrapRequest) -> str:
     """Capacitance, bandwidth and noise at nominal with the bootstrap, and of the same R1 with C1 anew without it."""
     nominal = first_lane(values)
     with_it = evaluated(structure.topology(request), nominal)
-    without = evaluated(plain.topology(request), {**nominal, "C1": capacitor_without(nominal)})
+    without = evaluated(plain.topology(request), {**nominal, "C1": capacitor_without(nominal), "C3": 0.0})
     kept, whole = (
         write(float(value), "F") for value in (follower.left_capacitance(nominal), nominal["D1.capacitance"])
     )

@@ -7,8 +7,7 @@ from dataclasses import replace
 from opto_ckt.circuit import Bench, Fitted
 from opto_ckt.circuits.receivers.board import level_values, surroundings
 from opto_ckt.circuits.receivers.detector import noise_frequency, wanted_bandwidth
-from opto_ckt.circuits.receivers.feedback.capacitor import feedback_capacitor
-from opto_ckt.circuits.receivers.feedback.resistor import feedback_resistance
+from opto_ckt.circuits.receivers.feedback.pair import feedback_pair
 from opto_ckt.circuits.receivers.feedback.stage import Stage, summing_node
 from opto_ckt.circuits.receivers.tia_bootstrap import follower
 from opto_ckt.circuits.receivers.tia_bootstrap.bias import BARELY, coupling, feeding, rest_current
@@ -29,6 +28,8 @@ from opto_ckt.request import BootstrapRequest
 from opto_ckt.request.reading import Limit as Bound
 from opto_ckt.units import write
 
+DECIDES = ("J1.saturation_current", "J1.pinch_off_voltage")  #: limits of the follower that change its gain most
+
 
 def propose(request: BootstrapRequest, derivation: Derivation, bench: Bench) -> tuple[Fitted, ...]:
     """Every fitted part with its exact value and window.
@@ -48,12 +49,9 @@ def propose(request: BootstrapRequest, derivation: Derivation, bench: Bench) -> 
     others |= {"R4": r4, "R5": r5, "C4": c4}
     weak, usual = at_rest(request, bench, others, weakest=True), at_rest(request, bench, others)
     _said(derivation, usual)
-    worst = _stage(request, derivation, bench, weak, others)
+    worst = _faster(_stage(request, derivation, bench, weak, others), weak)
     stage = _stage(request, derivation, bench, usual, others)
-    overshoot = float(second_order.overshoot(quality=stage.quality)) if stage.quality > 0.5 else 0.0
-    for _ in range(2):
-        r1 = stage.fixed("R1") or feedback_resistance(_faster(worst, weak), overshoot)
-        c1, overshoot = feedback_capacitor(stage, r1)
+    r1, c1 = feedback_pair(stage, worst)
     c4 = coupling(request, derivation, bench, r1, r5)
     resistors, bypass = request.preferred.resistors.series, request.preferred.bypass.series
     return (
@@ -107,7 +105,7 @@ def _stage(
         frequency=noise_frequency(request),
     )
     capacitance = input_capacitance(request, bench, at)
-    return Stage(request, derivation, bench, capacitance, others, other_noise=float(through_diode))
+    return Stage(request, derivation, bench, capacitance, others, other_noise=float(through_diode), decides=DECIDES)
 
 
 def _faster(stage: Stage, weak: Values) -> Stage:

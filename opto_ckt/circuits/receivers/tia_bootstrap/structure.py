@@ -21,7 +21,7 @@ from opto_ckt.topology import (
 )
 
 SUM: Point = (3, 2.5)
-GATE: Point = (0.5, 2.5)
+OUT: Point = (10.5, 2)
 
 
 def topology(request: BootstrapRequest) -> Topology:
@@ -30,17 +30,18 @@ def topology(request: BootstrapRequest) -> Topology:
     polarity = POLARITY[request.follower.kind]
     toward, drain = (negative, "positive") if polarity > 0 else ("positive", negative)
     side, rest = far_side(request), -polarity
+    gate: Point = (-2.5 if "bias_filter" in request.blocks_asked else 0.5, SUM[1])
     far: Point = (3, SUM[1] + (2 if side == rest else 2.5) * side)
     fed: Point = (3, far[1] + 2 * side)
     supply, openings = feed_drawn(request, fed)
-    follow: Point = (GATE[0] - 1, GATE[1] + 2 * rest)
+    follow: Point = (gate[0] - 1, gate[1] + 2 * rest)
     rails, rail_marks = board.rails(request, 13)
     divider, divider_marks, divider_wires = board.level(request, 13)
     coupling, around = _coupling(follow, far, side == rest)
     elements: list[Element] = [
         photodiode(request, SUM, far),
         Jfet("J1", drain=drain, control="sum", source="follow", polarity=polarity, role="follower", table="follower",
-             at=GATE, facing=LEFT, flipped=polarity > 0),
+             at=gate, facing=LEFT, flipped=polarity > 0),
         Resistor("R4", "follow", toward, role="follower current", at=follow, to=(follow[0], follow[1] + 2 * rest)),
         coupling,
         Resistor("R5", "far", "feed", role="detector bias", at=far, to=fed),
@@ -49,7 +50,7 @@ def topology(request: BootstrapRequest) -> Topology:
         OpAmp("U1", plus=level, minus="sum", out="amp", positive="positive", negative=negative, role="amplifier",
               table="amplifier", at=(6, 2), facing=RIGHT),
         *rails,
-        Terminal("OUT", "out", at=(10.5, 2)),
+        Terminal("OUT", "out", at=OUT),
         Capacitor("CS", "sum", "amp", role="stray across R1", fitted=False),
         Capacitor("CB", "sum", GROUND, role="board", fitted=False),
         Resistor("RB", "sum", GROUND, role="leakage", fitted=False),
@@ -64,12 +65,12 @@ def topology(request: BootstrapRequest) -> Topology:
         output=("out", GROUND),
         loop="U1",
         wires=(
-            (GATE, (6, 2.5)),
-            ((follow[0], GATE[1] + rest), follow),
+            (gate, (6, 2.5)),
+            ((follow[0], gate[1] + rest), follow),
             *around,
             ((5, 2.5), (5, 6)),
             ((9, 2), (9, 6)),
-            ((8, 2), (10.5, 2)),
+            ((8, 2), board.line_start(OUT)),
             ((5.4, 1.5), (6, 1.5)),
             *divider_wires,
             *(() if raised else (((5.4, 1.5), (5.4, 1)),)),
@@ -77,16 +78,17 @@ def topology(request: BootstrapRequest) -> Topology:
         marks=(
             ((7, 3), "positive"),
             ((7, 1), negative),
-            ((follow[0], GATE[1] - rest), drain),
+            ((follow[0], gate[1] - rest), drain),
             ((follow[0], follow[1] + 2 * rest), toward),
             (supply, bias_node(request)),
+            *board.servo_marks(request, (9, 4.5), SUM),
             ((5.4, 1.5) if raised else (5.4, 1), level),
             *rail_marks,
             *divider_marks,
         ),
         slots={"bias_filter": (bias_node(request), "feed"), **board.SLOTS},
         taps=board.TAPS,
-        openings=openings | board.openings((10.5, 2)),
+        openings=openings | board.openings(OUT),
     )
 
 

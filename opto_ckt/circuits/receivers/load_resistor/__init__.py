@@ -1,0 +1,52 @@
+r"""Photodiode into a load resistor, with a buffer behind it.
+
+    far --D1--+-- sum --|+ \
+              |         | U1 >--+--- amp --- blocks --- out
+            [ R1 ]   +--|- /    |
+              |      +--[ R4 ]--+       with gain, or as an equaliser
+            level  [ R5 ]
+                   [ C5 ]               of an equaliser only
+                     0
+
+Low impedance: R1 small enough for the band. High impedance: R1 as large as the light allows, far quieter; the current
+integrates on the capacitance, and R4, R5 and C5 lift what that has lost.
+"""
+
+from __future__ import annotations
+
+from opto_ckt.circuit import Circuit
+from opto_ckt.circuits.receivers import avalanche
+from opto_ckt.circuits.receivers.detector import noise_band, noise_frequency
+from opto_ckt.circuits.receivers.load_resistor import faults, loads, operation, sizing, starter, structure
+from opto_ckt.request import OpAmpReceiverRequest
+
+CIRCUIT = Circuit(
+    name="load-resistor",
+    title="photodiode into a load resistor, buffer or equaliser",
+    request=OpAmpReceiverRequest,
+    topology=structure.topology,
+    offers=operation.OFFERS,
+    given=operation.given,
+    propose=sizing.propose,
+    bias=operation.bias,
+    figures=operation.figures,
+    implied=operation.implied,
+    stresses=loads.stresses,
+    heat=loads.heat,
+    faults=faults.faults,
+    outcome=faults.outcome,
+    levers=("D1.capacitance", "U1.gain_bandwidth", "U1.voltage_noise", "R1"),
+    remarks=loads.remarks,
+    noise_frequency=noise_frequency,
+    noise_band=noise_band,
+    not_checked=(
+        "layout and supply impedance",
+        "electromagnetic compatibility",
+        "recovery after overload beyond the figure above",
+    ),
+    formulas=sizing.FORMULAS,
+    starter=starter.STARTER,
+    refused=operation.refused,
+    input_capacitance=sizing.input_capacitance,
+    settled=avalanche.settled,
+)
