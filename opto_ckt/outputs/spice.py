@@ -17,6 +17,7 @@ from opto_ckt.units import write
 
 POINTS_AC = 50  #: a decade
 POINTS_NOISE = 50  #: 50 points a decade integrate noise to 0.02 % by trapezoids
+LONGEST_TAIL = 2000.0  #: rise times after which a step is cut: simulators give up on more points
 STEP = 0.01  #: height of the step of light, as a share of it
 FAINT = 1e-6  #: light that stands for the resting one in a scene without any [W]
 SMALL_STEP = 2e-4  #: of the set voltage: small enough for what is not linear
@@ -101,7 +102,7 @@ def step_times(scene: Scene) -> tuple[float, float, float]:
     rise = rise if np.isfinite(rise) and rise > 0 else 1e-6
     passes_dc = not np.isfinite(scene.expected.get("low_cutoff", np.nan))
     tail = float(np.nan_to_num(scene.expected.get("settling_time", 0.0))) if passes_dc else 0.0
-    return rise, rise + max(30 * rise, tail), rise / 60
+    return rise, rise + min(max(30 * rise, tail), LONGEST_TAIL * rise), rise / 60
 
 
 def _circuit(topology: Topology, values: Mapping[str, float], pulse: str) -> str:
