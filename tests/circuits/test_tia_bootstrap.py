@@ -15,8 +15,9 @@ from opto_ckt.analyses.network.expansion import expand
 from opto_ckt.analyses.response import transfer_at
 from opto_ckt.analyses.symbolic import lcapy_transfer
 from opto_ckt.circuits import CIRCUITS, load
+from opto_ckt.circuits.receivers.feedback.comparison import capacitor_without
 from opto_ckt.circuits.receivers.tia_bootstrap import follower
-from opto_ckt.circuits.receivers.tia_bootstrap.remarks import bought, capacitor_without
+from opto_ckt.circuits.receivers.tia_bootstrap.remarks import bought
 from opto_ckt.constants import BOLTZMANN
 from opto_ckt.design.model import Model
 from opto_ckt.design.reading import ReadDesign, read_text

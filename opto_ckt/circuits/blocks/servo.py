@@ -153,12 +153,8 @@ def _headroom(values: Values, request: ReceiverRequest) -> float | Lanes:
 def bias(values: Values, request: ReceiverRequest) -> dict[str, float | Lanes]:
     """The output held at its level, and the integrator's output that does it, as far as it reaches."""
     found = warmed(values, data(request), "U30")
-    level, sign = values["input_level"], POLARITY[request.detector.output]
-    shunt = 1 / values["D1.shunt_resistance"]
+    level = values["input_level"]
     offset = (values["R31"] - values["R32"]) * found["U30.bias_current"] - found["U30.offset"]
-    light = (
-        values["D1.responsivity"] * values["signal.power"] + values["D1.ambient_current"] + values["D1.dark_current"]
-    )
     wanted = level + values["U1.offset"]
     gain = 1 + values["feedback_ratio"]
     injected: float | Lanes = level
@@ -167,7 +163,7 @@ def bias(values: Values, request: ReceiverRequest) -> dict[str, float | Lanes]:
     for _ in range(SETTLINGS):
         output = level + offset + injected / values["U30.open_loop_gain"]
         summed = wanted - output / values["U1.open_loop_gain"]
-        drawn = values["U1.bias_current"] - level * shunt + summed * (1 / values["RB"] + shunt) + sign * light
+        drawn = values["summing_current"] + summed * values["summing_conductance"]
         back = (output - summed * gain) / values["feedback_resistance"]
         injected = summed + (drawn - back) * values["R30"]
     return {

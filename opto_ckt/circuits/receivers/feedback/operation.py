@@ -71,7 +71,8 @@ def biased(
         "feedback_ratio": ratio,
         "summing_leak": leak,
     }
-    return {**found, **_levels(found, request)}
+    found |= _drawn(found, request)
+    return {**found, **levels(found)}
 
 
 def level_voltage(values: Values) -> float | Lanes:
@@ -81,16 +82,22 @@ def level_voltage(values: Values) -> float | Lanes:
     return divided_voltage(voltage=values["supply.positive"], upper=values["R2"], lower=values["R3"])
 
 
-def _levels(values: Values, request: OpAmpReceiverRequest) -> dict[str, float | Lanes]:
-    """Node voltages at the average light: the currents into the summing node balance, at finite open-loop gain."""
-    sign, feedback = POLARITY[request.detector.output], values["feedback_resistance"]
+def _drawn(values: Values, request: OpAmpReceiverRequest) -> dict[str, float | Lanes]:
+    """What the summing node is drawn from at the average light: a current at 0 V [A], a conductance [S]."""
+    sign, shunt = POLARITY[request.detector.output], 1 / values["D1.shunt_resistance"]
     light = values["D1.responsivity"] * values["signal.power"] + values["D1.ambient_current"]
-    shunt, level = 1 / values["D1.shunt_resistance"], values["input_level"]
-    wanted = level + values["U1.offset"]
-    current = values["U1.bias_current"] - level * shunt + sign * (light + values["D1.dark_current"])
-    current = current + values["summing_leak"]
-    gain = 1 + values["feedback_ratio"] + feedback * (1 / values["RB"] + shunt)
-    output = (wanted * gain + feedback * current) / (1 + gain / values["U1.open_loop_gain"])
+    current = values["U1.bias_current"] - values["input_level"] * shunt + sign * (light + values["D1.dark_current"])
+    return {
+        "summing_current": current + values["summing_leak"],
+        "summing_conductance": 1 / values["RB"] + shunt,
+    }
+
+
+def levels(values: Values) -> dict[str, float | Lanes]:
+    """Node voltages at rest: the currents into the summing node balance, at finite open-loop gain."""
+    wanted, feedback = values["input_level"] + values["U1.offset"], values["feedback_resistance"]
+    gain = 1 + values["feedback_ratio"] + feedback * values["summing_conductance"]
+    output = (wanted * gain + feedback * values["summing_current"]) / (1 + gain / values["U1.open_loop_gain"])
     return {"node.amp": output, "node.sum": wanted - output / values["U1.open_loop_gain"]}
 
 

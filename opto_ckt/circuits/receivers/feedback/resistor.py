@@ -109,7 +109,7 @@ def _swing_resistance(stage: Stage, overshoot: float) -> float:
                 f"conditions.supply wider by {write(-rail, 'V')}",
             ],
         )
-    swings = {"rail": (rail, spread * (light + steady) + dark)}
+    swings = {"rail": (rail, spread * (light + steady) + dark + stage.standing)}
     required = request.require.get("output_swing")
     if required is not None and required.max:
         swings["required"] = (required.max, spread * (light + steady))

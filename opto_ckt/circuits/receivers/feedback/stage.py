@@ -38,6 +38,7 @@ class Stage:
     capacitance: Mapping[str, float]  #: of the summing node without the feedback, itemised, nominal [F]
     others: Mapping[str, float] = field(default_factory=dict)  #: exact values of the parts that are sized already
     other_noise: float = 0.0  #: of parts beside detector and amplifier, as a current of the detector [A/√Hz]
+    standing: float = 0.0  #: most steady current through the feedback that is not light [A]
     decides: tuple[str, ...] = ()  #: limits that make the corners of C1, besides those of op amp and detector
     resistors: Callable[[float | Lanes], Values] = _resistor  #: what is fitted for a feedback resistance
     capacitors: Callable[[float | Lanes], Values] = _capacitor  #: what is fitted for a feedback capacitance

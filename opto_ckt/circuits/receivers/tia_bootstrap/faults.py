@@ -8,8 +8,8 @@ from opto_ckt.analyses import response
 from opto_ckt.circuit import Fault, FaultOutcome
 from opto_ckt.circuits.receivers.detector import POLARITY
 from opto_ckt.circuits.receivers.feedback import faults as feedback
+from opto_ckt.circuits.receivers.feedback.comparison import evaluated
 from opto_ckt.circuits.receivers.tia_bootstrap import follower, structure
-from opto_ckt.circuits.receivers.tia_bootstrap.remarks import evaluated
 from opto_ckt.limits import Lanes, Values
 from opto_ckt.request import BootstrapRequest
 from opto_ckt.topology import OPEN, SHORT

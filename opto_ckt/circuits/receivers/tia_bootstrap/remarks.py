@@ -4,21 +4,16 @@ from __future__ import annotations
 
 import numpy as np
 
-from opto_ckt.analyses import noise, response
-from opto_ckt.analyses.network import Evaluation, Network
-from opto_ckt.analyses.network.expansion import expand
-from opto_ckt.circuits.receivers.detector import noise_frequency, wanted_bandwidth
+from opto_ckt.circuits.receivers.detector import wanted_bandwidth
 from opto_ckt.circuits.receivers.feedback import remarks as feedback
-from opto_ckt.circuits.receivers.feedback.stage import QUALITY
-from opto_ckt.circuits.receivers.tia import structure as plain
+from opto_ckt.circuits.receivers.feedback.comparison import compared, first_lane, said
 from opto_ckt.circuits.receivers.tia_bootstrap import follower, structure
 from opto_ckt.circuits.receivers.tia_bootstrap.bias import FASTER
-from opto_ckt.formulas import junction_fet, transimpedance
+from opto_ckt.formulas import junction_fet
 from opto_ckt.formulas.noise import thermal_voltage_noise
 from opto_ckt.limits import Limits, Values
 from opto_ckt.preferred import DIELECTRICS
 from opto_ckt.request import BootstrapRequest
-from opto_ckt.topology import Topology
 from opto_ckt.units import write
 
 
@@ -31,48 +26,13 @@ def remarks(values: Values, limits: Limits, request: BootstrapRequest) -> tuple[
 
 
 def bought(values: Values, request: BootstrapRequest) -> str:
-    """Capacitance, bandwidth and noise at nominal with the bootstrap, and of the same R1 with C1 anew without it."""
+    """Capacitance, bandwidth and noise at nominal with the bootstrap, and of the same R1 without it."""
     nominal = first_lane(values)
-    with_it = evaluated(structure.topology(request), nominal)
-    without = evaluated(plain.topology(request), {**nominal, "C1": capacitor_without(nominal), "C3": 0.0})
-    kept, whole = (
+    left, whole = (
         write(float(value), "F") for value in (follower.left_capacitance(nominal), nominal["D1.capacitance"])
     )
-    widths = [write(float(response.bandwidth(each)[0]), "Hz") for each in (with_it, without)]
-    frequency = noise_frequency(request)
-    noises = [
-        write(float(noise.signal_density(each, frequency)[0]) ** 0.5 * nominal["D1.responsivity"], "A/√Hz")
-        for each in (with_it, without)
-    ]
-    return (
-        f"the bootstrap leaves {kept} of D1's {whole} at the summing node; bandwidth {widths[0]} against"
-        f" {widths[1]} and noise {noises[0]} against {noises[1]} at {write(frequency, 'Hz')} without it, R1 the same,"
-        " C1 for the flattest response"
-    )
-
-
-def first_lane(values: Values) -> dict[str, float]:
-    """The nominal corner, which comes first."""
-    return {name: float(np.ravel(value)[0]) for name, value in values.items()}
-
-
-def evaluated(topology: Topology, values: Values) -> Evaluation:
-    """Network functions of a circuit without blocks."""
-    return Network(expand(topology.with_blocks({}))).evaluate(values)
-
-
-def capacitor_without(nominal: Values) -> float:
-    """C1 that the same R1 would have with the detector's capacitance in full. [F]"""
-    total = transimpedance.feedback_capacitance(
-        feedback_resistance=nominal["feedback_resistance"],
-        input_capacitance=nominal["D1.capacitance"]
-        + nominal["U1.common_capacitance"]
-        + nominal["U1.differential_capacitance"]
-        + nominal["CB"],
-        gain_bandwidth=nominal["U1.gain_bandwidth"],
-        quality=QUALITY["flat"],
-    )
-    return max(float(total) - float(nominal["CS"]), 0.0)
+    both = compared(structure.topology(request), values, request)
+    return f"the bootstrap leaves {left} of D1's {whole} at the summing node; {said(both, request)}"
 
 
 def _reach(values: Values, request: BootstrapRequest) -> list[str]:
