@@ -12,6 +12,7 @@ CIRCUITS: dict[str, str] = {
     "load-resistor": "opto_ckt.circuits.receivers.load_resistor",
     "tia": "opto_ckt.circuits.receivers.tia",
     "tia-bootstrap": "opto_ckt.circuits.receivers.tia_bootstrap",
+    "tia-cascode": "opto_ckt.circuits.receivers.tia_cascode",
     "tia-tee": "opto_ckt.circuits.receivers.tia_tee",
     "laser-current": "opto_ckt.circuits.drivers.laser_current",
 }

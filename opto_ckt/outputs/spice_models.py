@@ -17,6 +17,7 @@ from opto_ckt.outputs.spice_jfet import jfet_subcircuit
 from opto_ckt.outputs.spice_noise import LEAST, noise_pair, noise_pair_gain, shot_noise
 from opto_ckt.outputs.spice_text import card, comment, name, number
 from opto_ckt.topology import (
+    BipolarTransistor,
     Capacitor,
     Diode,
     Element,
@@ -178,6 +179,22 @@ def _(element: Transistor, values: Values, driven: bool) -> Cards:
 
 
 @cards.register
+def _(element: BipolarTransistor, values: Values, driven: bool) -> Cards:
+    """Exponential law through the operating point, the resistance of the base before it."""
+    ref, v = name(element.ref), _figures(element, values)
+    body = (
+        comment("pins: collector base emitter; put the maker's model here")
+        + card(".subckt", ref, "d g s")
+        + card("rb", "g b", number(v["base_resistance"]))
+        + _bipolar(element, v, values, "b")
+        + card("cgs", "b s", number(v["control_source_capacitance"]))
+        + card("cgd", "b d", number(v["control_drain_capacitance"]))
+        + card(".ends", ref)
+    )
+    return Cards(card(f"x{ref}", name(element.drain), name(element.control), name(element.source), ref), body)
+
+
+@cards.register
 def _(element: Jfet, values: Values, driven: bool) -> Cards:
     ref = name(element.ref)
     call = card(f"x{ref}", name(element.drain), name(element.control), name(element.source), ref)
@@ -193,13 +210,13 @@ def _mosfet(element: Transistor, v: Values, values: Values) -> str:
     )
 
 
-def _bipolar(element: Transistor, v: Values, values: Values) -> str:
+def _bipolar(element: Transistor, v: Values, values: Values, base: str = "g") -> str:
     kind = "npn" if element.polarity > 0 else "pnp"
     thermal = BOLTZMANN * values["temperature"] / ELEMENTARY_CHARGE
     drop = log(v["drain_current"]) - values[f"{element.ref}.control_voltage"] / thermal
     gain = v["drain_current"] / v["control_current"]
     saturation = number(2.718281828459045**drop)
-    return card("q1", "d g s", "mq") + card(".model", "mq", f"{kind}(is={saturation} bf={number(gain)})")
+    return card("q1", "d", base, "s", "mq") + card(".model", "mq", f"{kind}(is={saturation} bf={number(gain)})")
 
 
 @cards.register

@@ -19,6 +19,7 @@ from opto_ckt.topology.element import (
     renamed,
 )
 from opto_ckt.topology.elements import (
+    BipolarTransistor,
     Capacitor,
     Diode,
     Inductor,
@@ -47,6 +48,7 @@ __all__ = [
     "RIGHT",
     "SHORT",
     "UP",
+    "BipolarTransistor",
     "Capacitor",
     "Diode",
     "Element",

@@ -130,6 +130,15 @@ class Transistor(Element):
 
 
 @dataclass(frozen=True)
+class BipolarTransistor(Transistor):
+    """A bipolar transistor with the resistance of its base, which makes noise."""
+
+    bipolar: bool = True
+    figures: ClassVar[tuple[str, ...]] = (*Transistor.figures, "base_resistance")
+    absent: ClassVar[Mapping[str, float]] = {"base_resistance": SHORT}
+
+
+@dataclass(frozen=True)
 class Jfet(Transistor):
     """A junction field-effect transistor; its gate leaks."""
 

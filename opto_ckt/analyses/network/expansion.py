@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
+from dataclasses import replace
 from functools import singledispatch
 from math import pi
 from typing import Any
@@ -11,6 +12,7 @@ from opto_ckt.analyses.network.primitives import Expansion, Kind, NoiseGenerator
 from opto_ckt.constants import BOLTZMANN, ELEMENTARY_CHARGE
 from opto_ckt.topology import (
     GROUND,
+    BipolarTransistor,
     Capacitor,
     Diode,
     Element,
@@ -220,6 +222,18 @@ def _(element: Transistor) -> Parts:
             ),
             _shot(f"{ref} control", (control, source), _named(f"{ref}.control_current")),
         ),
+    )
+
+
+@_expand.register
+def _(element: BipolarTransistor) -> Parts:
+    """As any transistor, behind the resistance of the base."""
+    inner, figure = f"{element.ref}.base", "base_resistance"
+    ends = (element.control, inner)
+    primitives, generators = _expand.dispatch(Transistor)(replace(element, control=inner))
+    return (
+        (_own("R", element, figure, ends), *primitives),
+        (_thermal(f"{element.ref} base", ends, _named(element.value_name(figure))), *generators),
     )
 
 

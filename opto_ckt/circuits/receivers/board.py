@@ -130,13 +130,15 @@ def stray(value: float) -> Limit:
     return Limit(value, (1 - STRAY_SPREAD) * value, (1 + STRAY_SPREAD) * value, assumed=True)
 
 
-def level_values(request: ReceiverRequest, derivation: Derivation, bench: Bench) -> dict[str, float]:
+def level_values(
+    request: ReceiverRequest, derivation: Derivation, bench: Bench, current: float = LEVEL_CURRENT
+) -> dict[str, float]:
     """Divider and filter that make the level of a single supply; nothing where the + input sits at ground."""
     volts, supply = request.conditions.input_level, bench.nominal("supply.positive")
     if volts <= 0:
         return {}
-    lower = request.fixed.get("R3", volts / LEVEL_CURRENT)
-    derivation.note("R3", f"{write(volts, 'V')} at {write(LEVEL_CURRENT, 'A')}, common practice")
+    lower = request.fixed.get("R3", volts / current)
+    derivation.note("R3", f"{write(volts, 'V')} at {write(current, 'A')}, common practice")
     upper = derivation.compute(
         "R2", reference.upper_resistance, reason=f"{write(volts, 'V')} from {write(supply, 'V')}",
         voltage=supply, tap_voltage=volts, lower=lower,

@@ -6,6 +6,7 @@ nothing, or what a network in its place has.
 
 from __future__ import annotations
 
+from collections.abc import Mapping
 from functools import cached_property
 
 import numpy as np
@@ -104,8 +105,14 @@ def levels(values: Values) -> dict[str, float | Lanes]:
 class FeedbackFigures(ReceiverFigures):
     """The receiver's figures, and its levels at DC."""
 
-    def __init__(self, values: Values, evaluation: Evaluation, request: OpAmpReceiverRequest) -> None:
-        self._dark = dark(values, request)
+    def __init__(
+        self,
+        values: Values,
+        evaluation: Evaluation,
+        request: OpAmpReceiverRequest,
+        at_dark: Mapping[str, Lanes] | None = None,
+    ) -> None:
+        self._dark = dark(values, request) if at_dark is None else at_dark
         super().__init__(
             values,
             evaluation,
