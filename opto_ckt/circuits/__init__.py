@@ -12,6 +12,7 @@ CIRCUITS: dict[str, str] = {
     "load-resistor": "opto_ckt.circuits.receivers.load_resistor",
     "tia": "opto_ckt.circuits.receivers.tia",
     "tia-tee": "opto_ckt.circuits.receivers.tia_tee",
+    "tia-fixed": "opto_ckt.circuits.receivers.tia_fixed",
     "laser-current": "opto_ckt.circuits.drivers.laser_current",
 }
 """Name -> module whose ``CIRCUIT`` it is."""

@@ -19,6 +19,7 @@ from opto_ckt.topology import (
     Capacitor,
     Diode,
     Element,
+    FixedTia,
     Inductor,
     LaserDiode,
     OpAmp,
@@ -119,6 +120,43 @@ def _(element: Photodiode, values: Values, driven: bool) -> Cards:
     )
     source = card("vpw", "pw 0 dc", number(values["signal.power"]), "ac 1 @pulse@") if driven else ""
     return Cards(source + card(f"x{ref}", name(element.anode), name(element.cathode), "pw", ref), body)
+
+
+@cards.register
+def _(element: FixedTia, values: Values, driven: bool) -> Cards:
+    """Linear: a sensed current, two poles of a flat response, gain; no limit of input or output."""
+    ref, v = name(element.ref), _figures(element, values)
+    pole = 1 / (2 * pi * v["bandwidth"])
+    last = "l" if element.passes_dc else "h"
+    high_pass = (
+        card("ecp", "cp 0 l 0", "1")
+        + card("chp", "cp h", number(1 / (2 * pi * v["low_cutoff"])))
+        + card("ghp", "h 0 h 0", "1")
+    )
+    body = (
+        comment("pins: in out v+ v-; put the maker's model here")
+        + comment("linear: no overload, no rails; check the light against the page")
+        + card(".subckt", ref, "i o vp vn")
+        + card("vlv", "lv 0 dc", number(values.get("input_level", 0.0)))
+        + card("gin", "i lv i lv", number(1 / v["input_resistance"]))
+        + noise_pair("i", v["input_noise_density"], 1e-9, values["temperature"])
+        + card("gno", "0 i ia ib", number(noise_pair_gain(v["input_noise_density"], values["temperature"])))
+        + card("gse", "0 s i lv", number(1 / v["input_resistance"]))
+        + card("gsr", "s 0 s 0", "1")
+        + card("edr", "d 0 s 0", "1")
+        + card("gdm", "d t d t", number(0.5**0.5))
+        + card("ltn", "t l", number(pole))
+        + card("chd", "l 0", number(pole))
+        + ("" if element.passes_dc else high_pass)
+        + card("eou", "po 0 0", last, number(v["transimpedance"]))
+        + card("gro", "po o po o", number(1 / v["output_resistance"]))
+        + card("iq", "vp vn dc", number(values.get(f"{element.ref}.quiescent_current", 0.0)))
+        + card("rvp", "vp 0", "1e9")
+        + card("rvn", "vn 0", "1e9")
+        + card(".ends", ref)
+    )
+    pins = (name(node) for node in element.nodes.values())
+    return Cards(card(f"x{ref}", *pins, ref), body)
 
 
 @cards.register

@@ -9,11 +9,12 @@ from opto_ckt.request.request import Request
 
 if TYPE_CHECKING:
     from opto_ckt.request.driver import LaserDriverRequest
-    from opto_ckt.request.receiver import OpAmpReceiverRequest, ReceiverRequest
+    from opto_ckt.request.receiver import FixedTiaRequest, OpAmpReceiverRequest, ReceiverRequest
 
-__all__ = ["LaserDriverRequest", "OpAmpReceiverRequest", "ReceiverRequest", "Request"]
+__all__ = ["FixedTiaRequest", "LaserDriverRequest", "OpAmpReceiverRequest", "ReceiverRequest", "Request"]
 
 LOADED_ON_USE = {
+    "FixedTiaRequest": "receiver",
     "OpAmpReceiverRequest": "receiver",
     "ReceiverRequest": "receiver",
     "LaserDriverRequest": "driver",

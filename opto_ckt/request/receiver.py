@@ -207,3 +207,9 @@ class OpAmpReceiverRequest(ReceiverRequest):
     """A design file of a receiver around an op amp."""
 
     amplifier: OpAmpData
+
+
+class FixedTiaRequest(ReceiverRequest):
+    """A design file of a receiver around a transimpedance amplifier that is bought whole."""
+
+    fixed_tia: FixedTiaData

@@ -21,6 +21,7 @@ from opto_ckt.topology.element import (
 from opto_ckt.topology.elements import (
     Capacitor,
     Diode,
+    FixedTia,
     Inductor,
     Junction,
     LaserDiode,
@@ -49,6 +50,7 @@ __all__ = [
     "Capacitor",
     "Diode",
     "Element",
+    "FixedTia",
     "Inductor",
     "Junction",
     "LaserDiode",
