@@ -11,6 +11,7 @@ if TYPE_CHECKING:
 CIRCUITS: dict[str, str] = {
     "load-resistor": "opto_ckt.circuits.receivers.load_resistor",
     "tia": "opto_ckt.circuits.receivers.tia",
+    "tia-bootstrap": "opto_ckt.circuits.receivers.tia_bootstrap",
     "tia-tee": "opto_ckt.circuits.receivers.tia_tee",
     "tia-fixed": "opto_ckt.circuits.receivers.tia_fixed",
     "laser-current": "opto_ckt.circuits.drivers.laser_current",

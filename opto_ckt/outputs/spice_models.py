@@ -13,6 +13,7 @@ from typing import NamedTuple
 
 from opto_ckt.constants import BOLTZMANN, ELEMENTARY_CHARGE
 from opto_ckt.formulas.noise_generator import resistance_for_voltage_noise
+from opto_ckt.outputs.spice_jfet import jfet_subcircuit
 from opto_ckt.outputs.spice_noise import LEAST, noise_pair, noise_pair_gain, shot_noise
 from opto_ckt.outputs.spice_text import card, comment, name, number
 from opto_ckt.topology import (
@@ -21,6 +22,7 @@ from opto_ckt.topology import (
     Element,
     FixedTia,
     Inductor,
+    Jfet,
     LaserDiode,
     OpAmp,
     Photodiode,
@@ -211,6 +213,13 @@ def _(element: Transistor, values: Values, driven: bool) -> Cards:
         + card(".ends", ref)
     )
     return Cards(card(f"x{ref}", name(element.drain), name(element.control), name(element.source), ref), body)
+
+
+@cards.register
+def _(element: Jfet, values: Values, driven: bool) -> Cards:
+    ref = name(element.ref)
+    call = card(f"x{ref}", name(element.drain), name(element.control), name(element.source), ref)
+    return Cards(call, jfet_subcircuit(element, values))
 
 
 def _mosfet(element: Transistor, v: Values, values: Values) -> str:

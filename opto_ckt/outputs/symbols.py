@@ -13,6 +13,7 @@ from opto_ckt.topology import (
     Element,
     FixedTia,
     Inductor,
+    Jfet,
     LaserDiode,
     OpAmp,
     Photodiode,
@@ -235,6 +236,19 @@ def _bipolar(polarity: int) -> tuple[Shape, ...]:
 @outline.register
 def _(element: Transistor) -> tuple[Shape, ...]:
     return _bipolar(element.polarity) if element.bipolar else _field_effect(element.polarity)
+
+
+@outline.register
+def _(element: Jfet) -> tuple[Shape, ...]:
+    """Channel in one stroke; the gate's arrow points to an n channel."""
+    tips = ((0, 0), (0.54, 0)) if element.polarity > 0 else ((0.54, 0), (0.22, 0))
+    return (
+        line((0, 0), (0.54, 0)),
+        line((0.54, -0.4), (0.54, 0.4)),
+        line((0.54, 0.26), (1, 0.26), (1, 1)),
+        line((0.54, -0.26), (1, -0.26), (1, -1)),
+        *arrow(*tips, size=0.18),
+    )
 
 
 @outline.register

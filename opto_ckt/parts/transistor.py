@@ -83,3 +83,7 @@ class JfetData(TransistorData):
     gate_source_capacitance: Annotated[Spread, Unit("F", "10 pF"), Assumed(0.2, 0.2), Sheet("Cgs = Ciss - Crss")]
     gate_drain_capacitance: Annotated[Spread, Unit("F", "3 pF"), Assumed(0.2, 0.2), Sheet("Cgd = Crss")]
     voltage_noise: Annotated[Spread, Unit("V/√Hz", "1 nV/√Hz"), Assumed(0.0, 0.25), Sheet("equivalent input noise, en")]
+    gate_current: Annotated[
+        Spread | None, Unit("A", "10 pA", "not negative"), Assumed(0.0, 4.0), Sheet("gate reverse current, IGSS")
+    ] = None
+    gate_current_doubling: Annotated[float, Unit("K", "10 K"), Sheet("temperature for twice the gate current")] = 10.0

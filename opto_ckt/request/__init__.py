@@ -9,11 +9,27 @@ from opto_ckt.request.request import Request
 
 if TYPE_CHECKING:
     from opto_ckt.request.driver import LaserDriverRequest
-    from opto_ckt.request.receiver import FixedTiaRequest, OpAmpReceiverRequest, ReceiverRequest
+    from opto_ckt.request.receiver import (
+        BootstrapRequest,
+        CascodeRequest,
+        FixedTiaRequest,
+        OpAmpReceiverRequest,
+        ReceiverRequest,
+    )
 
-__all__ = ["FixedTiaRequest", "LaserDriverRequest", "OpAmpReceiverRequest", "ReceiverRequest", "Request"]
+__all__ = [
+    "BootstrapRequest",
+    "CascodeRequest",
+    "FixedTiaRequest",
+    "LaserDriverRequest",
+    "OpAmpReceiverRequest",
+    "ReceiverRequest",
+    "Request",
+]
 
 LOADED_ON_USE = {
+    "BootstrapRequest": "receiver",
+    "CascodeRequest": "receiver",
     "FixedTiaRequest": "receiver",
     "OpAmpReceiverRequest": "receiver",
     "ReceiverRequest": "receiver",

@@ -213,3 +213,15 @@ class FixedTiaRequest(ReceiverRequest):
     """A design file of a receiver around a transimpedance amplifier that is bought whole."""
 
     fixed_tia: FixedTiaData
+
+
+class BootstrapRequest(OpAmpReceiverRequest):
+    """A design file of a receiver whose detector is driven back by a follower."""
+
+    follower: JfetData
+
+
+class CascodeRequest(OpAmpReceiverRequest):
+    """A design file of a receiver whose photocurrent passes a transistor."""
+
+    transistor: BipolarData

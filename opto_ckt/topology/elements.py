@@ -153,6 +153,11 @@ class Transistor(Element):
 
 
 @dataclass(frozen=True)
+class Jfet(Transistor):
+    """A junction field-effect transistor; its gate leaks."""
+
+
+@dataclass(frozen=True)
 class Switch(Element):
     """A small MOSFET that is fully off or fully on; off, only its capacitance is left."""
 

@@ -22,7 +22,7 @@ from tests.circuits.sized import sized
 DESIGNS = Path(__file__).parents[2] / "designs"
 SOURCES = [*CIRCUITS, *sorted(path.name for path in DESIGNS.glob("*.toml") if path.name != "parts.toml")]
 KINDS = ("ac", "noise", "step", "loop")
-NODES = {"r": 2, "c": 2, "l": 2, "v": 2, "i": 2, "d": 2, "e": 4, "g": 4, "f": 2, "h": 2, "q": 3, "m": 4}
+NODES = {"r": 2, "c": 2, "l": 2, "v": 2, "i": 2, "d": 2, "e": 4, "g": 4, "f": 2, "h": 2, "q": 3, "j": 3, "m": 4}
 CONDUCTS = {"r", "l", "v", "d", "e", "h"}  #: give a path for direct current between their first two nodes
 DOTS = {".subckt", ".ends", ".model", ".options", ".op", ".ac", ".noise", ".tran", ".end"}
 NUMBER = re.compile(r"[-+]?\d+(\.\d+)?(e[-+]?\d+)?")
@@ -133,7 +133,7 @@ def test_every_node_has_two_connections_and_a_path_for_direct_current(source: st
             own = words[0][0] == "g" and nodes[:2] == nodes[2:]
             if words[0][0] in CONDUCTS or own:
                 _join(joined, nodes[:2])
-            elif words[0][0] == "q":
+            elif words[0][0] in "qj":
                 _join(joined, nodes[:3])
             elif words[0][0] == "m":
                 _join(joined, [nodes[0], nodes[2]])

@@ -65,7 +65,11 @@ def feed_drawn(request: ReceiverRequest, far: Point) -> tuple[Point, dict[str, t
 
 
 def fed(
-    values: Values, request: ReceiverRequest, level: float | Lanes, load: float | Lanes = 0.0
+    values: Values,
+    request: ReceiverRequest,
+    level: float | Lanes,
+    load: float | Lanes = 0.0,
+    series: float | Lanes = 0.0,
 ) -> dict[str, float | Lanes]:
     """The detector in its feed: reverse bias left at the average light, and all that follows from it.
 
@@ -74,6 +78,7 @@ def fed(
     values : before bias.
     level : voltage of the end that feeds the amplifier, or beyond a load there. [V]
     load : between that level and the detector. [Ω]
+    series : of the circuit's own between supply and far end, besides a filter's. [Ω]
     """
     sign = POLARITY[request.detector.output]
     node = bias_node(request)
@@ -81,7 +86,7 @@ def fed(
     supply = here[node] if node in here else values[f"supply.{node}"]
     resistance = values.get("R10", 0.0)
     held = 1 / (1 + resistance / values["R11"]) if "R11" in values else 1.0  #: share of the supply that a bleed leaves
-    resting, resistance = sign * (level - supply * held), resistance * held
+    resting, resistance = sign * (level - supply * held), resistance * held + series
 
     def left(reverse_bias: float | Lanes) -> dict[str, float | Lanes]:
         return detected({**values, "detector.reverse_bias": reverse_bias}, request)

@@ -121,7 +121,8 @@ class _Corners:
         bench = self._bench = stage.bench
         self._fixed = {**stage.resistors(resistance), **stage.others}
         self._stray = bench.nominal("CS")
-        self._settings = list(product(*((bench.low(name), bench.high(name)) for name in DECIDES)))
+        self._decides = (*DECIDES, *stage.decides)
+        self._settings = list(product(*((bench.low(name), bench.high(name)) for name in self._decides)))
 
     def worst(self, totals: Lanes, names: Sequence[str]) -> dict[str, tuple[Lanes, Lanes]]:
         """Least and greatest of each figure over the corners, for each total C_f."""
@@ -130,7 +131,7 @@ class _Corners:
         ends = np.maximum([fitted - tolerance, fitted + tolerance], 0.0)
         strays = np.repeat([self._bench.low("CS"), self._bench.high("CS")], len(totals))
         count = len(self._settings)
-        lanes = {name: np.repeat([s[i] for s in self._settings], ends.size) for i, name in enumerate(DECIDES)}
+        lanes = {name: np.repeat([s[i] for s in self._settings], ends.size) for i, name in enumerate(self._decides)}
         parts = self._stage.capacitors(np.tile(ends.ravel(), count))
         found = self._bench.evaluate({**self._fixed, **lanes, **parts, "CS": np.tile(strays, count)})
         shape = (2 * len(self._settings), len(totals))

@@ -45,26 +45,40 @@ def bias(values: Values, request: OpAmpReceiverRequest) -> dict[str, float | Lan
 
 
 def biased(
-    values: Values, request: OpAmpReceiverRequest, feedback: float | Lanes, ratio: float | Lanes = 0.0
+    values: Values,
+    request: OpAmpReceiverRequest,
+    feedback: float | Lanes,
+    ratio: float | Lanes = 0.0,
+    *,
+    series: float | Lanes = 0.0,
+    leak: float | Lanes = 0.0,
 ) -> dict[str, float | Lanes]:
-    """As `bias`, with any feedback.
+    """As `bias`, with any feedback, and with what a circuit has of its own.
 
     Parameters
     ----------
     feedback : output voltage for a current into the summing node. [Ω]
     ratio : gain from the summing node's voltage to the output at no current, less 1. [V/V]
+    series : between the detector and its supply, besides a filter's. [Ω]
+    leak : current that parts beside detector and amplifier draw from the summing node. [A]
     """
-    level: float | Lanes = 0.0
-    if "R2" in values:
-        level = divided_voltage(voltage=values["supply.positive"], upper=values["R2"], lower=values["R3"])
+    level = level_voltage(values)
     found: dict[str, float | Lanes] = {
         **values,
-        **fed(values, request, level),
+        **fed(values, request, level, series=series),
         **warmed(values, request.amplifier),
         "feedback_resistance": feedback,
         "feedback_ratio": ratio,
+        "summing_leak": leak,
     }
     return {**found, **_levels(found, request)}
+
+
+def level_voltage(values: Values) -> float | Lanes:
+    """Of the + input: ground, or what the divider of a single supply makes. [V]"""
+    if "R2" not in values:
+        return 0.0
+    return divided_voltage(voltage=values["supply.positive"], upper=values["R2"], lower=values["R3"])
 
 
 def _levels(values: Values, request: OpAmpReceiverRequest) -> dict[str, float | Lanes]:
@@ -74,6 +88,7 @@ def _levels(values: Values, request: OpAmpReceiverRequest) -> dict[str, float | 
     shunt, level = 1 / values["D1.shunt_resistance"], values["input_level"]
     wanted = level + values["U1.offset"]
     current = values["U1.bias_current"] - level * shunt + sign * (light + values["D1.dark_current"])
+    current = current + values["summing_leak"]
     gain = 1 + values["feedback_ratio"] + feedback * (1 / values["RB"] + shunt)
     output = (wanted * gain + feedback * current) / (1 + gain / values["U1.open_loop_gain"])
     return {"node.amp": output, "node.sum": wanted - output / values["U1.open_loop_gain"]}
@@ -153,7 +168,7 @@ def dark(values: Values, request: OpAmpReceiverRequest) -> dict[str, Lanes]:
             values["feedback_ratio"] * np.abs(offset)
             + output_offset(
                 offset_voltage=np.abs(offset),
-                bias_current=values["U1.bias_current"],
+                bias_current=values["U1.bias_current"] + np.abs(values["summing_leak"]),
                 dark_current=dark_current,
                 feedback_resistance=values["feedback_resistance"],
                 shunt_resistance=shunt,

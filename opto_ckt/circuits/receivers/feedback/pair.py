@@ -22,10 +22,14 @@ class Pair(NamedTuple):
     capacitor: Fitted
 
 
-def feedback_pair(stage: Stage) -> Pair:
+def feedback_pair(stage: Stage, larger: Stage | None = None) -> Pair:
     """Both sized twice: the overshoot that C1 leaves at its worst corner takes its share of the swing.
 
     Where no C1 both damps and keeps the bandwidth at all corners, R1 shrinks until one does, or as far as makes sense.
+
+    Parameters
+    ----------
+    larger : what R1 is sized on, where a part beside the amplifier takes of the bandwidth; else the stage itself.
 
     Raises
     ------
@@ -34,7 +38,7 @@ def feedback_pair(stage: Stage) -> Pair:
     overshoot = float(second_order.overshoot(quality=stage.quality)) if stage.quality > 0.5 else 0.0
     fixed = stage.fixed("R1")
     for _ in range(2):
-        resistance = fixed or feedback_resistance(stage, overshoot)
+        resistance = fixed or feedback_resistance(larger or stage, overshoot)
         damped = feedback_capacitor(stage, resistance)
         overshoot = damped.overshoot
     if damped.windowed or fixed is not None:

@@ -72,6 +72,7 @@ def _quiet_resistance(stage: Stage) -> float | None:
     others = (
         float(noise.shot_noise(current=hot["D1.dark_shot"] + hot["D1.ambient_shot"])) ** 2
         + bench.high("U1.current_noise") ** 2
+        + stage.other_noise**2
         + float(
             noise.capacitance_current_noise(
                 voltage_noise=bench.high("U1.voltage_noise"),

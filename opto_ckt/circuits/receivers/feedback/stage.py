@@ -37,6 +37,8 @@ class Stage:
     bench: Bench
     capacitance: Mapping[str, float]  #: of the summing node without the feedback, itemised, nominal [F]
     others: Mapping[str, float] = field(default_factory=dict)  #: exact values of the parts that are sized already
+    other_noise: float = 0.0  #: of parts beside detector and amplifier, as a current of the detector [A/√Hz]
+    decides: tuple[str, ...] = ()  #: limits that make the corners of C1, besides those of op amp and detector
     resistors: Callable[[float | Lanes], Values] = _resistor  #: what is fitted for a feedback resistance
     capacitors: Callable[[float | Lanes], Values] = _capacitor  #: what is fitted for a feedback capacitance
     spread: float | None = None  #: of that capacitance, where it is not one part of the preferred tolerance
