@@ -13,6 +13,7 @@ CIRCUITS: dict[str, str] = {
     "tia": "opto_ckt.circuits.receivers.tia",
     "tia-bootstrap": "opto_ckt.circuits.receivers.tia_bootstrap",
     "tia-tee": "opto_ckt.circuits.receivers.tia_tee",
+    "tia-balanced": "opto_ckt.circuits.receivers.tia_balanced",
     "tia-fixed": "opto_ckt.circuits.receivers.tia_fixed",
     "laser-current": "opto_ckt.circuits.drivers.laser_current",
 }

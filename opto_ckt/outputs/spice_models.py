@@ -99,7 +99,7 @@ def _(element: Diode, values: Values, driven: bool) -> Cards:
 def _(element: Photodiode, values: Values, driven: bool) -> Cards:
     """Light in watts as volts on node pw; linear capacitance at the bias; standing currents with their shot noise."""
     ref, v = name(element.ref), _figures(element, values)
-    bias = values["detector.reverse_bias"]
+    bias = values.get(f"{element.ref}.reverse_bias", values["detector.reverse_bias"])
     total = v["signal_shot"] + v["ambient_shot"] + v["dark_shot"]
     transit = v["transit_frequency"]
     body = (
@@ -120,8 +120,10 @@ def _(element: Photodiode, values: Values, driven: bool) -> Cards:
         + shot_noise("st", total, values["temperature"], "k j")
         + card(".ends", ref)
     )
-    source = card("vpw", "pw 0 dc", number(values["signal.power"]), "ac 1 @pulse@") if driven else ""
-    return Cards(source + card(f"x{ref}", name(element.anode), name(element.cathode), "pw", ref), body)
+    light = "pw" if driven else f"p{ref}"
+    steady = card(f"v{light}", f"{light} 0 dc", number(values.get(f"{element.ref}.power", 0.0)))
+    source = card("vpw", "pw 0 dc", number(values["signal.power"]), "ac 1 @pulse@") if driven else steady
+    return Cards(source + card(f"x{ref}", name(element.anode), name(element.cathode), light, ref), body)
 
 
 @cards.register

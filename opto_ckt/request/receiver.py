@@ -107,6 +107,7 @@ class Target(Table):
     response: Literal["flat", "bessel", "critical"] | None = None
     noise_frequency: Annotated[float | None, Unit("Hz", "1 MHz")] = None
     noise_band: Band | None = None
+    balance: Literal["currents", "outputs"] = "currents"  #: where two detectors are subtracted
     front_end: Literal["low_impedance", "high_impedance"] = "low_impedance"  #: of a load resistor
     tee: Literal["resistive", "capacitive", "both"] = "resistive"  #: which part of the feedback is a tee
 

@@ -50,6 +50,7 @@ def expand(topology: Topology) -> Expansion:
         gain=gain,
         output=topology.output,
         loop=f"{topology.loop}.stage1" if topology.loop else None,
+        rival=_signal(topology[topology.rival]) if topology.rival else None,
     )
 
 
