@@ -18,6 +18,7 @@ from opto_ckt.outputs.spice_noise import LEAST, noise_pair, noise_pair_gain, sho
 from opto_ckt.outputs.spice_text import card, comment, name, number
 from opto_ckt.topology import (
     Capacitor,
+    Comparator,
     Diode,
     Element,
     FixedTia,
@@ -124,6 +125,29 @@ def _(element: Photodiode, values: Values, driven: bool) -> Cards:
     steady = card(f"v{light}", f"{light} 0 dc", number(values.get(f"{element.ref}.power", 0.0)))
     source = card("vpw", "pw 0 dc", number(values["signal.power"]), "ac 1 @pulse@") if driven else steady
     return Cards(source + card(f"x{ref}", name(element.anode), name(element.cathode), light, ref), body)
+
+
+@cards.register
+def _(element: Comparator, values: Values, driven: bool) -> Cards:
+    """Input capacitances and bias currents; the output at rest: decks of small signals decide nothing."""
+    ref, v = name(element.ref), _figures(element, values)
+    bias = values.get(f"{element.ref}.bias_current", 0.0)
+    body = (
+        comment("pins: in+ in- out v+ v-; put the maker's model here; this one rests and decides nothing")
+        + card(".subckt", ref, "p m o vp vn")
+        + card("cdf", "p m", number(v["differential_capacitance"]))
+        + card("ccp", "p 0", number(v["common_capacitance"]))
+        + card("ccm", "m 0", number(v["common_capacitance"]))
+        + card("ibp", "p 0 dc", number(bias))
+        + card("ibm", "m 0 dc", number(bias))
+        + card("gro", "o 0 o 0", number(1 / v["output_resistance"]))
+        + card("iq", "vp vn dc", number(values.get(f"{element.ref}.quiescent_current", 0.0)))
+        + card("rvp", "vp 0", "1e9")
+        + card("rvn", "vn 0", "1e9")
+        + card(".ends", ref)
+    )
+    pins = (name(node) for node in element.nodes.values())
+    return Cards(card(f"x{ref}", *pins, ref), body)
 
 
 @cards.register

@@ -172,6 +172,7 @@ class ReceiverRequest(Request):
     second_amplifier: OpAmpData | None = None  #: behind the first, or of a block; a second one of the first if left out
     transistor: BipolarData | None = None  #: that the photocurrent flows through, or that amplifies it
     follower: JfetData | None = None  #: that drives the far end of the detector
+    comparator: OpAmpData | None = None  #: that decides the bits, by the figures of an op amp's record
     fixed_tia: FixedTiaData | None = None  #: a transimpedance amplifier that is bought whole
     signal: ReceivedSignal
     target: Target = Field(default_factory=Target.model_construct)

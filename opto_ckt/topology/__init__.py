@@ -20,6 +20,7 @@ from opto_ckt.topology.element import (
 )
 from opto_ckt.topology.elements import (
     Capacitor,
+    Comparator,
     Diode,
     FixedTia,
     Inductor,
@@ -49,6 +50,7 @@ __all__ = [
     "SHORT",
     "UP",
     "Capacitor",
+    "Comparator",
     "Diode",
     "Element",
     "FixedTia",

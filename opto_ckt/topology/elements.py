@@ -108,6 +108,14 @@ class OpAmp(Element):
         return points
 
 
+class Comparator(OpAmp):
+    """A comparator: to small signals its input capacitances, and an output that rests at one of its levels."""
+
+    kind: ClassVar[str] = "comparator"
+    figures: ClassVar[tuple[str, ...]] = ("common_capacitance", "differential_capacitance", "output_resistance")
+    absent: ClassVar[Mapping[str, float]] = {"output_resistance": 50.0}
+
+
 @dataclass(frozen=True)
 class FixedTia(Element):
     """A transimpedance amplifier bought whole: a current into its input, a voltage from its output, inverted.

@@ -12,6 +12,7 @@ from opto_ckt.constants import BOLTZMANN, ELEMENTARY_CHARGE
 from opto_ckt.topology import (
     GROUND,
     Capacitor,
+    Comparator,
     Diode,
     Element,
     FixedTia,
@@ -187,6 +188,22 @@ def _(element: OpAmp) -> Parts:
                 _named(f"{ref}.current_noise_corner"),
             ),
         ),
+    )
+
+
+@_expand.register
+def _(element: Comparator) -> Parts:
+    """Input capacitances; the output rests at a level, behind its resistance."""
+    ref = element.ref
+    common = _named(f"{ref}.common_capacitance")
+    return (
+        (
+            _own("C", element, "differential_capacitance", (element.plus, element.minus)),
+            Primitive("C", f"{ref}.common_plus", (element.plus, GROUND), common),
+            Primitive("C", f"{ref}.common_minus", (element.minus, GROUND), common),
+            _own("R", element, "output_resistance", (element.out, GROUND)),
+        ),
+        (),
     )
 
 

@@ -15,6 +15,7 @@ BLOCKS: Mapping[str, str] = {
     "gain_stage": "opto_ckt.circuits.blocks.gain_stage",
     "post_filter": "opto_ckt.circuits.blocks.post_filter",
     "ac_coupling": "opto_ckt.circuits.blocks.ac_coupling",
+    "decision": "opto_ckt.circuits.blocks.decision",
     "bias_filter": "opto_ckt.circuits.blocks.bias_filter",
 }
 """Name, as under [blocks] and in the slots of circuits -> module whose ``BLOCK`` it is; in the order of sizing."""
