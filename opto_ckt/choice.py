@@ -6,6 +6,7 @@ from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from itertools import combinations, product
 from math import inf, log, prod
+from typing import TypeVar
 
 import numpy as np
 from numpy.typing import NDArray
@@ -39,6 +40,7 @@ DIGITS = 9  #: decimals of margins and distances that are compared
 UNITS: Mapping[str, str] = {"R": "Ω", "C": "F", "L": "H"}
 
 Rows = NDArray[np.intp]
+Chosen = TypeVar("Chosen")
 
 
 @dataclass(frozen=True)
@@ -76,10 +78,11 @@ def choose(
     limits : tolerance of each fitted part (none: it is exact) and limits of everything else.
     known : corners at which combinations are judged besides, such as a wider search found at an earlier choice.
     """
-    options, notes = _options(fitted)
-    bench = _Bench(fitted, evaluate, requirements, limits)
+    free = tuple(part for part in fitted if not part.twin)
+    options, notes = _options(free)
+    bench = _Bench(free, evaluate, requirements, limits, {part.ref: part.twin for part in fitted if part.twin})
     search = _Search(bench, options)
-    corners = distinct([NOMINAL, *known, *bench.worst({part.ref: part.exact for part in fitted})[0]])
+    corners = distinct([NOMINAL, *known, *bench.worst({part.ref: part.exact for part in free})[0]])
     for rounds in range(1, ROUNDS + 1):
         winner = search.best(corners)
         values = search.values(winner)
@@ -90,7 +93,7 @@ def choose(
         corners += fresh
     found = np.minimum(search.margins[search.place[winner]], margins)
     return Choice(
-        values=values,
+        values=bench.whole(values),
         margins=tuple(float(margin) for margin in found),
         corners=tuple(corners),
         tried=len(search.place),
@@ -143,17 +146,27 @@ class _Bench:
     """Margins of the requirements for any values of the fitted parts, at any corners."""
 
     def __init__(
-        self, fitted: Sequence[Fitted], evaluate: Evaluate, requirements: Sequence[Requirement], limits: Limits
+        self,
+        fitted: Sequence[Fitted],
+        evaluate: Evaluate,
+        requirements: Sequence[Requirement],
+        limits: Limits,
+        twins: Mapping[str, str],
     ) -> None:
         self.fitted, self.evaluate, self.requirements, self.limits = fitted, evaluate, requirements, limits
+        self.twins = twins
         self.names = list(dict.fromkeys(requirement.figure for requirement in requirements))
         self.alone = steps_of(limits, one_at_a_time(limits))
+
+    def whole(self, chosen: Mapping[str, Chosen]) -> dict[str, Chosen]:
+        """Values chosen, with those of the parts that share them."""
+        return {**chosen, **{ref: chosen[twin] for ref, twin in self.twins.items()}}
 
     def worst(self, values: Mapping[str, float]) -> tuple[list[Corner], Lanes]:
         """For each requirement the corner of worst levels around some values, and the worst margin on the way there."""
         if not self.requirements:
             return [], np.empty(0)
-        figures = figures_at(self.evaluate, self.limits, self.alone, values, self.names)
+        figures = figures_at(self.evaluate, self.limits, self.alone, self.whole(values), self.names)
         corners, margins = [], []
         for requirement in self.requirements:
             figure = figures[self.names.index(requirement.figure)]
@@ -168,7 +181,7 @@ class _Bench:
             return np.empty((len(values), 0))
         steps = np.repeat(steps_of(self.limits, corners), len(values), axis=0)
         chosen = {part.ref: np.tile(values[:, column], len(corners)) for column, part in enumerate(self.fitted)}
-        figures = figures_at(self.evaluate, self.limits, steps, chosen, self.names)
+        figures = figures_at(self.evaluate, self.limits, steps, self.whole(chosen), self.names)
         by_requirement = [
             requirement.margin(figures[self.names.index(requirement.figure)]).reshape(len(corners), -1).min(axis=0)
             for requirement in self.requirements

@@ -30,6 +30,7 @@ class Fitted:
     high: float = np.inf
     omittable: bool = False  #: may be left out (value zero) where nothing, or strays alone, do the work
     fixed: bool = False  #: the engineer insists on ``exact``
+    twin: str = ""  #: designator of the part whose value it shares, since the two have to match
 
 
 class OnDemand(Mapping[str, Lanes]):

@@ -24,6 +24,18 @@ def transfer_at(evaluation: Evaluation, frequency: Array | float) -> Complex:
     return evaluation.ratio_at(evaluation.numerator, evaluation.denominator, frequency)
 
 
+def rival_at(evaluation: Evaluation, frequency: Array | float) -> Complex:
+    """Output voltage for a signal of 1 through the other input, as `transfer_at`. [V per unit of input]
+
+    Raises
+    ------
+    ValueError : the network names no other input.
+    """
+    if evaluation.rival_numerator is None:
+        raise ValueError("the network names no other input")
+    return evaluation.ratio_at(evaluation.rival_numerator, evaluation.denominator, frequency)
+
+
 def dc_gain(evaluation: Evaluation) -> Array:
     """Gain at DC with its sign. [V per unit of input]"""
     with np.errstate(divide="ignore", invalid="ignore"):

@@ -14,6 +14,8 @@ CIRCUITS: dict[str, str] = {
     "tia-bootstrap": "opto_ckt.circuits.receivers.tia_bootstrap",
     "tia-cascode": "opto_ckt.circuits.receivers.tia_cascode",
     "tia-tee": "opto_ckt.circuits.receivers.tia_tee",
+    "tia-balanced": "opto_ckt.circuits.receivers.tia_balanced",
+    "tia-fixed": "opto_ckt.circuits.receivers.tia_fixed",
     "laser-current": "opto_ckt.circuits.drivers.laser_current",
 }
 """Name -> module whose ``CIRCUIT`` it is."""

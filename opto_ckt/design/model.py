@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from functools import cached_property
 from typing import Any
 
 import numpy as np
@@ -26,42 +25,55 @@ class Model:
     circuit : of the registry.
     request : the design.
     moved : limits that are put in other places.
-    bare : without the blocks that the design asks for.
+    fitted : names of the blocks that are fitted; all that the design asks for if None.
     """
 
-    def __init__(self, circuit: Circuit, request: Any, moved: Limits | None = None, *, bare: bool = False) -> None:
+    def __init__(
+        self, circuit: Circuit, request: Any, moved: Limits | None = None, fitted: tuple[str, ...] | None = None
+    ) -> None:
         self._plain = circuit
         self._moved = moved or {}
+        self._networks: dict[tuple[str, ...], Network] = {}  #: compiled, by the blocks fitted
         self.request = request
         base = circuit.topology(request)
         self.places = (*base.slots, *base.taps)  #: names of the blocks that the circuit has a place for
-        self.blocks = {} if bare else blocks_of(request, self.places)
+        asked = blocks_of(request, self.places)
+        self.blocks = {name: block for name, block in asked.items() if fitted is None or name in fitted}
         self.circuit = with_blocks(circuit, self.blocks)
         self.topology: Topology = self.circuit.topology(request).with_blocks({})
         self.limits: Limits = {**limits_of(self.topology, request), **self.circuit.given(request), **self._moved}
 
-    @cached_property
-    def bare(self) -> Model:
-        """The same circuit without its blocks, which it is sized on."""
-        return Model(self._plain, self.request, self._moved, bare=True) if self.blocks else self
+    def _with(self, fitted: tuple[str, ...]) -> Model:
+        """The same circuit with some of its blocks."""
+        if fitted == tuple(self.blocks):
+            return self
+        part = Model(self._plain, self.request, self._moved, fitted)
+        part._networks = self._networks
+        return part
 
     def proposal(self, derivation: Derivation) -> tuple[Fitted, ...]:
-        """Exact values of every fitted part with their windows: the circuit's, then those of each block around it.
+        """Exact values of every fitted part with their windows: the circuit's, then of one block after the other.
+
+        The circuit is sized bare, each block around it and the blocks before.
 
         Raises
         ------
         InfeasibleError : no values exist that bias and stabilise the circuit.
         """
-        fitted = self._plain.propose(self.request, derivation, self.bare.bench())
-        for block in self.blocks.values():
+        fitted = self._plain.propose(self.request, derivation, self._with(()).bench())
+        names = tuple(self.blocks)
+        for count, block in enumerate(self.blocks.values(), 1):
             exact = {part.ref: part.exact for part in fitted}
-            fitted += block.propose(self.request, derivation, self.bench(), exact)
+            fitted += block.propose(self.request, derivation, self._with(names[:count]).bench(), exact)
         return fitted
 
-    @cached_property
+    @property
     def network(self) -> Network:
         """The compiled network."""
-        return Network(expand(self.topology))
+        key = tuple(self.blocks)
+        if key not in self._networks:
+            self._networks[key] = Network(expand(self.topology))
+        return self._networks[key]
 
     def moved(self, limits: Limits | None = None, fixed: Mapping[str, float] | None = None) -> Model:
         """The same model with some limits in other places, or some parts fixed."""
@@ -69,11 +81,9 @@ class Model:
         return self.asked(request, limits)
 
     def asked(self, request: Any, moved: Limits | None = None) -> Model:
-        """The same circuit for another request of the same structure; the network is compiled once."""
+        """The same circuit for another request of the same structure; networks are compiled once."""
         other = Model(self._plain, request, moved)
-        other.__dict__["network"] = self.network
-        if self.blocks:
-            other.bare.__dict__["network"] = self.bare.network
+        other._networks = self._networks
         return other
 
     def biased(self, values: Values) -> dict[str, float | Lanes]:

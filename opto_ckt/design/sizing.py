@@ -227,11 +227,12 @@ def _roundings(sized: Sized) -> tuple[Rounding, ...]:
     """Figures at nominal with exact values beside those with preferred values."""
     exact = {part.ref: part.exact for part in sized.fitted}
     both = {ref: np.array([exact[ref], value]) for ref, value in sized.choice.values.items()}
-    figures = sized.model.bench().evaluate(both)
+    found = sized.model.bench().evaluate(both)
+    figures = {name: np.broadcast_to(found[name], 2) for name in FIGURES if name in sized.model.circuit.offers}
     return tuple(
-        Rounding(name, float(figures[name][0]), float(figures[name][1]), si_unit(FIGURES[name].unit))
-        for name in FIGURES
-        if name in sized.model.circuit.offers and not isnan(figures[name][1])
+        Rounding(name, float(before), float(after), si_unit(FIGURES[name].unit))
+        for name, (before, after) in figures.items()
+        if not isnan(after)
     )
 
 

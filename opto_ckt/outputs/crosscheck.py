@@ -13,7 +13,7 @@ from opto_ckt.analyses.network import Evaluation, Network
 from opto_ckt.analyses.network.expansion import expand
 from opto_ckt.outputs.readings import falls_to, integrated, phase_margin_of, rise_time_of, rises_to
 from opto_ckt.outputs.simulators import Vectors, run
-from opto_ckt.outputs.spice import deck_of, is_linear, levels, output_node, step_height
+from opto_ckt.outputs.spice import deck_of, is_linear, kinds, levels, output_node, step_height
 from opto_ckt.result import Result, Scene
 from opto_ckt.units import percent, write
 
@@ -70,11 +70,11 @@ def crosscheck(result: Result, engine: str) -> list[Row]:
     rows: list[Row] = []
     for scene in result.scenes:
         evaluation = network.evaluate(scene.values)
-        runs = {kind: run(deck_of(result, scene, kind), engine) for kind in ("ac", "noise", "step", "loop")}
+        runs = {kind: run(deck_of(result, scene, kind), engine) for kind in kinds(result.topology)}
         rows += _levels(result, scene, runs["ac"]["op"], bounds)
         rows += _response(result, scene, evaluation, runs["ac"]["ac"], bounds)
         rows += _noise(result, scene, evaluation, runs["noise"]["noise"], bounds)
-        rows += _loop(scene, evaluation, runs["loop"]["ac"], bounds)
+        rows += _loop(scene, evaluation, runs["loop"]["ac"], bounds) if "loop" in runs else ()
         rows += _step(result, scene, evaluation, runs["step"]["tran"], bounds)
     return rows
 

@@ -10,7 +10,7 @@ from math import hypot
 from opto_ckt.outputs.lettering import Frame, Label, TextBox, place_labels, spots_around, spots_beyond, spots_in_corners
 from opto_ckt.outputs.symbols import Segment, Shape, disc, drawn, ground_mark, port_mark, rail_mark, snapped, symbol
 from opto_ckt.outputs.wiring import junctions, lies_on, marks, pins, rails, touched_points, wires, written
-from opto_ckt.topology import GROUND, Element, OpAmp, Point, Terminal, Topology
+from opto_ckt.topology import GROUND, Element, FixedTia, OpAmp, Point, Terminal, Topology
 
 Labels = Mapping[str, tuple[str, ...]]
 
@@ -85,7 +85,7 @@ def _element_label(element: Element, strokes: Drawn, labels: Labels) -> Label:
     ends = set(element.pin_points().values())
     body = [shape for shape in strokes.shapes if not ends & set(shape.points)] or list(strokes.shapes)
     frame = Frame.around(point for shape in body for point in shape.points)
-    if isinstance(element, OpAmp):
+    if isinstance(element, OpAmp | FixedTia):
         return spots_in_corners(element.ref, lines, frame)
     level = element.to is not None and abs(element.to[1] - element.at[1]) < abs(element.to[0] - element.at[0])
     return spots_around(element.ref, lines, frame, "tbrl" if level else "rltb")

@@ -27,7 +27,12 @@ MARK = "* written by opto-ckt; it is overwritten when the design is sized again\
 def decks(result: Result) -> dict[str, str]:
     """Every deck of the nominal scene by file name."""
     scene = result.scenes[0]
-    return {f"{result.head.stem}.{kind}.cir": deck_of(result, scene, kind) for kind in ("ac", "noise", "step", "loop")}
+    return {f"{result.head.stem}.{kind}.cir": deck_of(result, scene, kind) for kind in kinds(result.topology)}
+
+
+def kinds(topology: Topology) -> tuple[str, ...]:
+    """Which decks there are; no loop deck of a circuit without a loop of its own."""
+    return ("ac", "noise", "step", "loop") if topology.loop else ("ac", "noise", "step")
 
 
 def deck_of(result: Result, scene: Scene, kind: str) -> str:

@@ -19,8 +19,10 @@ from opto_ckt.outputs.spice_text import card, comment, name, number
 from opto_ckt.topology import (
     BipolarTransistor,
     Capacitor,
+    Comparator,
     Diode,
     Element,
+    FixedTia,
     Inductor,
     Jfet,
     LaserDiode,
@@ -99,7 +101,7 @@ def _(element: Diode, values: Values, driven: bool) -> Cards:
 def _(element: Photodiode, values: Values, driven: bool) -> Cards:
     """Light in watts as volts on node pw; linear capacitance at the bias; standing currents with their shot noise."""
     ref, v = name(element.ref), _figures(element, values)
-    bias = values["detector.reverse_bias"]
+    bias = values.get(f"{element.ref}.reverse_bias", values["detector.reverse_bias"])
     total = v["signal_shot"] + v["ambient_shot"] + v["dark_shot"]
     transit = v["transit_frequency"]
     body = (
@@ -120,8 +122,70 @@ def _(element: Photodiode, values: Values, driven: bool) -> Cards:
         + shot_noise("st", total, values["temperature"], "k j")
         + card(".ends", ref)
     )
-    source = card("vpw", "pw 0 dc", number(values["signal.power"]), "ac 1 @pulse@") if driven else ""
-    return Cards(source + card(f"x{ref}", name(element.anode), name(element.cathode), "pw", ref), body)
+    light = "pw" if driven else f"p{ref}"
+    steady = card(f"v{light}", f"{light} 0 dc", number(values.get(f"{element.ref}.power", 0.0)))
+    source = card("vpw", "pw 0 dc", number(values["signal.power"]), "ac 1 @pulse@") if driven else steady
+    return Cards(source + card(f"x{ref}", name(element.anode), name(element.cathode), light, ref), body)
+
+
+@cards.register
+def _(element: Comparator, values: Values, driven: bool) -> Cards:
+    """Input capacitances and bias currents; the output at rest: decks of small signals decide nothing."""
+    ref, v = name(element.ref), _figures(element, values)
+    bias = values.get(f"{element.ref}.bias_current", 0.0)
+    body = (
+        comment("pins: in+ in- out v+ v-; put the maker's model here; this one rests and decides nothing")
+        + card(".subckt", ref, "p m o vp vn")
+        + card("cdf", "p m", number(v["differential_capacitance"]))
+        + card("ccp", "p 0", number(v["common_capacitance"]))
+        + card("ccm", "m 0", number(v["common_capacitance"]))
+        + card("ibp", "p 0 dc", number(bias))
+        + card("ibm", "m 0 dc", number(bias))
+        + card("gro", "o 0 o 0", number(1 / v["output_resistance"]))
+        + card("iq", "vp vn dc", number(values.get(f"{element.ref}.quiescent_current", 0.0)))
+        + card("rvp", "vp 0", "1e9")
+        + card("rvn", "vn 0", "1e9")
+        + card(".ends", ref)
+    )
+    pins = (name(node) for node in element.nodes.values())
+    return Cards(card(f"x{ref}", *pins, ref), body)
+
+
+@cards.register
+def _(element: FixedTia, values: Values, driven: bool) -> Cards:
+    """Linear: a sensed current, two poles of a flat response, gain; no limit of input or output."""
+    ref, v = name(element.ref), _figures(element, values)
+    pole = 1 / (2 * pi * v["bandwidth"])
+    last = "l" if element.passes_dc else "h"
+    high_pass = (
+        card("ecp", "cp 0 l 0", "1")
+        + card("chp", "cp h", number(1 / (2 * pi * v["low_cutoff"])))
+        + card("ghp", "h 0 h 0", "1")
+    )
+    body = (
+        comment("pins: in out v+ v-; put the maker's model here")
+        + comment("linear: no overload, no rails; check the light against the page")
+        + card(".subckt", ref, "i o vp vn")
+        + card("vlv", "lv 0 dc", number(values.get("input_level", 0.0)))
+        + card("gin", "i lv i lv", number(1 / v["input_resistance"]))
+        + noise_pair("i", v["input_noise_density"], 1e-9, values["temperature"])
+        + card("gno", "0 i ia ib", number(noise_pair_gain(v["input_noise_density"], values["temperature"])))
+        + card("gse", "0 s i lv", number(1 / v["input_resistance"]))
+        + card("gsr", "s 0 s 0", "1")
+        + card("edr", "d 0 s 0", "1")
+        + card("gdm", "d t d t", number(0.5**0.5))
+        + card("ltn", "t l", number(pole))
+        + card("chd", "l 0", number(pole))
+        + ("" if element.passes_dc else high_pass)
+        + card("eou", "po 0 0", last, number(v["transimpedance"]))
+        + card("gro", "po o po o", number(1 / v["output_resistance"]))
+        + card("iq", "vp vn dc", number(values.get(f"{element.ref}.quiescent_current", 0.0)))
+        + card("rvp", "vp 0", "1e9")
+        + card("rvn", "vn 0", "1e9")
+        + card(".ends", ref)
+    )
+    pins = (name(node) for node in element.nodes.values())
+    return Cards(card(f"x{ref}", *pins, ref), body)
 
 
 @cards.register

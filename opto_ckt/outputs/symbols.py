@@ -11,6 +11,7 @@ from opto_ckt.topology import (
     Capacitor,
     Diode,
     Element,
+    FixedTia,
     Inductor,
     Jfet,
     LaserDiode,
@@ -93,7 +94,7 @@ def drawn(element: Element) -> bool:
 
 def optional_pins(element: Element) -> frozenset[str]:
     """Pins that may be left out of the drawing."""
-    return frozenset({"positive", "negative"}) if isinstance(element, OpAmp) else frozenset()
+    return frozenset({"positive", "negative"}) if isinstance(element, OpAmp | FixedTia) else frozenset()
 
 
 def _between(element: Element, to: Point) -> tuple[Shape, ...]:
@@ -147,9 +148,7 @@ def _(element: Capacitor) -> tuple[Shape, ...]:
 @outline.register
 def _(element: Inductor) -> tuple[Shape, ...]:
     turns = [(hump, step) for hump in range(4) for step in range(13)]
-    points = (
-        (-0.39 + 0.26 * hump - 0.13 * cos(pi * step / 12), 0.16 * sin(pi * step / 12)) for hump, step in turns
-    )
+    points = ((-0.39 + 0.26 * hump - 0.13 * cos(pi * step / 12), 0.16 * sin(pi * step / 12)) for hump, step in turns)
     return (line(*points),)
 
 
@@ -193,6 +192,17 @@ def _(element: OpAmp) -> tuple[Shape, ...]:
         line((0.34, 0.5), (0.54, 0.5)),
         line((0.34, -0.5), (0.54, -0.5)),
         line((0.44, -0.6), (0.44, -0.4)),
+    )
+
+
+@outline.register
+def _(element: FixedTia) -> tuple[Shape, ...]:
+    return (
+        Shape(((0.25, 0.9), (0.25, -0.9), (1.75, 0)), closed=True),
+        line((0, 0), (0.25, 0)),
+        line((1.75, 0), (2, 0)),
+        line((1, 0.45), (1, 1)),
+        line((1, -0.45), (1, -1)),
     )
 
 

@@ -12,6 +12,7 @@ if TYPE_CHECKING:
     from opto_ckt.request.receiver import (
         BootstrapRequest,
         CascodeRequest,
+        FixedTiaRequest,
         OpAmpReceiverRequest,
         ReceiverRequest,
     )
@@ -19,6 +20,7 @@ if TYPE_CHECKING:
 __all__ = [
     "BootstrapRequest",
     "CascodeRequest",
+    "FixedTiaRequest",
     "LaserDriverRequest",
     "OpAmpReceiverRequest",
     "ReceiverRequest",
@@ -28,6 +30,7 @@ __all__ = [
 LOADED_ON_USE = {
     "BootstrapRequest": "receiver",
     "CascodeRequest": "receiver",
+    "FixedTiaRequest": "receiver",
     "OpAmpReceiverRequest": "receiver",
     "ReceiverRequest": "receiver",
     "LaserDriverRequest": "driver",

@@ -62,6 +62,12 @@ class Servo(LowCutoff):
     range: Annotated[float | None, Unit("A", "50 µA")] = None  #: of steady current; else all that the design has
 
 
+class Decision(Table):
+    """Comparator at the output."""
+
+    hysteresis: Annotated[float | None, Unit("V", "10 mV")] = None  #: from threshold to threshold; else from the noise
+
+
 class ReceiverBlocks(Table):
     """Blocks that are fitted; one that is left out is not."""
 
@@ -71,3 +77,4 @@ class ReceiverBlocks(Table):
     post_filter: PostFilter | None = None
     ac_coupling: AcCoupling | None = None
     servo: Servo | None = None
+    decision: Decision | None = None

@@ -107,6 +107,7 @@ class Target(Table):
     response: Literal["flat", "bessel", "critical"] | None = None
     noise_frequency: Annotated[float | None, Unit("Hz", "1 MHz")] = None
     noise_band: Band | None = None
+    balance: Literal["currents", "outputs"] = "currents"  #: where two detectors are subtracted
     front_end: Literal["low_impedance", "high_impedance"] = "low_impedance"  #: of a load resistor
     tee: Literal["resistive", "capacitive", "both"] = "resistive"  #: which part of the feedback is a tee
 
@@ -171,6 +172,7 @@ class ReceiverRequest(Request):
     second_amplifier: OpAmpData | None = None  #: behind the first, or of a block; a second one of the first if left out
     transistor: BipolarData | None = None  #: that the photocurrent flows through, or that amplifies it
     follower: JfetData | None = None  #: that drives the far end of the detector
+    comparator: OpAmpData | None = None  #: that decides the bits, by the figures of an op amp's record
     fixed_tia: FixedTiaData | None = None  #: a transimpedance amplifier that is bought whole
     signal: ReceivedSignal
     target: Target = Field(default_factory=Target.model_construct)
@@ -207,6 +209,12 @@ class OpAmpReceiverRequest(ReceiverRequest):
     """A design file of a receiver around an op amp."""
 
     amplifier: OpAmpData
+
+
+class FixedTiaRequest(ReceiverRequest):
+    """A design file of a receiver around a transimpedance amplifier that is bought whole."""
+
+    fixed_tia: FixedTiaData
 
 
 class BootstrapRequest(OpAmpReceiverRequest):

@@ -108,6 +108,37 @@ class OpAmp(Element):
         return points
 
 
+class Comparator(OpAmp):
+    """A comparator: to small signals its input capacitances, and an output that rests at one of its levels."""
+
+    kind: ClassVar[str] = "comparator"
+    figures: ClassVar[tuple[str, ...]] = ("common_capacitance", "differential_capacitance", "output_resistance")
+    absent: ClassVar[Mapping[str, float]] = {"output_resistance": 50.0}
+
+
+@dataclass(frozen=True)
+class FixedTia(Element):
+    """A transimpedance amplifier bought whole: a current into its input, a voltage from its output, inverted.
+
+    Two poles of a flat response stand for its bandwidth, whatever the source's capacitance up to what its sheet allows.
+    """
+
+    input: str
+    out: str
+    positive: str = "positive"
+    negative: str = "negative"
+    passes_dc: bool = True  #: no low cut-off
+    kind: ClassVar[str] = "transimpedance amplifier"
+    pins: ClassVar[tuple[str, ...]] = ("input", "out", "positive", "negative")
+    pin_places: ClassVar[Mapping[str, Point]] = {
+        "input": (0, 0), "out": (2, 0), "positive": (1, 1), "negative": (1, -1),
+    }  # fmt: skip
+    figures: ClassVar[tuple[str, ...]] = (
+        "transimpedance", "bandwidth", "low_cutoff", "input_resistance", "input_noise_density", "output_resistance",
+    )  # fmt: skip
+    absent: ClassVar[Mapping[str, float]] = {"low_cutoff": 1.0, "input_resistance": 1.0, "input_noise_density": 1e-12}
+
+
 @dataclass(frozen=True)
 class Transistor(Element):
     """A transistor by its small-signal figures at the bias point; ``control`` is gate or base.

@@ -20,11 +20,11 @@ from opto_ckt.design.reading import read_request
 from opto_ckt.design.sizing import size
 from opto_ckt.figures import FIGURES
 from opto_ckt.result import FoundPart
-from tests.circuits.sized import sized
+from tests.circuits.sized import read, sized
 
 DESIGNS = Path(__file__).parents[2] / "designs"
 NAMES = [path.stem for path in sorted(DESIGNS.glob("*.toml")) if path.stem != "parts"]
-BASE = re.compile(r"[A-Z]+[0-9]{1,2}")
+DESIGNATOR = re.compile(r"[A-Z]+[0-9]{1,2}")
 
 
 @pytest.mark.parametrize("name", CIRCUITS)
@@ -66,12 +66,13 @@ def test_figures_come_as_low_nominal_high(name: str) -> None:
 
 
 @pytest.mark.parametrize("name", CIRCUITS)
-def test_designators_are_unique_and_of_the_base_circuit(name: str) -> None:
+def test_designators_are_unique_and_tell_circuit_from_blocks(name: str) -> None:
+    """One digit and no more in a circuit, two in its blocks; the driver's bias has the tens."""
     refs = [element.ref for element in sized(name).topology]
     assert len(set(refs)) == len(refs)
-    for part in sized(name).parts:
-        assert BASE.fullmatch(part.ref)
-        assert int(re.sub(r"\D", "", part.ref)) < 20
+    assert all(DESIGNATOR.fullmatch(part.ref) for part in sized(name).parts)
+    base = load(name).topology(read(name).request)
+    assert all(int(re.sub(r"\D", "", element.ref)) < 20 for element in base.fitted)
 
 
 @pytest.mark.parametrize("name", CIRCUITS)
@@ -131,7 +132,8 @@ def test_its_loop_is_stable_wherever_it_was_looked_at(name: str) -> None:
     for scene in sized(name).scenes:
         evaluation = network.evaluate(scene.values)
         assert evaluation.stable.all()
-        assert isfinite(float(stability.phase_margin(evaluation)[0]))
+        if "phase_margin" in load(name).offers:
+            assert isfinite(float(stability.phase_margin(evaluation)[0]))
 
 
 def _value(part: FoundPart) -> float:

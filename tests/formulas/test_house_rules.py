@@ -69,6 +69,7 @@ BY_NAME = {  # where an equation holds only for figures that suit one another
     "bandwidth": 1e5,
     "case_to_sink": 0.5,
     "dark_current": 1e-9,
+    "error": 0.3,
     "feedback_resistance": 100e3,
     "first_temperature": 280.0,
     "gain": 10.0,

@@ -14,7 +14,7 @@ from hypothesis import strategies as st
 from opto_ckt.circuits import CIRCUITS, load
 from opto_ckt.design.reading import read_request
 from opto_ckt.design.sizing import size
-from opto_ckt.outputs.spice import deck_of, decks
+from opto_ckt.outputs.spice import deck_of, decks, kinds
 from opto_ckt.outputs.spice_text import LONGEST, card, comment, name, number, plain, title
 from opto_ckt.result import Result
 from tests.circuits.sized import sized
@@ -66,10 +66,17 @@ def nodes_of(words: list[str]) -> list[str]:
     return words[1:-1] if words[0][0] == "x" else words[1 : 1 + NODES[words[0][0]]]
 
 
+def with_deck(source: str, kind: str) -> Result:
+    result = result_of(source)
+    if kind not in kinds(result.topology):
+        pytest.skip("a circuit without a loop of its own has no loop deck")
+    return result
+
+
 @pytest.mark.parametrize("kind", KINDS)
 @pytest.mark.parametrize("source", SOURCES)
 def test_a_deck_keeps_to_the_portable_subset(source: str, kind: str) -> None:
-    result = result_of(source)
+    result = with_deck(source, kind)
     for scene in result.scenes:
         deck = deck_of(result, scene, kind)
         lines = deck.splitlines()
@@ -101,7 +108,7 @@ def test_a_deck_keeps_to_the_portable_subset(source: str, kind: str) -> None:
 @pytest.mark.parametrize("kind", KINDS)
 @pytest.mark.parametrize("source", SOURCES)
 def test_every_value_is_a_plain_number(source: str, kind: str) -> None:
-    result = result_of(source)
+    result = with_deck(source, kind)
     for words in cards_of(deck_of(result, result.scenes[0], kind)):
         if words[0][0] in "rclegh":
             assert NUMBER.fullmatch(words[-1]), words
@@ -114,7 +121,7 @@ def test_every_value_is_a_plain_number(source: str, kind: str) -> None:
 @pytest.mark.parametrize("source", SOURCES)
 def test_every_node_has_two_connections_and_a_path_for_direct_current(source: str, kind: str) -> None:
     """A capacitor carries none; a controlled current source on its own nodes conducts like a resistor."""
-    result = result_of(source)
+    result = with_deck(source, kind)
     for inside, cards in scopes(deck_of(result, result.scenes[0], kind)).items():
         met: dict[str, int] = defaultdict(int)
         joined: dict[str, set[str]] = defaultdict(set)

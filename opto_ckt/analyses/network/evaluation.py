@@ -47,6 +47,7 @@ class Evaluation:
         T = (D - D0) / D0 is the return ratio, large and positive at DC under negative feedback.
     denominator_power, numerator_power, loop_excess : |D|², |N|² and |D - D0|² - |D0|² as polynomials in x, the square
         of scaled ω.
+    rival_numerator : N of the other input, over the same D; None where there is none.
     gain : current of the input source for an input signal of 1. [A per unit of input]
     read_noise : gives the sums over all generators of white and of 1/f noise.
     read_generators : gives the noise generators one by one.
@@ -59,6 +60,7 @@ class Evaluation:
     numerator: Array
     loop_numerator: Array | None
     loop_denominator: Array | None
+    rival_numerator: Array | None
     denominator_power: Array
     numerator_power: Array
     loop_excess: Array | None

@@ -14,8 +14,10 @@ from opto_ckt.topology import (
     GROUND,
     BipolarTransistor,
     Capacitor,
+    Comparator,
     Diode,
     Element,
+    FixedTia,
     Inductor,
     LaserDiode,
     OpAmp,
@@ -51,6 +53,7 @@ def expand(topology: Topology) -> Expansion:
         gain=gain,
         output=topology.output,
         loop=f"{topology.loop}.stage1" if topology.loop else None,
+        rival=_signal(topology[topology.rival]) if topology.rival else None,
     )
 
 
@@ -191,6 +194,52 @@ def _(element: OpAmp) -> Parts:
 
 
 @_expand.register
+def _(element: Comparator) -> Parts:
+    """Input capacitances; the output rests at a level, behind its resistance."""
+    ref = element.ref
+    common = _named(f"{ref}.common_capacitance")
+    return (
+        (
+            _own("C", element, "differential_capacitance", (element.plus, element.minus)),
+            Primitive("C", f"{ref}.common_plus", (element.plus, GROUND), common),
+            Primitive("C", f"{ref}.common_minus", (element.minus, GROUND), common),
+            _own("R", element, "output_resistance", (element.out, GROUND)),
+        ),
+        (),
+    )
+
+
+@_expand.register
+def _(element: FixedTia) -> Parts:
+    """A sensed current, two poles with Q = 1/√2, where it does not pass DC a high-pass, gain, output resistance."""
+    ref = element.ref
+    sensed, driven, turned, low = (f"{ref}.{name}" for name in ("sensed", "driven", "turned", "low"))
+    last, ideal = low if element.passes_dc else f"{ref}.high", f"{ref}.ideal"
+    resistance, bandwidth = _named(f"{ref}.input_resistance"), _named(f"{ref}.bandwidth")
+    transimpedance, noise = _named(f"{ref}.transimpedance"), _named(f"{ref}.input_noise_density")
+    primitives = [
+        _own("R", element, "input_resistance", (element.input, GROUND)),
+        Primitive("G", f"{ref}.sense", (GROUND, sensed, element.input, GROUND), lambda v: 1 / resistance(v)),
+        Primitive("R", f"{ref}.unity", (sensed, GROUND), _one),
+        Primitive("E", f"{ref}.drive", (driven, GROUND, sensed, GROUND), _one),
+        Primitive("R", f"{ref}.damping", (driven, turned), lambda v: 2**0.5),
+        Primitive("L", f"{ref}.turn", (turned, low), lambda v: 1 / (2 * pi * bandwidth(v))),
+        Primitive("C", f"{ref}.hold", (low, GROUND), lambda v: 1 / (2 * pi * bandwidth(v))),
+        Primitive("E", f"{ref}.buffer", (ideal, GROUND, GROUND, last), transimpedance),
+        _own("R", element, "output_resistance", (ideal, element.out)),
+    ]
+    if not element.passes_dc:
+        cutoff, copied = _named(f"{ref}.low_cutoff"), f"{ref}.copied"
+        primitives += [
+            Primitive("E", f"{ref}.copy", (copied, GROUND, low, GROUND), _one),
+            Primitive("C", f"{ref}.block", (copied, last), lambda v: 1 / (2 * pi * cutoff(v))),
+            Primitive("R", f"{ref}.return", (last, GROUND), _one),
+        ]
+    input_noise = NoiseGenerator(f"{ref} input", (GROUND, element.input), lambda v: noise(v) ** 2, None)
+    return tuple(primitives), (input_noise,)
+
+
+@_expand.register
 def _(element: Transistor) -> Parts:
     """Transconductance with input conductance, output conductance and two capacitances.
 
@@ -208,9 +257,7 @@ def _(element: Transistor) -> Parts:
             Primitive("G", f"{ref}.channel", (drain, source, control, source), transconductance),
             Primitive("G", f"{ref}.input", (control, source, control, source), input_conductance),
             Primitive("G", f"{ref}.leak", (drain, source, drain, source), output_conductance),
-            Primitive(
-                "C", f"{ref}.control_source", (control, source), _named(f"{ref}.control_source_capacitance")
-            ),
+            Primitive("C", f"{ref}.control_source", (control, source), _named(f"{ref}.control_source_capacitance")),
             Primitive("C", f"{ref}.control_drain", (control, drain), _named(f"{ref}.control_drain_capacitance")),
         ),
         (

@@ -73,7 +73,7 @@ class Network:
 
     @cached_property
     def _signal(self) -> _Polynomials:
-        """Program of D, N, D - D0 and D0 in s, then of |D|², |N|² and |D - D0|² - |D0|² in x."""
+        """Program of D, N, D - D0, D0 and the rival's N in s, then of |D|², |N|² and |D - D0|² - |D0|² in x."""
         expansion, determinants, program = self.expansion, self._determinants, self._program
         returned: Polynomial = ()
         opened: Polynomial = ()
@@ -87,9 +87,15 @@ class Network:
             raise ValueError("the network has no solution: its determinant is zero for all values")
         gain = self._gain / program.input(CONDUCTANCE_SCALE)
         numerator = determinants.derivative(expansion.input[::-1], expansion.output, gain)
+        rival: Polynomial = ()
+        if expansion.rival is not None:
+            nodes, strength = expansion.rival
+            scaled = program.node(strength(Values(program))) / program.input(CONDUCTANCE_SCALE)
+            rival = determinants.derivative(nodes[::-1], expansion.output, scaled)
         powers = [squared_magnitude_of(each) for each in (denominator, numerator, returned, opened)]
         excess = difference_of(powers[2], powers[3])
-        return _Polynomials(program, (denominator, numerator, returned, opened), (powers[0], powers[1], excess))
+        in_s = (denominator, numerator, returned, opened, rival)
+        return _Polynomials(program, in_s, (powers[0], powers[1], excess))
 
     @cached_property
     def _noise(self) -> _Polynomials:
@@ -148,7 +154,7 @@ class Network:
         centre = (low * high) ** 0.5 if 0 < low < high < inf else 1.0
         centre = 1.0 if 1 / NEAR < centre < NEAR else centre
         given[FREQUENCY_SCALE] = frequency * centre
-        denominator, numerator, returned, opened, *powers = map(trimmed, self._signal.split(table, centre))
+        denominator, numerator, returned, opened, rival, *powers = map(trimmed, self._signal.split(table, centre))
         return Evaluation(
             lanes=lanes,
             frequency_scale=frequency * centre,
@@ -157,6 +163,7 @@ class Network:
             numerator=numerator,
             loop_numerator=returned if self._loop else None,
             loop_denominator=opened if self._loop else None,
+            rival_numerator=rival if self.expansion.rival else None,
             denominator_power=powers[0],
             numerator_power=powers[1],
             loop_excess=powers[2] if self._loop else None,

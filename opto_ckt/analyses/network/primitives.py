@@ -74,6 +74,7 @@ class Expansion:
     gain : current of the input source for an input signal of 1. [A per unit of input]
     output : the output voltage is that of the first node above the second.
     loop : name of the G or E primitive whose return ratio is the loop gain; None where there is no loop to speak of.
+    rival : nodes and gain of another input, as of the first; None where there is none.
     """
 
     primitives: tuple[Primitive, ...]
@@ -82,3 +83,4 @@ class Expansion:
     gain: Value
     output: tuple[str, str]
     loop: str | None = None
+    rival: tuple[tuple[str, str], Value] | None = None

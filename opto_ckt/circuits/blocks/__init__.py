@@ -11,13 +11,14 @@ if TYPE_CHECKING:
     from opto_ckt.request import Request
 
 BLOCKS: Mapping[str, str] = {
-    "bias_filter": "opto_ckt.circuits.blocks.bias_filter",
+    "servo": "opto_ckt.circuits.blocks.servo",
     "gain_stage": "opto_ckt.circuits.blocks.gain_stage",
     "post_filter": "opto_ckt.circuits.blocks.post_filter",
     "ac_coupling": "opto_ckt.circuits.blocks.ac_coupling",
-    "servo": "opto_ckt.circuits.blocks.servo",
+    "decision": "opto_ckt.circuits.blocks.decision",
+    "bias_filter": "opto_ckt.circuits.blocks.bias_filter",
 }
-"""Name, as under [blocks] and in the slots of circuits -> module whose ``BLOCK`` it is."""
+"""Name, as under [blocks] and in the slots of circuits -> module whose ``BLOCK`` it is; in the order of sizing."""
 
 
 def blocks_of(request: Request, places: Collection[str]) -> dict[str, Block]:

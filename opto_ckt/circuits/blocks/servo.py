@@ -9,6 +9,8 @@ r"""Loop that takes the steady light away: an integrator drives a current into t
 
 from __future__ import annotations
 
+from dataclasses import replace
+
 import numpy as np
 
 from opto_ckt.circuit import Bench, Block, Fitted, Heat, Refusal, Stress
@@ -117,13 +119,30 @@ def propose(request: ReceiverRequest, derivation: Derivation, bench: Bench, exac
     derivation.note("C31", "as C32: the two make one integrator")
     for ref in ("R31", "R32"):
         derivation.note(ref, "common practice: no burden to the amplifier, little offset")
+    fixed = request.fixed
     found = [
-        Fitted("R30", injection, resistors, high=injection, fixed="R30" in request.fixed),
-        *(Fitted(ref, request.fixed.get(ref, resistance), resistors, low=resistance / 1.05, high=resistance * 1.05,
-                 fixed=ref in request.fixed) for ref in ("R31", "R32")),
-        *(Fitted(ref, request.fixed.get(ref, capacitance), stock.series, low=capacitance, high=5 * capacitance,
-                 fixed=ref in request.fixed) for ref in ("C31", "C32")),
-    ]  # fmt: skip
+        Fitted("R30", injection, resistors, high=injection, fixed="R30" in fixed),
+        Fitted(
+            "R31",
+            fixed.get("R31", resistance),
+            resistors,
+            low=resistance / 1.05,
+            high=resistance * 1.05,
+            fixed="R31" in fixed,
+        ),
+        Fitted(
+            "C32",
+            fixed.get("C32", capacitance),
+            stock.series,
+            low=capacitance,
+            high=5 * capacitance,
+            fixed="C32" in fixed,
+        ),
+    ]
+    for ref, twin in (("R32", found[1]), ("C31", found[2])):
+        own = fixed.get(ref)
+        like = replace(twin, ref=ref, twin=twin.ref)
+        found.append(like if own is None else replace(like, twin="", exact=own, fixed=True))
     for ref in ("C38", "C39") if request.conditions.supply.negative else ("C38",):
         derivation.note(ref, "common practice: 100 nF close to each supply pin")
         value = request.fixed.get(ref, BYPASS)

@@ -158,7 +158,7 @@ class ReceiverFigures:
         """Noise-equivalent power at the noise frequency, dark and ambient light only. [W/√Hz]"""
         frequency = noise_frequency(self._request)
         density = noise.density_by_generator(self._evaluation, frequency)
-        dark = sum(power for label, power in density.items() if label != self._label("signal shot"))
+        dark = sum(power for label, power in density.items() if not label.endswith("signal shot"))
         return np.asarray(np.sqrt(dark) / np.abs(response.transfer_at(self._evaluation, frequency)))
 
     @cached_property

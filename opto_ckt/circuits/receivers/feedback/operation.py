@@ -125,12 +125,17 @@ class FeedbackFigures(ReceiverFigures):
     @cached_property
     def noise_gain(self) -> Lanes:
         """Of high frequencies, where the capacitances divide: 1 + C_in/C_f. [V/V]"""
+        return np.asarray(
+            noise_gain_plateau(
+                input_capacitance=self._input_capacitance(), feedback_capacitance=self._feedback_capacitance()
+            )
+        )
+
+    def _input_capacitance(self) -> Lanes | float:
+        """Of the summing node, without the feedback. [F]"""
         values = self._values
         loads = ("D1.capacitance", "U1.common_capacitance", "U1.differential_capacitance", "CB")
-        capacitance = sum(values[name] for name in loads) + values.get("C3", 0.0)
-        return np.asarray(
-            noise_gain_plateau(input_capacitance=capacitance, feedback_capacitance=self._feedback_capacitance())
-        )
+        return sum((values[name] for name in loads), values.get("C3", 0.0))
 
     def _feedback_capacitance(self) -> Lanes | float:
         """From the output to the summing node, strays included. [F]"""
