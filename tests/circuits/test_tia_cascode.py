@@ -240,6 +240,18 @@ def test_the_page_says_what_the_transistor_buys() -> None:
     assert result.figure("input_noise_density").nominal < 0.7 * float(figures["input_noise_density"][0])
 
 
+def test_an_analog_front_end_does_not_hide_a_ringing_loop_behind_the_emitter() -> None:
+    changes = (("bit_rate", 'band = { min = "1 kHz", max = "1 MHz" }'), ("bandwidth ", ""), ("peaking ", ""))
+    result = sized("tia-cascode", *changes)
+    assert result.verdict == "met"
+    assert result.figure("phase_margin").low >= 45
+
+
+def test_coarse_series_leave_what_they_leave_and_say_so() -> None:
+    result = sized("tia-cascode", ("", '[preferred]\nresistors = { series = "E24", tolerance = "5 %" }'))
+    assert any("no E24 value lies in its window" in caution for caution in result.cautions)
+
+
 def test_a_low_current_is_said() -> None:
     result = sized("tia-cascode", ("bandwidth ", 'bandwidth = { min = "200 kHz" }'))
     assert any("below 10.0 µA a transistor loses current gain" in caution for caution in result.cautions)

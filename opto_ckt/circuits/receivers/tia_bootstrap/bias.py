@@ -5,7 +5,7 @@ from __future__ import annotations
 from math import inf, pi
 
 from opto_ckt.circuit import Bench
-from opto_ckt.circuits.receivers.detector import brightest, one_level, wanted_bandwidth
+from opto_ckt.circuits.receivers.detector import brightest, on_the_bench, one_level, wanted_bandwidth
 from opto_ckt.circuits.receivers.tia_bootstrap import follower
 from opto_ckt.derivation import Derivation
 from opto_ckt.errors import InfeasibleError
@@ -37,7 +37,8 @@ def feeding(request: BootstrapRequest, derivation: Derivation, bench: Bench) -> 
     light = most["D1.responsivity"] * most["signal.power"]
     current = light + most["D1.ambient_current"] + most["D1.dark_current"]
     drop = max(BIAS_DROP * request.detector.resting_bias, LEAST_DROP)
-    shunt = most["D1.shunt_resistance"] * bench.low("D1.shunt_resistance") / bench.nominal("D1.shunt_resistance")
+    hot = on_the_bench(request, bench, bench.high("temperature"))
+    shunt = hot["D1.shunt_resistance"] * bench.low("D1.shunt_resistance") / bench.nominal("D1.shunt_resistance")
     ways = {
         f"{write(drop, 'V')} at the most light, {write(current, 'A')} on average: {percent(BIAS_DROP)} of the bias": (
             drop / current if current else inf

@@ -11,6 +11,7 @@ import numpy as np
 from opto_ckt.circuit import Bench, Fitted
 from opto_ckt.circuits.receivers.board import LEVEL_CURRENT, level_values, surroundings
 from opto_ckt.circuits.receivers.detector import wanted_bandwidth
+from opto_ckt.circuits.receivers.feedback import operation as feedback
 from opto_ckt.circuits.receivers.feedback.pair import feedback_pair
 from opto_ckt.circuits.receivers.feedback.stage import Stage, summing_node
 from opto_ckt.circuits.receivers.tia_cascode import operation
@@ -54,7 +55,7 @@ def propose(request: CascodeRequest, derivation: Derivation, bench: Bench) -> tu
     others = level | parts
     left = worst_unbalanced(request, bench, others)
     stage = Stage(
-        request, derivation, bench, behind_transistor(request, bench), others,
+        guarded(request), derivation, bench, behind_transistor(request, bench), others,
         other_noise=_steady_noise(bench, others), standing=left, decides=MOVES[:-1],
     )  # fmt: skip
     r1, c1 = feedback_pair(stage, _faster(stage))
@@ -68,6 +69,13 @@ def propose(request: CascodeRequest, derivation: Derivation, bench: Bench) -> tu
         ),
         *surroundings(request, derivation, level),
     )
+
+
+def guarded(request: CascodeRequest) -> CascodeRequest:
+    """With a bound on the phase margin where none is asked for: the emitter's pole hides the peaking of the loop."""
+    if "phase_margin" in request.require:
+        return request
+    return request.model_copy(update={"require": {**request.require, "phase_margin": Bound(min=feedback.LEAST_MARGIN)}})
 
 
 def behind_transistor(request: CascodeRequest, bench: Bench) -> dict[str, float]:
