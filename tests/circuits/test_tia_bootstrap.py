@@ -43,7 +43,8 @@ SINGLE = (
     ("bandwidth ", 'bandwidth = { min = "1 MHz" }'),
 )
 AVALANCHE = (
-    ("reverse_bias", 'gain_points = [{ bias = "10 V", gain = "1" }, { bias = "120 V", gain = "60" }]\ngain = "15"\n'
+    ("reverse_bias", 'gain_points = [{ bias = "10 V", gain = "1" }, { bias = "100 V", gain = "20" },'
+     ' { bias = "120 V", gain = "60" }]\ngain = "15"\n'
      'breakdown_voltage = "140 V"\nbreakdown_temperature = "0.1 V/K"\nionisation_ratio = "0.02"'),
     ("reverse_voltage_max", 'reverse_voltage_max = "150 V"'),
     ("power ", 'power = { typ = "0.02 µW", max = "0.5 µW" }'),
