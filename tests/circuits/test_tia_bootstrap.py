@@ -47,7 +47,7 @@ AVALANCHE = (
      ' { bias = "120 V", gain = "60" }]\ngain = "15"\n'
      'breakdown_voltage = "140 V"\nbreakdown_temperature = "0.1 V/K"\nionisation_ratio = "0.02"'),
     ("reverse_voltage_max", 'reverse_voltage_max = "150 V"'),
-    ("power ", 'power = { typ = "0.02 µW", max = "0.5 µW" }'),
+    ("power ", 'power = { typ = "0.1 µW", max = "0.5 µW" }'),
     ("ambient ", 'ambient = "10 nA"'),
 )  # fmt: skip
 KINDS = {"cathode": (), "anode": ANODE, "pjf": P_CHANNEL, "pjf, anode": (*P_CHANNEL, *ANODE), "single": SINGLE}
