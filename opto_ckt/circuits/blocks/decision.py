@@ -18,7 +18,7 @@ import numpy as np
 from opto_ckt.circuit import Bench, Block, Fitted, Refusal, Stress
 from opto_ckt.circuits.receivers.amplifier import either_sign
 from opto_ckt.circuits.receivers.board import BYPASS, level_node, negative_node
-from opto_ckt.circuits.receivers.detector import midband
+from opto_ckt.circuits.receivers.detector import direction, midband
 from opto_ckt.derivation import Derivation
 from opto_ckt.formulas import comparator, decision
 from opto_ckt.formulas.reference import filter_capacitance, upper_resistance
@@ -81,8 +81,8 @@ def topology(request: ReceiverRequest) -> Topology:
 
 
 def _rail(request: ReceiverRequest) -> str:
-    """The rail on the side to which light drives the output of an inverting amplifier."""
-    return "positive" if request.detector.output == "cathode" else "negative"
+    """The rail on the side to which light drives the output."""
+    return "positive" if direction(request) > 0 else "negative"
 
 
 def given(request: ReceiverRequest) -> dict[str, Limit]:
@@ -148,7 +148,7 @@ def _levels(request: ReceiverRequest, bench: Bench, exact: Values) -> Levels:
     standing = 0.0 if midband(request) else responsivity_of_ambient(bench, gain, responsivity)
     swing = float(decision.modulation_amplitude(average_power=average, extinction_ratio=ratio)) * gain
     middle = (average * gain if passes_dc(request) else 0.0) + standing
-    sign = 1.0 if request.detector.output == "cathode" else -1.0
+    sign = direction(request)
     return Levels(sign * (middle + swing / 2), sign * (middle - swing / 2), rms, rms)
 
 
