@@ -30,6 +30,7 @@ from opto_ckt.units import write
 SERIES = 1e3  #: R60: far above the receiver's output, far below the comparator's input; common practice [Ω]
 LOWER = 1e3  #: R63 of the threshold; common practice [Ω]
 NOISES = 4.0  #: hysteresis over the output noise, rms, where none is asked for; common practice
+FIRST_STAGE = ("feedback_resistance", "U1.transimpedance", "load.transimpedance")  #: whichever a receiver has [V/A]
 CORNER = 1e3  #: of the threshold's filter; common practice [Hz]
 
 
@@ -173,7 +174,8 @@ def remarks(values: Values, limits: Limits, request: ReceiverRequest) -> tuple[s
     series, feedback = float(np.median(values["R60"])), float(np.median(values["R61"]))
     width = span * series / (series + feedback)
     offset = 0.0 if request.comparator is None else request.comparator.offset_voltage.high
-    gain = float(np.median(values.get("feedback_resistance", values.get("U1.transimpedance", 0.0))))
+    first = next((values[name] for name in FIRST_STAGE if name in values), 0.0)
+    gain = float(np.median(first * values.get("second.gain", 1.0)))
     distance = 0.5 * gain * float(
         decision.modulation_amplitude(
             average_power=request.signal.power.nominal, extinction_ratio=request.signal.extinction_ratio

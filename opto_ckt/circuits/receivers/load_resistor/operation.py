@@ -42,12 +42,14 @@ def given(request: LoadResistorRequest) -> dict[str, Limit]:
 def bias(values: Values, request: LoadResistorRequest) -> dict[str, float | Lanes]:
     """Level, reverse bias after the drop across R1, levels at the average light."""
     foot = level_buffer.levels(values, request)
+    gain = 1 + values["R4"] / values["R5"] if amplified(request) else 1.0
     found = {
         **values,
         **fed(values, request, foot.get("node.level", 0.0), load=values["R1"]),
         **warmed(values, request.amplifier),
         **foot,
-        "buffer.gain": 1 + values["R4"] / values["R5"] if amplified(request) else 1.0,
+        "buffer.gain": gain,
+        "load.transimpedance": values["R1"] * gain,
     }
     return {**found, **_levels(found, request)}
 
@@ -101,7 +103,7 @@ class LoadFigures(ReceiverFigures):
             request,
             headroom=gain * headroom,
             dark_shift=self._dark + self._error,
-            stage_gain=values["R1"] * gain,
+            stage_gain=values["load.transimpedance"],
         )
 
     @cached_property

@@ -67,7 +67,9 @@ def _other_form(values: Values, request: LoadResistorRequest) -> list[str]:
         return []
     across, frequency = float(np.median(capacitance(values))), noise_frequency(request)
     room = np.minimum.reduce(np.broadcast_arrays(*rooms({**values, "buffer.gain": 1.0}, request).values()))
-    by_light = float(np.min(room) / max(float(np.max(most_current(values, request))), 1e-12))
+    bound = request.require.get("output_swing")
+    swing = min(float(np.min(room)), np.inf if bound is None or bound.max is None else bound.max)
+    by_light = swing / max(float(np.max(most_current(values, request))), 1e-12)
     by_gain = float(np.min(values["U1.gain_bandwidth"])) / (EQUALISED_TO * bandwidth)
     larger = min(
         by_light, float(load_for_bandwidth(capacitance=across, bandwidth=EQUALISED_TO * bandwidth / max(by_gain, 1e-9)))
@@ -121,7 +123,7 @@ def _dark_level(values: Values, request: LoadResistorRequest) -> list[str]:
 
 def _slew_rate(values: Values, request: LoadResistorRequest) -> list[str]:
     bandwidth = stage_bandwidth(request)
-    step = float(np.max(one_level(values, request) * values["R1"] * values["buffer.gain"]))
+    step = float(np.max(one_level(values, request) * values["load.transimpedance"]))
     if bandwidth is None or (needed := float(2 * np.pi * bandwidth * step / 2)) <= request.amplifier.slew_rate.low:
         return []
     slow = write(request.amplifier.slew_rate.low, "V/s")
