@@ -36,12 +36,14 @@ def said(result: Result, start: str) -> str:
 @pytest.mark.parametrize(
     ("bound", "form", "why"),
     [
-        ("2 pW/√Hz", "high impedance", "above the 1.80 pA/√Hz allowed"),
-        ("6 pW/√Hz", "low impedance", "within the 5.40 pA/√Hz allowed"),
+        ("2 pW/√Hz", "high impedance", "above the 1.60 pA/√Hz allowed"),
+        ("9 pW/√Hz", "low impedance", "within the 7.20 pA/√Hz allowed"),
     ],
 )
 def test_the_noise_asked_for_chooses_the_form(bound: str, form: str, why: str) -> None:
-    """0.9 A/W; a load for 8 MHz on 10.8 pF is 1.84 kΩ, 3.16 pA/√Hz at 60 °C."""
+    """0.8 A/W at least; by hand: 8 MHz on 9.2 + 1.8 + 0.3 pF take 1.76 kΩ. At 60 °C that makes 3.23 pA/√Hz, e_n of
+    7.5 nV/√Hz over it 4.26, over the capacitance at 1 MHz 0.53, shot noise of 1 µA 0.57: 5.40 pA/√Hz together.
+    """
     result = sized(
         "load-resistor",
         *BY_NOISE,
@@ -49,7 +51,7 @@ def test_the_noise_asked_for_chooses_the_form(bound: str, form: str, why: str) -
     )
     assert ("C5" in {part.ref for part in result.parts}) == (form == "high impedance")
     reason = said(result, form)
-    assert "makes 3.16 pA/√Hz" in reason
+    assert "makes up to 5.40 pA/√Hz" in reason
     assert why in reason
     if form == "high impedance":
         assert result.verdict == "met"
@@ -69,7 +71,7 @@ def test_the_sentence_on_the_other_form_comes_true() -> None:
     high = sized("load-resistor", *HIGH)
     largest = float(promise.split("up to ")[1].split(" kΩ")[0]) * 1e3
     quieter = float(promise.split(" to ")[-1].split(" pA")[0]) * 1e-12
-    assert value(high, "R1") < largest < 1.2 * value(high, "R1")  # overshoot and preferred values take their share
+    assert value(high, "R1") < largest < 1.3 * value(high, "R1")  # the overshoot of a corner takes its share
     assert quieter < high.figure("input_noise_density").nominal < 1.2 * quieter  # R4, R5 and the smaller R1
 
 
@@ -89,6 +91,18 @@ def test_a_zero_that_misses_its_pole_shows_as_its_ratio() -> None:
         assert figures["peaking"][0] == pytest.approx(max(20 * np.log10(shape.max()), 0.0), abs=2e-3)
     assert 20 * np.log10(1.2) == pytest.approx(1.58, abs=0.005)
     assert figures["peaking"][0] == 0
+
+
+def test_the_zero_lies_between_the_poles_that_capacitance_and_bias_make() -> None:
+    """Of a diode of 7.2 pF to 11 pF: it lifts for the one and droops for the other, and the band is kept at both."""
+    result = sized("load-resistor", *FAST[:2], ("front_end ", 'front_end = "high_impedance"'), ("peaking ", ""))
+    low, nominal, high = (
+        20 * np.log10((value(result, "R4") + value(result, "R5")) * value(result, "C5") / value(result, "R1") / across)
+        for across in (7.2e-12 + 1.2e-12 + 0.24e-12, 9e-12 + 1.5e-12 + 0.3e-12, 11e-12 + 1.8e-12 + 0.36e-12)
+    )
+    assert low > nominal > 0 > high
+    bandwidth = next(row for row in result.requirements if row.requirement.figure == "bandwidth")
+    assert bandwidth.met, bandwidth
 
 
 def test_corners_hold_the_doublet_that_the_sheet_allows() -> None:

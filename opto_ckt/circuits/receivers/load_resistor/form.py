@@ -3,9 +3,15 @@
 from __future__ import annotations
 
 from opto_ckt.circuits.receivers import board
-from opto_ckt.circuits.receivers.detector import GAIN_ROOM, level_factor, stage_bandwidth, wanted_transimpedance
-from opto_ckt.formulas.load_resistor import load_for_bandwidth
-from opto_ckt.formulas.noise import thermal_current_noise
+from opto_ckt.circuits.receivers.detector import (
+    GAIN_ROOM,
+    detector_limits,
+    level_factor,
+    noise_frequency,
+    stage_bandwidth,
+    wanted_transimpedance,
+)
+from opto_ckt.formulas.load_resistor import load_for_bandwidth, load_noise
 from opto_ckt.parts.avalanche import is_avalanche
 from opto_ckt.request import LoadResistorRequest
 from opto_ckt.topology import GROUND
@@ -55,7 +61,7 @@ def asked_transimpedance(request: LoadResistorRequest) -> float | None:
     bound, least = request.require.get("output_swing"), request.signal.power.min
     found = [wanted_transimpedance(request)]
     if bound is not None and bound.min and least:
-        current = request.detector.responsivity_spread(request.signal.wavelength).low * least * level_factor(request)
+        current = detector_limits(request)["D1.responsivity"].low * least * level_factor(request)
         found.append(GAIN_ROOM * bound.min / current)
     return max((value for value in found if value is not None), default=None)
 
@@ -70,16 +76,31 @@ def said(request: LoadResistorRequest) -> str:
         why = "nothing asked for needs less noise than it has"
     else:
         sign = "above" if loud > bound else "within"
-        why = f"a load for the bandwidth alone makes {write(loud, 'A/√Hz')}, {sign} the {write(bound, 'A/√Hz')} allowed"
+        why = f"a load for the bandwidth alone makes up to {write(loud, 'A/√Hz')} with its amplifier,"
+        why += f" {sign} the {write(bound, 'A/√Hz')} allowed"
     return f"{form}: {why}"
 
 
 def _plain_noise(request: LoadResistorRequest) -> float | None:
-    """Thermal noise of the load for the bandwidth alone, at the hot end. [A/√Hz]"""
-    load = plain_load(request)
-    if load is None:
+    """Input noise with the load for the bandwidth alone: hot, most capacitance, the loudest amplifier. [A/√Hz]"""
+    bandwidth, amplifier = stage_bandwidth(request), request.limits("amplifier")
+    if bandwidth is None:
         return None
-    return float(thermal_current_noise(resistance=load, temperature=request.conditions.temperature.high))
+    capacitance = detector_limits(request)["D1.capacitance"].high + amplifier["common_capacitance"][2]
+    capacitance += request.conditions.board_capacitance
+    hottest = request.conditions.temperature.high
+    dark = request.detector.dark_current_at(hottest, request.detector.dark_current.high)
+    return float(
+        load_noise(
+            load_resistance=load_for_bandwidth(capacitance=capacitance, bandwidth=bandwidth),
+            current=float(dark) + request.ambient_current.high,
+            temperature=hottest,
+            voltage_noise=amplifier["voltage_noise"][2],
+            current_noise=amplifier["current_noise"][2],
+            capacitance=capacitance,
+            frequency=noise_frequency(request),
+        )
+    )
 
 
 def _noise_bound(request: LoadResistorRequest) -> float | None:
@@ -89,5 +110,5 @@ def _noise_bound(request: LoadResistorRequest) -> float | None:
     current, power = request.require.get("input_noise_density"), request.require.get("nep_density")
     bounds = [] if current is None or not current.max else [current.max]
     if power is not None and power.max:
-        bounds.append(power.max * request.detector.responsivity_spread(request.signal.wavelength).nominal)
+        bounds.append(power.max * detector_limits(request)["D1.responsivity"].low)
     return min(bounds, default=None)

@@ -35,6 +35,17 @@ def input_capacitance(request: LoadResistorRequest, bench: Bench) -> dict[str, f
     }
 
 
+def capacitance_ends(request: LoadResistorRequest, bench: Bench, load: float) -> tuple[float, float]:
+    """Least capacitance across R1, and most: that of a diode whose bias the brightest light across R1 takes. [F]"""
+    brightness, detector = brightest(request, bench), request.detector
+    current = brightness["D1.responsivity"] * brightness["signal.power"] + brightness["D1.ambient_current"]
+    left = max(detector.resting_bias - load * current, 0.0)
+    around = ("U1.common_capacitance", "CB")
+    least = detector.capacitance_at(detector.resting_bias, bench.low("D1.capacitance"))
+    greatest = detector.capacitance_at(left, bench.high("D1.capacitance"))
+    return float(least) + sum(map(bench.low, around)), float(greatest) + sum(map(bench.high, around))
+
+
 def most(request: LoadResistorRequest) -> float:
     """Largest factor by which a resistor may pass its value: tolerance and temperature. [1]"""
     resistors, temperature = request.preferred.resistors, request.conditions.temperature

@@ -11,6 +11,7 @@ from opto_ckt.circuits.receivers.load_resistor import level_buffer
 from opto_ckt.circuits.receivers.load_resistor.form import amplified, asked_transimpedance, equalised
 from opto_ckt.circuits.receivers.load_resistor.load import (
     SHUNT,
+    capacitance_ends,
     check_output,
     chosen,
     from_bandwidth,
@@ -22,7 +23,7 @@ from opto_ckt.circuits.receivers.load_resistor.load import (
 )
 from opto_ckt.derivation import Derivation
 from opto_ckt.errors import InfeasibleError
-from opto_ckt.formulas import load_resistor, noise, reference, second_stage, transit
+from opto_ckt.formulas import load_resistor, reference, second_stage, transit
 from opto_ckt.limits import Values
 from opto_ckt.request import LoadResistorRequest
 from opto_ckt.units import write
@@ -77,7 +78,7 @@ def _buffer(
 def _equaliser(
     request: LoadResistorRequest, derivation: Derivation, bench: Bench, others: Values, overshoot: float
 ) -> list[Fitted]:
-    """R1 from swing or from the lift that the amplifier has left; zero on the pole of the input."""
+    """R1 from swing or from the lift that the amplifier has left; zero between the poles that the input may have."""
     bandwidth, capacitance = stage_bandwidth(request), sum(input_capacitance(request, bench).values())
     candidates = {"swing": from_swing(request, derivation, bench, overshoot)}
     if bandwidth is not None:
@@ -108,9 +109,11 @@ def _equaliser(
         )
     _stable(request, gain, f"R1 ≥ {write(load * request.amplifier.minimum_stable_gain.high / gain, 'Ω')}")
     lower = request.fixed.get("R5", SHUNT)
+    ends = capacitance_ends(request, bench, load)
     shaping = request.fixed.get("C5") or derivation.compute(
-        "C5", load_resistor.equaliser_capacitance, reason="zero on the pole of the input",
-        load_resistance=load, input_capacitance=capacitance, shunt=lower, gain=gain,
+        "C5", load_resistor.equaliser_capacitance,
+        reason=f"zero midway between the poles of {write(ends[0], 'F')} and {write(ends[1], 'F')} across R1",
+        load_resistance=load, input_capacitance=(ends[0] * ends[1]) ** 0.5, shunt=lower, gain=gain,
     )  # fmt: skip
     capacitors, resistors = request.preferred.capacitors.series, request.preferred.resistors.series
     return [
@@ -155,7 +158,6 @@ FORMULAS = (
     load_resistor.equaliser_gain,
     load_resistor.equaliser_capacitance,
     load_resistor.load_noise,
-    noise.thermal_current_noise,
     second_stage.gain_for_transimpedance,
     second_stage.upper_feedback_resistance,
     transit.corner_frequency,
