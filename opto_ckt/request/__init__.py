@@ -13,6 +13,7 @@ if TYPE_CHECKING:
         BootstrapRequest,
         CascodeRequest,
         FixedTiaRequest,
+        LoadResistorRequest,
         OpAmpReceiverRequest,
         ReceiverRequest,
     )
@@ -22,6 +23,7 @@ __all__ = [
     "CascodeRequest",
     "FixedTiaRequest",
     "LaserDriverRequest",
+    "LoadResistorRequest",
     "OpAmpReceiverRequest",
     "ReceiverRequest",
     "Request",
@@ -31,6 +33,7 @@ LOADED_ON_USE = {
     "BootstrapRequest": "receiver",
     "CascodeRequest": "receiver",
     "FixedTiaRequest": "receiver",
+    "LoadResistorRequest": "receiver",
     "OpAmpReceiverRequest": "receiver",
     "ReceiverRequest": "receiver",
     "LaserDriverRequest": "driver",

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterator, Mapping
 from dataclasses import dataclass
-from typing import Annotated, Any, Literal
+from typing import Annotated, Any, ClassVar, Literal
 
 from pydantic import Field
 
@@ -108,7 +108,7 @@ class Target(Table):
     noise_frequency: Annotated[float | None, Unit("Hz", "1 MHz")] = None
     noise_band: Band | None = None
     balance: Literal["currents", "outputs"] = "currents"  #: where two detectors are subtracted
-    front_end: Literal["low_impedance", "high_impedance"] = "low_impedance"  #: of a load resistor
+    front_end: Literal["low_impedance", "high_impedance"] | None = None  #: of a load resistor; else by the noise bound
     tee: Literal["resistive", "capacitive", "both"] = "resistive"  #: which part of the feedback is a tee
 
 
@@ -167,6 +167,8 @@ def _bias_reached(detector: Detector, bias: BiasSupply | None) -> Iterator[Findi
 class ReceiverRequest(Request):
     """A design file of a receiver."""
 
+    inverting: ClassVar[bool] = True  #: whether more current out of the amplifier's input raises its output
+
     detector: Detector
     amplifier: OpAmpData | None = None
     second_amplifier: OpAmpData | None = None  #: behind the first, or of a block; a second one of the first if left out
@@ -209,6 +211,12 @@ class OpAmpReceiverRequest(ReceiverRequest):
     """A design file of a receiver around an op amp."""
 
     amplifier: OpAmpData
+
+
+class LoadResistorRequest(OpAmpReceiverRequest):
+    """A design file of a receiver whose output follows the node that the photocurrent flows from."""
+
+    inverting = False
 
 
 class FixedTiaRequest(ReceiverRequest):

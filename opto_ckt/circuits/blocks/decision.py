@@ -18,7 +18,7 @@ import numpy as np
 from opto_ckt.circuit import Bench, Block, Fitted, Refusal, Stress
 from opto_ckt.circuits.receivers.amplifier import either_sign
 from opto_ckt.circuits.receivers.board import BYPASS, level_node, negative_node
-from opto_ckt.circuits.receivers.detector import midband
+from opto_ckt.circuits.receivers.detector import direction, midband
 from opto_ckt.derivation import Derivation
 from opto_ckt.formulas import comparator, decision
 from opto_ckt.formulas.reference import filter_capacitance, upper_resistance
@@ -30,6 +30,7 @@ from opto_ckt.units import write
 SERIES = 1e3  #: R60: far above the receiver's output, far below the comparator's input; common practice [Ω]
 LOWER = 1e3  #: R63 of the threshold; common practice [Ω]
 NOISES = 4.0  #: hysteresis over the output noise, rms, where none is asked for; common practice
+FIRST_STAGE = ("feedback_resistance", "U1.transimpedance", "load.transimpedance")  #: whichever a receiver has [V/A]
 CORNER = 1e3  #: of the threshold's filter; common practice [Hz]
 
 
@@ -81,8 +82,8 @@ def topology(request: ReceiverRequest) -> Topology:
 
 
 def _rail(request: ReceiverRequest) -> str:
-    """The rail on the side to which light drives the output of an inverting amplifier."""
-    return "positive" if request.detector.output == "cathode" else "negative"
+    """The rail on the side to which light drives the output."""
+    return "positive" if direction(request) > 0 else "negative"
 
 
 def given(request: ReceiverRequest) -> dict[str, Limit]:
@@ -148,7 +149,7 @@ def _levels(request: ReceiverRequest, bench: Bench, exact: Values) -> Levels:
     standing = 0.0 if midband(request) else responsivity_of_ambient(bench, gain, responsivity)
     swing = float(decision.modulation_amplitude(average_power=average, extinction_ratio=ratio)) * gain
     middle = (average * gain if passes_dc(request) else 0.0) + standing
-    sign = 1.0 if request.detector.output == "cathode" else -1.0
+    sign = direction(request)
     return Levels(sign * (middle + swing / 2), sign * (middle - swing / 2), rms, rms)
 
 
@@ -173,7 +174,8 @@ def remarks(values: Values, limits: Limits, request: ReceiverRequest) -> tuple[s
     series, feedback = float(np.median(values["R60"])), float(np.median(values["R61"]))
     width = span * series / (series + feedback)
     offset = 0.0 if request.comparator is None else request.comparator.offset_voltage.high
-    gain = float(np.median(values.get("feedback_resistance", values.get("U1.transimpedance", 0.0))))
+    first = next((values[name] for name in FIRST_STAGE if name in values), 0.0)
+    gain = float(np.median(first * values.get("second.gain", 1.0)))
     distance = 0.5 * gain * float(
         decision.modulation_amplitude(
             average_power=request.signal.power.nominal, extinction_ratio=request.signal.extinction_ratio

@@ -16,7 +16,7 @@ import numpy as np
 from opto_ckt.circuit import Bench, Block, Fitted, Heat, Refusal, Stress
 from opto_ckt.circuits.receivers.amplifier import either_sign, warmed
 from opto_ckt.circuits.receivers.board import BYPASS, negative_node
-from opto_ckt.circuits.receivers.detector import POLARITY, wanted_transimpedance
+from opto_ckt.circuits.receivers.detector import direction, wanted_transimpedance
 from opto_ckt.derivation import Derivation
 from opto_ckt.errors import InfeasibleError
 from opto_ckt.formulas.second_stage import gain_for_transimpedance, upper_feedback_resistance
@@ -124,7 +124,7 @@ def bias(values: Values, request: ReceiverRequest) -> dict[str, float | Lanes]:
     gain = 1 + values["R50"] / values["R51"]
     found = warmed(values, data(request), "U50")
     offset = gain * found["U50.offset"] + values["R50"] * found["U50.bias_current"]
-    rising = POLARITY[request.detector.output] > 0
+    rising = direction(request) > 0
     limit = (
         values["supply.positive"] - values["U50.swing_to_positive"]
         if rising

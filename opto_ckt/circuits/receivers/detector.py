@@ -93,6 +93,12 @@ def _speed(values: Values, data: Detector, detector: str, gain: float | Lanes) -
     return 1 / np.sqrt(1 / np.square(transit) + np.square(gain / values[f"{detector}.gain_bandwidth_product"]))
 
 
+def direction(request: ReceiverRequest) -> float:
+    """Sign of the output step that light makes, whichever way the amplifier turns it."""
+    sign = POLARITY[request.detector.output]
+    return sign if request.inverting else -sign
+
+
 def level_factor(request: ReceiverRequest) -> float:
     """Power of a one over average power, 2 r/(r + 1) at equal numbers of ones and zeros; 1 for an analog signal."""
     if request.signal.bit_rate is None:

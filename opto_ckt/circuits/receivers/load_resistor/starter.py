@@ -51,15 +51,15 @@ bit_rate         = "10 Mbit/s"                       # or, analog: band = { min 
 extinction_ratio = "9 dB"
 
 [target]
-front_end       = "low_impedance"                    # low_impedance | high_impedance, with an equaliser
+front_end       = "low_impedance"                    # | high_impedance, with an equaliser; left out: by noise
 noise_frequency = "1 MHz"
 noise_band      = { min = "1 kHz", max = "10 MHz" }
 
 [conditions]
 temperature       = { min = "-20 °C", typ = "25 °C", max = "60 °C" }
 supply            = { positive = "5 V", negative = "-5 V", tolerance = "5 %" }
-# input_level     = "2.5 V"                          # of the + input, for a single supply (negative = "0 V")
-board_capacitance = "0.3 pF"                         # summing node to ground
+# input_level     = "2.5 V"                          # that R1 goes to, for a single supply (negative = "0 V")
+board_capacitance = "0.3 pF"                         # node of R1 to ground
 
 [require]                                            # any figure that the circuit offers, min and/or max
 bandwidth    = { min = "8 MHz" }

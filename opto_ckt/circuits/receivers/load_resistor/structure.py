@@ -3,9 +3,10 @@
 from __future__ import annotations
 
 from opto_ckt.circuits.receivers import board
-from opto_ckt.circuits.receivers.detector import wanted_transimpedance
 from opto_ckt.circuits.receivers.feed import bias_elements, bias_node, far_side, feed_drawn, photodiode
-from opto_ckt.request import OpAmpReceiverRequest
+from opto_ckt.circuits.receivers.load_resistor import level_buffer
+from opto_ckt.circuits.receivers.load_resistor.form import amplified, equalised
+from opto_ckt.request import LoadResistorRequest
 from opto_ckt.topology import GROUND, RIGHT, Capacitor, Element, OpAmp, Point, Resistor, Terminal, Topology
 
 SUM: Point = (3, 2.5)
@@ -13,23 +14,13 @@ OUT: Point = (12, 2)
 LOAD_X = 5.5  #: of R1 on the drawing
 
 
-def equalised(request: OpAmpReceiverRequest) -> bool:
-    """Whether the load is large and an equaliser undoes its integration."""
-    return request.target.front_end == "high_impedance"
-
-
-def amplified(request: OpAmpReceiverRequest) -> bool:
-    """Whether the buffer has gain at DC: where a transimpedance is asked for and R1 alone may not reach it."""
-    return not equalised(request) and wanted_transimpedance(request) is not None
-
-
-def topology(request: OpAmpReceiverRequest) -> Topology:
+def topology(request: LoadResistorRequest) -> Topology:
     """The load, the amplifier with what its form asks for, the level of a single supply, strays, load and bypass."""
     negative, level = board.negative_node(request), board.level_node(request)
     far: Point = (SUM[0], SUM[1] + 2 * far_side(request))
     supply, openings = feed_drawn(request, far)
     rails, rail_marks = board.rails(request, 14.5)
-    divider, divider_marks, divider_wires = board.level(request, 14.5)
+    divider, divider_marks, divider_wires = level_buffer.drawn(request, 14.5)
     shaped = equalised(request) or amplified(request)
     network, wires, marks = _network(request) if shaped else ([], [((7, 1.5), (6.5, 1.5)), ((6.5, 1.5), (6.5, -0.5)),
         ((6.5, -0.5), (9.5, -0.5))], [])  # fmt: skip
@@ -63,7 +54,6 @@ def topology(request: OpAmpReceiverRequest) -> Topology:
             ((8, 3), "positive"),
             ((8, 1), negative),
             (supply, bias_node(request)),
-            *board.servo_marks(request, (9.5, 2), SUM),
             ((LOAD_X, 0.5), level),
             *marks,
             *rail_marks,
@@ -76,10 +66,11 @@ def topology(request: OpAmpReceiverRequest) -> Topology:
 
 
 def _network(
-    request: OpAmpReceiverRequest,
+    request: LoadResistorRequest,
 ) -> tuple[list[Element], list[tuple[Point, Point]], list[tuple[Point, str]]]:
     """R4 and R5 around the inverting input; of an equaliser C5 between R5 and ground."""
-    foot = "foot" if equalised(request) else GROUND
+    level = board.level_node(request)
+    foot = "foot" if equalised(request) else level
     role = "equaliser" if equalised(request) else "gain"
     elements: list[Element] = [
         Resistor("R4", "set", "amp", role=role, at=(6.5, -0.5), to=(9.5, -0.5)),
@@ -87,6 +78,6 @@ def _network(
     ]
     wires: list[tuple[Point, Point]] = [((7, 1.5), (6.5, 1.5)), ((6.5, 1.5), (6.5, -0.5))]
     if not equalised(request):
-        return elements, wires, [((6.5, -2.5), GROUND)]
+        return elements, wires, [((6.5, -2.5), level)]
     elements.append(Capacitor("C5", foot, GROUND, role=role, at=(6.5, -2.5), to=(6.5, -4.5)))
     return elements, wires, [((6.5, -4.5), GROUND)]
