@@ -91,6 +91,10 @@ class Requirement:
         signed = distance if self.side == "min" else -distance
         return np.nan_to_num(signed / max(abs(self.bound), self.scale), nan=-1e9, posinf=1e9, neginf=-1e9)
 
+    def follows_from(self, other: Requirement) -> bool:
+        """Whether the other bound, kept, leaves this one nothing to say."""
+        return self.figure == other.figure and self.side == other.side and bool(self.margin(other.bound) >= 0)
+
 
 def varying(limits: Limits) -> tuple[str, ...]:
     """Names of the limits that vary, in order: what the columns of `Steps` stand for."""

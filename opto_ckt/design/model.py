@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
+from functools import cached_property
 from typing import Any
 
 import numpy as np
@@ -41,7 +42,11 @@ class Model:
         self.blocks = {name: block for name, block in asked.items() if fitted is None or name in fitted}
         self.circuit = with_blocks(circuit, self.blocks)
         self.topology: Topology = self.circuit.topology(request).with_blocks({})
-        self.limits: Limits = {**limits_of(self.topology, request), **self.circuit.given(request), **self._moved}
+
+    @cached_property
+    def limits(self) -> Limits:
+        """All that is not chosen; asked for once nothing is refused, for a record may be missing till then."""
+        return {**limits_of(self.topology, self.request), **self.circuit.given(self.request), **self._moved}
 
     def _with(self, fitted: tuple[str, ...]) -> Model:
         """The same circuit with some of its blocks."""

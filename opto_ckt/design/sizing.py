@@ -108,7 +108,8 @@ def choose_values(model: Model) -> Sized:
     elements = [model.topology[part.ref] for part in fitted]
     limits = {**model.limits, **tolerances_of(elements, request)}
     asked = _asked(request)
-    requirements = (*asked, *circuit.implied(request))
+    implied = (each for each in circuit.implied(request) if not any(each.follows_from(other) for other in asked))
+    requirements = (*asked, *implied)
     choice = choose(fitted, model.evaluate, requirements, limits)
     return Sized(model, fitted, limits, choice, derivation, requirements, len(asked))
 

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from numpy import sqrt
+from numpy import pi, sqrt
 
 from opto_ckt.constants import BOLTZMANN, ELEMENTARY_CHARGE
 from opto_ckt.formulas.formula import Real, source
@@ -125,3 +125,26 @@ def follower_input_capacitance(
     Well below g_m/(2π C_gs).
     """
     return gate_drain + gate_source / (1 + transconductance * load_resistance)
+
+
+@source("definition: transit of the base and the two junctions")
+def base_emitter_capacitance(*, transconductance: Real, transition_frequency: Real, collector: Real) -> Real:
+    r"""Capacitance from base to emitter of a bipolar transistor.
+
+    .. math:: C_\pi = \frac{g_m}{2\pi f_T} - C_\mu
+
+    Parameters
+    ----------
+    transconductance : g_m at the current. [A/V]
+    transition_frequency : f_T, taken to hold at that current. [Hz]
+    collector : C_μ from base to collector. [F]
+
+    Returns
+    -------
+    C_π. [F]
+
+    Notes
+    -----
+    Below the fall of f_T at small currents.
+    """
+    return transconductance / (2 * pi * transition_frequency) - collector

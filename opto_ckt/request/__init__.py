@@ -12,6 +12,7 @@ if TYPE_CHECKING:
     from opto_ckt.request.receiver import (
         BootstrapRequest,
         CascodeRequest,
+        DiscreteRequest,
         FixedTiaRequest,
         LoadResistorRequest,
         OpAmpReceiverRequest,
@@ -21,6 +22,7 @@ if TYPE_CHECKING:
 __all__ = [
     "BootstrapRequest",
     "CascodeRequest",
+    "DiscreteRequest",
     "FixedTiaRequest",
     "LaserDriverRequest",
     "LoadResistorRequest",
@@ -32,6 +34,7 @@ __all__ = [
 LOADED_ON_USE = {
     "BootstrapRequest": "receiver",
     "CascodeRequest": "receiver",
+    "DiscreteRequest": "receiver",
     "FixedTiaRequest": "receiver",
     "LoadResistorRequest": "receiver",
     "OpAmpReceiverRequest": "receiver",

@@ -168,6 +168,7 @@ class ReceiverRequest(Request):
     """A design file of a receiver."""
 
     inverting: ClassVar[bool] = True  #: whether more current out of the amplifier's input raises its output
+    levelled: ClassVar[bool] = True  #: whether an input level above 0 V is one that the board makes
 
     detector: Detector
     amplifier: OpAmpData | None = None
@@ -220,7 +221,9 @@ class LoadResistorRequest(OpAmpReceiverRequest):
 
 
 class FixedTiaRequest(ReceiverRequest):
-    """A design file of a receiver around a transimpedance amplifier that is bought whole."""
+    """A design file of a receiver around a transimpedance amplifier that is bought whole; its input rests by itself."""
+
+    levelled = False
 
     fixed_tia: FixedTiaData
 
@@ -233,5 +236,11 @@ class BootstrapRequest(OpAmpReceiverRequest):
 
 class CascodeRequest(OpAmpReceiverRequest):
     """A design file of a receiver whose photocurrent passes a transistor."""
+
+    transistor: BipolarData
+
+
+class DiscreteRequest(ReceiverRequest):
+    """A design file of a receiver made of transistors alone."""
 
     transistor: BipolarData

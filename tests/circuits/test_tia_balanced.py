@@ -13,7 +13,7 @@ from opto_ckt.analyses.network import Network
 from opto_ckt.analyses.network.expansion import expand
 from opto_ckt.analyses.response import rival_at, transfer_at
 from opto_ckt.analyses.symbolic import lcapy_transfer
-from opto_ckt.errors import InputError
+from opto_ckt.errors import InfeasibleError, InputError
 from opto_ckt.outputs.crosscheck import crosscheck
 from opto_ckt.outputs.simulators import ENGINES as SIMULATORS
 from opto_ckt.outputs.wiring import drawing_faults
@@ -54,6 +54,28 @@ def test_the_rival_is_the_transfer_of_a_network_with_the_other_input(changes: tu
     frequencies = np.geomspace(1e3, 1e8, 5)[:, None]
     expected = transfer_at(other.evaluate(biased), frequencies)
     np.testing.assert_allclose(rival_at(found.evaluation(biased), frequencies), expected, rtol=1e-9)
+
+
+SINGLE = (
+    ("supply  ", 'supply = { positive = "5 V", tolerance = "5 %" }\ninput_level = "1.5 V"'),
+    ("reverse_bias ", 'reverse_bias = "1.5 V"'),
+)
+
+
+def test_the_second_beam_alone_must_not_reach_the_other_limit() -> None:
+    """0.2 V below a level of 1.5 V, 2.25 V above it: the lesser room decides where the currents are subtracted."""
+    found = model("tia-balanced", *SINGLE)
+    chosen = PARTS | {"R2": 7e3, "R3": 3e3, "C2": 1e-6}
+    levels = {"U1.offset": 0.0, "U1.bias_current": 0.0, "D1.dark_current": 0.0, "D2.dark_current": 0.0}
+    figures = found.evaluate(found.nominal() | chosen | levels | {"signal.ambient": 0.0})
+    factor = 2 * 10**0.9 / (10**0.9 + 1)
+    overload, overshoot = (float(figures[name][0]) for name in ("overload", "overshoot"))
+    leaks = 0.3e-3  # of the node, through R1
+    assert overload * 0.9 * factor * 20e3 * (1 + overshoot) == pytest.approx(0.2 - leaks, rel=1e-3)
+    with pytest.raises(InfeasibleError, match="in the middle of the supply"):
+        sized("tia-balanced", *SINGLE)
+    middle = tuple((pattern, line.replace("1.5 V", "2.5 V")) for pattern, line in SINGLE)
+    assert sized("tia-balanced", *middle, ("output_swing ", "")).verdict == "met"
 
 
 def test_rejection_of_currents_is_that_of_the_responsivities() -> None:

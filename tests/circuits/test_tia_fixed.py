@@ -85,6 +85,41 @@ def test_decks_agree_and_there_is_no_loop(changes: tuple[tuple[str, str], ...], 
     assert [row for row in crosscheck(result, engine) if not row.ok] == []
 
 
+FILTERS = {
+    "none": "",
+    "rc": 'post_filter = { order = 1, cutoff = "105 MHz" }',
+    "ladder": 'post_filter = { order = 3, cutoff = "105 MHz", response = "flat" }',
+}
+
+
+@pytest.mark.parametrize("engine", ENGINES)
+@pytest.mark.parametrize("line", FILTERS.values(), ids=FILTERS.keys())
+def test_load_at_dc_pulls_the_output_down_through_a_passive_filter(line: str, engine: str) -> None:
+    result = sized("tia-fixed", ("coupling ", 'coupling = "dc"'), ("post_filter ", line))
+    rows = [row for row in crosscheck(result, engine) if row.quantity == "level of amp"]
+    assert len(rows) == len(result.scenes)
+    assert [row for row in rows if not row.ok] == []
+
+
+RESTING = ("board_capacitance ", 'board_capacitance = "0.1 pF"\ninput_level = "0.8 V"')
+
+
+@pytest.mark.parametrize("changes", [(), (("reverse_bias ", 'reverse_bias = "2.5 V"'),)], ids=["3.3 V", "2.5 V"])
+def test_input_that_rests_by_itself_asks_for_no_level_of_the_board(changes: tuple[tuple[str, str], ...]) -> None:
+    """Detector and coupling go to nodes that something drives, not to a level that nothing makes."""
+    topology = sized("tia-fixed", RESTING, *changes).topology
+    assert "level" not in {node for element in topology for node in element.nodes.values()}
+    assert topology["R40"].nodes["b"] == "0"
+
+
+def test_detector_without_bias_has_a_supply_at_the_resting_input() -> None:
+    plain = (r"\[bias\]", ""), ("supply           = \"3.3 V\"", ""), ("tolerance ", ""), ("ripple  ", "")
+    changes = *plain, ("ripple_frequency", ""), ("bias_filter ", ""), ("reverse_bias ", 'reverse_bias = "0 V"')
+    found = model("tia-fixed", RESTING, *changes)
+    assert found.topology["D1"].nodes["cathode"] == found.topology["VB"].nodes["node"] == "bias"
+    assert found.nominal()["supply.bias"] == pytest.approx(0.8)
+
+
 @pytest.mark.parametrize("output", ["anode", "cathode"])
 def test_the_drawing_joins_what_the_topology_joins(output: str) -> None:
     changes = (("output ", f'output = "{output}"'),)
@@ -102,6 +137,8 @@ def test_filter_in_front_of_the_bandwidth_is_that_of_both() -> None:
         ((("capacitance  ", 'capacitance = "3 pF"'),), "the figures of fixed_tia hold up to 1.00 pF"),
         (((r"supply\s+= {", 'supply = { positive = "5 V" }'),), "above supply_max"),
         ((("reverse_bias", 'reverse_bias = "25 V"'),), "reverse_voltage_max"),
+        ((("post_filter ", 'gain_stage = { gain = "3" }'),), "needs an op amp"),
+        ((("post_filter ", 'post_filter = { order = 2, cutoff = "105 MHz" }'),), "needs an op amp"),
     ],
 )
 def test_what_does_not_go_is_refused(changes: tuple[tuple[str, str], ...], told: str) -> None:

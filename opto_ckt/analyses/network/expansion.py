@@ -52,7 +52,7 @@ def expand(topology: Topology) -> Expansion:
         input=nodes,
         gain=gain,
         output=topology.output,
-        loop=f"{topology.loop}.stage1" if topology.loop else None,
+        loop=_opened(topology[topology.loop]) if topology.loop else None,
         rival=_signal(topology[topology.rival]) if topology.rival else None,
     )
 
@@ -60,6 +60,11 @@ def expand(topology: Topology) -> Expansion:
 @singledispatch
 def _expand(element: Element) -> Parts:
     raise TypeError(f"no small-signal model for {type(element).__name__}")
+
+
+def _opened(element: Element) -> str:
+    """Primitive at which a loop through an element is opened: first stage of an op amp, channel of a transistor."""
+    return f"{element.ref}.{'channel' if isinstance(element, Transistor) else 'stage1'}"
 
 
 @singledispatch

@@ -3,12 +3,14 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
+from math import inf
 
 import numpy as np
 
 from opto_ckt.circuit import Bench, Fitted, Stress
 from opto_ckt.derivation import Derivation
 from opto_ckt.formulas import reference
+from opto_ckt.formulas.formula import Real
 from opto_ckt.limits import Limit, Values
 from opto_ckt.preferred import CHIP_RESISTORS
 from opto_ckt.request import ReceiverRequest
@@ -35,8 +37,8 @@ def negative_node(request: ReceiverRequest) -> str:
 
 
 def level_node(request: ReceiverRequest) -> str:
-    """Where the + input sits: ground, or the level of a single supply."""
-    return "level" if request.conditions.input_level > 0 else GROUND
+    """Where the + input sits: ground, or the level that the board makes of a single supply."""
+    return "level" if request.levelled and request.conditions.input_level > 0 else GROUND
 
 
 def rails(request: ReceiverRequest, x: float) -> tuple[list[Element], list[tuple[Point, str]]]:
@@ -79,6 +81,16 @@ def load(request: ReceiverRequest) -> list[Element]:
     if request.load.capacitance:
         parts.append(Capacitor("CL", "out", GROUND, role="load", fitted=False))
     return parts
+
+
+def dc_load(values: Values, request: ReceiverRequest) -> Real:
+    """What the output drives at DC: the load, through a filter without op amps or none; without end otherwise. [Ω]"""
+    post_filter = request.blocks.post_filter
+    held = {"ac_coupling", "gain_stage"} & set(request.blocks_asked)
+    if request.load.resistance is None or held or (post_filter is not None and post_filter.form == "active"):
+        return inf
+    path = ("R20", "L20.resistance", "L21.resistance") if post_filter is not None else ()
+    return values["RL"] + sum(values.get(name, 0.0) for name in path)
 
 
 def load_limits(request: ReceiverRequest) -> dict[str, Limit]:

@@ -26,7 +26,7 @@ def bias_node(request: ReceiverRequest) -> str:
     if request.bias is not None:
         return "bias"
     rails = {supply.negative: "negative", supply.positive: "positive", 0.0: GROUND}
-    if request.conditions.input_level > 0:
+    if request.levelled and request.conditions.input_level > 0:
         rails[request.conditions.input_level] = "level"
     return next((node for volts, node in rails.items() if abs(bias - volts) < 1e-9), "bias")
 

@@ -7,7 +7,7 @@ import numpy as np
 from opto_ckt.circuit import Fault, FaultOutcome
 from opto_ckt.circuits.receivers.detector import POLARITY, one_level
 from opto_ckt.limits import Lanes, Values
-from opto_ckt.request import OpAmpReceiverRequest
+from opto_ckt.request import OpAmpReceiverRequest, ReceiverRequest
 from opto_ckt.topology import OPEN, SHORT
 from opto_ckt.units import write
 
@@ -17,7 +17,7 @@ DIODE_DROP = 0.3  #: beyond a rail at which an input's protection begins to cond
 OVERLOAD = 10.0  #: light beyond the most asked for, as when a connector is probed with a test source
 
 
-def faults(request: OpAmpReceiverRequest) -> tuple[Fault, ...]:
+def faults(request: ReceiverRequest) -> tuple[Fault, ...]:
     """The cases of a receiver; each computed by overriding values."""
     return (
         Fault("detector open", {"D1.responsivity": 0.0, "D1.dark_current": 0.0, "signal.ambient": 0.0}),

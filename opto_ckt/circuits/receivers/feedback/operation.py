@@ -117,10 +117,14 @@ class FeedbackFigures(ReceiverFigures):
             values,
             evaluation,
             request,
-            headroom=headroom(values, request),
+            headroom=self._headroom_of(values, request),
             dark_shift=self._dark["shift"],
             stage_gain=values["feedback_resistance"] if request.blocks_asked else None,
         )
+
+    def _headroom_of(self, values: Values, request: OpAmpReceiverRequest) -> float | Lanes:
+        """In the direction of the signal. [V]"""
+        return rooms(values)[int(POLARITY[request.detector.output])]
 
     @cached_property
     def noise_gain(self) -> Lanes:
@@ -163,11 +167,12 @@ def figures(values: Values, evaluation: Evaluation, request: OpAmpReceiverReques
     return OnDemand(FeedbackFigures(values, evaluation, request), OFFERS)
 
 
-def headroom(values: Values, request: OpAmpReceiverRequest) -> float | Lanes:
-    """From the level to the output's limit in the direction of the signal. [V]"""
-    if POLARITY[request.detector.output] > 0:
-        return values["supply.positive"] - values["U1.swing_to_positive"] - values["input_level"]
-    return values["input_level"] - values["supply.negative"] - values["U1.swing_to_negative"]
+def rooms(values: Values) -> dict[int, float | Lanes]:
+    """From the level to the output's limit: upwards (1), downwards (-1). [V]"""
+    return {
+        1: values["supply.positive"] - values["U1.swing_to_positive"] - values["input_level"],
+        -1: values["input_level"] - values["supply.negative"] - values["U1.swing_to_negative"],
+    }
 
 
 def dark(values: Values, request: OpAmpReceiverRequest) -> dict[str, Lanes]:

@@ -7,7 +7,6 @@ from math import inf
 
 import numpy as np
 
-from opto_ckt.circuit import Bench
 from opto_ckt.circuits.receivers.detector import (
     POLARITY,
     brightest,
@@ -100,12 +99,12 @@ def _swing_resistance(stage: Stage, overshoot: float) -> float:
     most = brightest(request, bench)
     light, steady, dark = float(one_level(most, request)), most["D1.ambient_current"], most["D1.dark_current"]
     spread = (1 + overshoot) * _most(request)
-    rail = _headroom(request, bench) - bench.high("U1.offset_voltage")
+    rail = _headroom(stage) - bench.high("U1.offset_voltage")
     if rail <= 0:
         raise InfeasibleError(
             f"the output has no headroom: {write(rail, 'V')} between its resting level and its limit",
             [
-                f"conditions.input_level {'lower' if POLARITY[request.detector.output] > 0 else 'higher'}",
+                f"conditions.input_level {_way_out(stage)}",
                 f"conditions.supply wider by {write(-rail, 'V')}",
             ],
         )
@@ -131,11 +130,19 @@ def _most(request: ReceiverRequest) -> float:
     return (1 + resistors.tolerance) * (1 + resistors.temperature_coefficient * farthest)
 
 
-def _headroom(request: ReceiverRequest, bench: Bench) -> float:
-    level = request.conditions.input_level
-    if POLARITY[request.detector.output] > 0:
-        return bench.low("supply.positive") - bench.high("U1.swing_to_positive") - level
-    return level - bench.high("supply.negative") - bench.high("U1.swing_to_negative")
+def _headroom(stage: Stage) -> float:
+    bench, level, polarity = stage.bench, stage.request.conditions.input_level, POLARITY[stage.request.detector.output]
+    rooms = {
+        1: bench.low("supply.positive") - bench.high("U1.swing_to_positive") - level,
+        -1: level - bench.high("supply.negative") - bench.high("U1.swing_to_negative"),
+    }
+    return min(rooms.values()) if stage.both_ways else rooms[int(polarity)]
+
+
+def _way_out(stage: Stage) -> str:
+    if stage.both_ways:
+        return "in the middle of the supply"
+    return "lower" if POLARITY[stage.request.detector.output] > 0 else "higher"
 
 
 def _second_stage(stage: Stage) -> Callable[[Lanes], Lanes]:

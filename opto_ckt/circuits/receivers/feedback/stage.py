@@ -44,6 +44,7 @@ class Stage:
     capacitors: Callable[[float | Lanes], Values] = _capacitor  #: what is fitted for a feedback capacitance
     spread: float | None = None  #: of that capacitance, where it is not one part of the preferred tolerance
     smallest: float = BUILDABLE  #: capacitance that can be built [F]
+    both_ways: bool = False  #: light of a second detector drives the output the other way
 
     @property
     def input_capacitance(self) -> float:

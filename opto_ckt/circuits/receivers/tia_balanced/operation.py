@@ -76,7 +76,7 @@ def _likes(values: Values) -> dict[str, str]:
 class BalancedFigures(FeedbackFigures):
     """The receiver's figures for light on D1, and what is left of light on both.
 
-    Overload and swing are those of a missing second beam: a whole one through one diode.
+    Overload and swing are those of a missing beam: a whole one through either diode.
     """
 
     _request: OpAmpReceiverRequest
@@ -85,6 +85,12 @@ class BalancedFigures(FeedbackFigures):
         self._whole = values
         apart = np.abs(values["D1.dark_current"] - values["D2.dark_current"])
         super().__init__({**values, "D1.dark_current": apart, "summing_leak": 0.0}, evaluation, request)
+
+    def _headroom_of(self, values: Values, request: OpAmpReceiverRequest) -> float | Lanes:
+        """Where the currents are subtracted the second beam alone drives the output the other way. [V]"""
+        if by_outputs(request):
+            return super()._headroom_of(values, request)
+        return np.asarray(np.min(np.broadcast_arrays(*operation.rooms(values).values()), axis=0))
 
     @cached_property
     def dc_offset(self) -> Lanes:

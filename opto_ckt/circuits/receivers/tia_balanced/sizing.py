@@ -28,8 +28,9 @@ def propose(request: OpAmpReceiverRequest, derivation: Derivation, bench: Bench)
     InfeasibleError : the output has no headroom, or no C1 both damps the response and keeps the op amp stable.
     """
     others = level_values(request, derivation, bench)
-    stage = Stage(request, derivation, bench, summing_capacitance(request, bench), others)
-    if by_outputs(request):
+    capacitance, subtracted = summing_capacitance(request, bench), not by_outputs(request)
+    stage = Stage(request, derivation, bench, capacitance, others, both_ways=subtracted)
+    if not subtracted:
         stage = replace(
             stage,
             resistors=lambda resistance: {"R1": resistance, "R4": resistance},

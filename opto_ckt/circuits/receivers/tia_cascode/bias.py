@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from opto_ckt.circuit import Bench
+from opto_ckt.circuits.receivers import bipolar
 from opto_ckt.circuits.receivers.detector import POLARITY, stage_bandwidth
 from opto_ckt.circuits.receivers.tia_cascode import transistor
 from opto_ckt.constants import ROOM_TEMPERATURE
@@ -27,7 +28,7 @@ def bias_parts(request: CascodeRequest, derivation: Derivation, bench: Bench) ->
     for ref in request.fixed.keys() & {"R4", "R5"}:
         derivation.note(ref, "fixed in the design file")
     current, reason = rest_current(request, derivation, bench)
-    drift = transistor.DRIFT * (bench.low("temperature") - ROOM_TEMPERATURE)
+    drift = bipolar.DRIFT * (bench.low("temperature") - ROOM_TEMPERATURE)
     across, cold = _least_pull(request, bench), bench.high("Q1.base_emitter_voltage") + drift
     if across <= cold:
         raise InfeasibleError(

@@ -4,16 +4,15 @@ from __future__ import annotations
 
 import numpy as np
 
+from opto_ckt.circuits.receivers import bipolar
 from opto_ckt.circuits.receivers.detector import POLARITY
 from opto_ckt.constants import BOLTZMANN, ELEMENTARY_CHARGE, ROOM_TEMPERATURE
 from opto_ckt.formulas import common_base
-from opto_ckt.formulas.transistor import bipolar_transconductance
 from opto_ckt.limits import Lanes, Values
 from opto_ckt.request import CascodeRequest
 
 KIND = {"cathode": "npn", "anode": "pnp"}
 """Kind of Q1, by the end of the detector that feeds its emitter."""
-DRIFT = -2e-3  #: of the base-emitter voltage at a constant current, silicon; common practice [V/K]
 LEAST_STATED = 1e-6  #: a base-emitter voltage is not taken as stated at less [A]
 STEPS = 60  #: of the iteration, at most; it settles in far fewer
 
@@ -67,30 +66,18 @@ def base_emitter_voltage(values: Values, stated: float | Lanes, current: float |
             current=current,
             temperature=values["temperature"],
             reference_temperature=ROOM_TEMPERATURE,
-            coefficient=DRIFT,
+            coefficient=bipolar.DRIFT,
         )
     )
 
 
 def resting(values: Values, request: CascodeRequest, emitter: Lanes) -> dict[str, float | Lanes]:
     """Small-signal figures of Q1 and its voltages at a current of its emitter."""
-    gain, temperature = values["Q1.current_gain"], values["temperature"]
-    collector, base = emitter * gain / (gain + 1), emitter / (gain + 1)
-    transconductance = bipolar_transconductance(current=collector, temperature=temperature)
-    charge = transconductance / (2 * np.pi * values["Q1.transition_frequency"]) - values["Q1.collector_capacitance"]
+    gain = values["Q1.current_gain"]
     volts = base_emitter_voltage(values, stated_current(request, values["R4"]), emitter)
     return {
         "Q1.emitter_current": emitter,
-        "Q1.drain_current": collector,
-        "Q1.control_current": base,
-        "Q1.base_emitter": volts,
-        "Q1.control_voltage": volts - base * values["Q1.base_resistance"],
-        "Q1.transconductance": transconductance,
-        "Q1.input_conductance": transconductance / gain,
-        "Q1.output_conductance": 0.0,
-        "Q1.control_source_capacitance": np.maximum(charge, 1e-15),
-        "Q1.control_drain_capacitance": values["Q1.collector_capacitance"],
-        "Q1.channel_noise_factor": 0.5,
+        **bipolar.small_signal(values, "Q1", emitter * gain / (gain + 1), volts),
     }
 
 

@@ -10,7 +10,7 @@ from opto_ckt.analyses import response
 from opto_ckt.analyses.network import Evaluation
 from opto_ckt.circuit import OnDemand, Refusal
 from opto_ckt.circuits.receivers import refusals
-from opto_ckt.circuits.receivers.board import exactly, load_limits, stray
+from opto_ckt.circuits.receivers.board import dc_load, exactly, load_limits, stray
 from opto_ckt.circuits.receivers.detector import MIDBAND, detector_limits, level_factor, midband, wanted_bandwidth
 from opto_ckt.circuits.receivers.feed import bias_limit, fed
 from opto_ckt.circuits.receivers.figures import OFFERS as RECEIVER_OFFERS
@@ -48,11 +48,7 @@ def bias(values: Values, request: FixedTiaRequest) -> dict[str, float | Lanes]:
     current = found["D1.responsivity"] * found["signal.power"] + found["D1.ambient_current"] + found["D1.dark_current"]
     sign = 1.0 if request.detector.output == "cathode" else -1.0
     driven = sign * current * values["U1.transimpedance"] if passes_dc(request) else 0.0 * current
-    loads = request.load.resistance is not None and not {"ac_coupling", "post_filter", "gain_stage"} & set(
-        request.blocks_asked
-    )
-    share = values["RL"] / (values["RL"] + values["U1.output_resistance"]) if loads else 1.0
-    return {**found, "node.amp": driven * share}
+    return {**found, "node.amp": driven / (1 + values["U1.output_resistance"] / dc_load(values, request))}
 
 
 class FixedFigures(ReceiverFigures):
