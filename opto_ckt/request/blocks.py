@@ -60,6 +60,7 @@ class Servo(LowCutoff):
     """Loop that takes the steady light away."""
 
     range: Annotated[float | None, Unit("A", "50 µA")] = None  #: of steady current; else all that the design has
+    injection: Literal["resistor", "transistor"] = "resistor"  #: what carries it; a transistor reaches to the far rail
 
 
 class Decision(Table):
