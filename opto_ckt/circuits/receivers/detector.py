@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from itertools import product
+
 import numpy as np
 
 from opto_ckt.circuit import Bench
@@ -9,7 +11,7 @@ from opto_ckt.constants import BOLTZMANN, ELEMENTARY_CHARGE, ROOM_TEMPERATURE
 from opto_ckt.formulas.leakage import dark_current
 from opto_ckt.formulas.transit import bandwidth_of_rise_time
 from opto_ckt.limits import Lanes, Limit, Values
-from opto_ckt.parts.avalanche import excess_noise, gain_at, is_avalanche
+from opto_ckt.parts.avalanche import excess_noise, gain_at, gain_follows, is_avalanche
 from opto_ckt.parts.photodiode import PhotodiodeData
 from opto_ckt.parts.record import Spread, facts
 from opto_ckt.request import ReceiverRequest
@@ -132,8 +134,29 @@ def detector_limits(request: ReceiverRequest, detector: str = "D1") -> dict[str,
     }
 
 
-def on_the_bench(request: ReceiverRequest, bench: Bench, temperature: float) -> dict[str, float]:
-    """The detector at its resting bias and one temperature, in the most light, its currents at their most."""
+def bias_reach(request: ReceiverRequest, end: float, resting: float | None = None) -> float:
+    """Reverse bias at one end, -1 or 1, of the tolerances of its supply and of the amplifier's level. [V]
+
+    Parameters
+    ----------
+    resting : the bias at nominal, if not that of the request. [V]
+    """
+    bias = request.detector.resting_bias if resting is None else resting
+    supply, level = request.conditions.supply, request.conditions.input_level
+    far = level - POLARITY[request.detector.output] * bias
+    if not bias or (request.bias is None and far in (supply.positive, supply.negative)):
+        return bias * (1 + end * supply.tolerance)
+    own = supply.tolerance if request.bias is None else request.bias.tolerance
+    return max(bias + end * (own * abs(far) + supply.tolerance * abs(level)), 0.0)
+
+
+def on_the_bench(
+    request: ReceiverRequest, bench: Bench, temperature: float, reverse_bias: float | None = None
+) -> dict[str, float]:
+    """The detector at one temperature and a bias, the resting one if none is given, in the most light.
+
+    Its currents are at their most.
+    """
     most = ("dark_current", "multiplied_dark_current", "surface_dark_current", "responsivity")
     values = {
         name: bench.high(name) if name.removeprefix("D1.") in most else bench.nominal(name)
@@ -141,7 +164,7 @@ def on_the_bench(request: ReceiverRequest, bench: Bench, temperature: float) -> 
         if name.startswith("D1.")
     } | {
         "temperature": temperature,
-        "detector.reverse_bias": request.detector.resting_bias,
+        "detector.reverse_bias": request.detector.resting_bias if reverse_bias is None else reverse_bias,
         "signal.ambient": bench.high("signal.ambient"),
         "signal.power": bench.high("signal.power"),
     }
@@ -149,9 +172,10 @@ def on_the_bench(request: ReceiverRequest, bench: Bench, temperature: float) -> 
 
 
 def brightest(request: ReceiverRequest, bench: Bench) -> dict[str, float]:
-    """`on_the_bench` at the end of the temperature range where the most current flows."""
-    ends = (bench.high("temperature"), bench.low("temperature"))
-    found = [on_the_bench(request, bench, temperature) for temperature in ends]
+    """`on_the_bench` at the end of the temperature range, and of the bias where gain follows it, of most current."""
+    biases = [bias_reach(request, end) for end in (-1, 1)] if gain_follows(request.detector) else [None]
+    ends = product((bench.high("temperature"), bench.low("temperature")), biases)
+    found = [on_the_bench(request, bench, temperature, bias) for temperature, bias in ends]
 
     def current(values: dict[str, float]) -> float:
         return float(one_level(values, request)) + values["D1.ambient_current"] + values["D1.dark_current"]

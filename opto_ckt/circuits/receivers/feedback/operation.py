@@ -164,10 +164,22 @@ def figures(values: Values, evaluation: Evaluation, request: OpAmpReceiverReques
 
 
 def headroom(values: Values, request: OpAmpReceiverRequest) -> float | Lanes:
-    """From the level to the output's limit in the direction of the signal. [V]"""
+    """From the level to the output's limit in the direction of the signal: a rail's, or that of its current. [V]"""
     if POLARITY[request.detector.output] > 0:
-        return values["supply.positive"] - values["U1.swing_to_positive"] - values["input_level"]
-    return values["input_level"] - values["supply.negative"] - values["U1.swing_to_negative"]
+        rail = values["supply.positive"] - values["U1.swing_to_positive"] - values["input_level"]
+    else:
+        rail = values["input_level"] - values["supply.negative"] - values["U1.swing_to_negative"]
+    return np.minimum(rail, _driven(values, request))
+
+
+def _driven(values: Values, request: OpAmpReceiverRequest) -> float | Lanes:
+    """How far the output gets on its largest current, which feeds the feedback and a load at the output. [V]"""
+    conductance = 1 / values["feedback_resistance"]
+    drive = values["U1.output_current_max"]
+    if "RL" in values and "gain_stage" not in request.blocks_asked:
+        drive = drive - POLARITY[request.detector.output] * values["input_level"] / values["RL"]
+        conductance = conductance + 1 / values["RL"]
+    return drive / conductance
 
 
 def dark(values: Values, request: OpAmpReceiverRequest) -> dict[str, Lanes]:
