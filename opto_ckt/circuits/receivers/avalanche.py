@@ -100,7 +100,7 @@ def refused(request: ReceiverRequest) -> tuple[Refusal, ...]:
 
 
 def remarks(request: ReceiverRequest) -> list[str]:
-    """Gain and bias over temperature, and the caution that its voltage asks for."""
+    """Gain and bias over temperature, what stands for a shunt, and the caution that a voltage asks for."""
     detector = request.detector
     found = []
     if gain_follows(detector) and detector.resting_bias:
@@ -112,6 +112,11 @@ def remarks(request: ReceiverRequest) -> list[str]:
         found.append(
             f"avalanche gain {gain:.3g} at {write(bias, 'V')}; over {span} that bias gives {cold:.3g} … {hot:.3g},"
             f" the same gain takes {low} … {high}"
+        )
+    if not detector.resting_bias and detector.shunt_resistance is None:
+        found.append(
+            "the sheet of D1 states no shunt_resistance: without bias it is taken as kT/(q I_d), dark current as its"
+            " saturation current; measured ones are often higher"
         )
     if detector.resting_bias > DANGEROUS:
         found.append(

@@ -8,7 +8,7 @@ import numpy as np
 
 from opto_ckt.circuit import Bench
 from opto_ckt.constants import BOLTZMANN, ELEMENTARY_CHARGE, ROOM_TEMPERATURE
-from opto_ckt.formulas.leakage import dark_current
+from opto_ckt.formulas.leakage import dark_current, unbiased_shunt
 from opto_ckt.formulas.transit import bandwidth_of_rise_time
 from opto_ckt.limits import Lanes, Limit, Values
 from opto_ckt.parts.avalanche import excess_noise, gain_at, gain_follows, is_avalanche
@@ -19,6 +19,9 @@ from opto_ckt.request.detector import Detector
 
 POLARITY = {"cathode": 1.0, "anode": -1.0}
 """Sign of the output step that light makes, by the end of the diode that feeds an inverting amplifier."""
+
+LEAST_DARK = 1e-18  #: dark current taken of a diode that is said to have none [A]
+BIASED = 100.0  #: reverse bias over kT/q beyond which a junction conducts no more
 
 BANDWIDTH_PER_BIT_RATE = 0.7  #: common practice, between noise and eye closure
 MIDBAND = 0.01  #: of the bandwidth: where the gain of a data receiver that does not pass DC is stated
@@ -45,8 +48,7 @@ def detected(values: Values, request: ReceiverRequest, detector: str = "D1") -> 
         f"{detector}.capacitance": data.capacitance_at(bias, values.get(f"{detector}.capacitance")),
         f"{detector}.transit_frequency": _speed(values, data, detector, gain),
         f"{detector}.dark_current": dark + multiplied * gain,
-        f"{detector}.shunt_resistance": values[f"{detector}.shunt_resistance"]
-        * 2.0 ** (-(np.asarray(temperature) - ROOM_TEMPERATURE) / data.dark_current_doubling),
+        f"{detector}.shunt_resistance": _shunt(values, data, detector),
         f"{detector}.signal_current": signal,
         f"{detector}.ambient_current": ambient,
         f"{detector}.signal_shot": signal * noisy,
@@ -79,6 +81,22 @@ def _dark_currents(values: Values, data: Detector, detector: str) -> tuple[float
         at = data.resting_bias if data.dark_current_bias is None else data.dark_current_bias
         return 0.0, whole / gain_at(data, at, ROOM_TEMPERATURE)
     return warm(values.get(f"{detector}.surface_dark_current", 0.0)), warm(multiplied)
+
+
+def _shunt(values: Values, data: Detector, detector: str) -> Lanes:
+    """Shunt of the junction; where the sheet states none, what a junction of the dark current is near no bias. [Ω]
+
+    It grows as exp(V q/kT) with reverse bias, so that only an unbiased diode has it.
+    """
+    temperature = np.asarray(values["temperature"], dtype=float)
+    warming = 2.0 ** ((temperature - ROOM_TEMPERATURE) / data.dark_current_doubling)
+    stated = np.asarray(values[f"{detector}.shunt_resistance"] / warming)
+    if data.shunt_resistance is not None:
+        return stated
+    current = np.maximum(values[f"{detector}.dark_current"] * warming, LEAST_DARK)
+    unbiased = np.asarray(unbiased_shunt(saturation_current=current, emission=1.0, temperature=temperature))
+    ratio = np.asarray(values["detector.reverse_bias"]) * ELEMENTARY_CHARGE / (BOLTZMANN * temperature)
+    return np.asarray(np.minimum(stated, unbiased * np.exp(np.clip(ratio, 0.0, BIASED))))
 
 
 def _saturation(reverse_bias: float | Lanes, temperature: float | Lanes) -> Lanes:
