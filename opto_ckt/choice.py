@@ -65,6 +65,7 @@ def choose(
 ) -> Choice:
     """Preferred values with the largest smallest margin (counted up to 5 %), then nearest to the exact ones.
 
+    Where no combination keeps every bound, those that miss fewest come first: a bound out of reach costs no other one.
     Combinations are judged at nominal and at corners put together from each limit's own worst level, for each
     requirement, first at the exact values and again at each winner until no new corner turns up. Further ties: fewer
     distinct lines, commoner series, candidates' order. The margins are the worst found, not proven. A part that may be
@@ -231,10 +232,12 @@ class _Search:
         return list(found)
 
     def _winner(self, pool: list[tuple[int, ...]], corners: Sequence[Corner]) -> tuple[int, ...]:
-        """The first in rank: smallest margin up to `ENOUGH`, then what `_rank` compares."""
+        """The first in rank: fewest bounds missed, smallest margin up to `ENOUGH`, then what `_rank` compares."""
         self._judge(pool, corners)
         rows = np.array([self.place[combination] for combination in pool])
-        smallest = np.min(self.margins[rows], axis=1, initial=ENOUGH).round(DIGITS)
+        margins = self.margins[rows].round(DIGITS)
+        missed = np.sum(margins < 0, axis=1)
+        smallest = np.where(missed == missed.min(), np.min(margins, axis=1, initial=ENOUGH), -inf)
         ahead = [pool[index] for index in np.flatnonzero(smallest == smallest.max())]
         return min(ahead, key=self._rank)
 

@@ -86,10 +86,15 @@ class Requirement:
     scale: float  #: what a deviation is measured against where the bound is small
 
     def margin(self, achieved: Lanes | float) -> Lanes:
-        """Signed distance to the bound, as a share of max(\\|bound\\|, scale); nan counts as missed by far."""
+        """Signed distance to the bound, as a share of max(\\|bound\\|, scale); nan counts as missed by far.
+
+        Beside a bound and a scale of nothing any distance is a large one.
+        """
         distance = np.asarray(achieved, dtype=float) - self.bound
         signed = distance if self.side == "min" else -distance
-        return np.nan_to_num(signed / max(abs(self.bound), self.scale), nan=-1e9, posinf=1e9, neginf=-1e9)
+        measure = max(abs(self.bound), self.scale)
+        share = signed / measure if measure else np.where(signed == 0, 0.0, signed * np.inf)
+        return np.nan_to_num(share, nan=-1e9, posinf=1e9, neginf=-1e9)
 
     def follows_from(self, other: Requirement) -> bool:
         """Whether the other bound, kept, leaves this one nothing to say."""

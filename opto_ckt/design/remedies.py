@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
+from dataclasses import replace
 
 import numpy as np
 
@@ -10,12 +11,14 @@ from opto_ckt.analyses.corners import tolerances_of
 from opto_ckt.derivation import Derivation
 from opto_ckt.design.model import Model
 from opto_ckt.errors import InfeasibleError
+from opto_ckt.figures import FIGURES
 from opto_ckt.limits import Corner, Figures, Lanes, Limit, Requirement, values_at
 from opto_ckt.parts.record import Record, facts
 from opto_ckt.units import write
 
 STEPS = (1.25, 2.0, 4.0, 10.0)  #: how far a lever is moved before it is given up
 REFINEMENTS = 5
+WORSE = 0.01  #: loss of margin from which a move counts as the cause of a miss
 PASSIVE_UNITS = {"R": "Ω", "C": "F", "L": "H"}
 
 
@@ -27,18 +30,25 @@ class Remedies:
     model : as it was sized.
     exact : exact values of its fitted parts.
     corners : at which a moved design is judged.
+    others : every bound that has to be kept.
     """
 
-    def __init__(self, model: Model, exact: dict[str, float], corners: Sequence[Corner]) -> None:
+    def __init__(
+        self, model: Model, exact: dict[str, float], corners: Sequence[Corner], others: Sequence[Requirement]
+    ) -> None:
         self._model = model
         self._corners = corners
+        self._others = others
         self._levers = {
             lever: nominal for lever in model.circuit.levers if (nominal := exact.get(lever) or _nominal(model, lever))
         }
         self._moved: dict[tuple[str, float], Figures | None] = {}
 
-    def of(self, requirement: Requirement) -> tuple[str, ...]:
-        """Levers that alone would do, such as ``U1 gain bandwidth ≥ 310 MHz``; at exact values."""
+    def of(self, requirement: Requirement, worst: float) -> tuple[str, ...]:
+        """Levers that alone would do, such as ``U1 gain bandwidth ≥ 310 MHz``; at exact values.
+
+        What such a move takes another bound past is told beside it; where no lever does, the bound that is in reach.
+        """
         if any(self._margin(lever, 1.0, requirement) >= 0 for lever in self._levers):
             return ("a finer series or closer tolerance: unrounded values meet it",)
         found = []
@@ -48,8 +58,28 @@ class Remedies:
             factor = self._least_factor(lever, way, requirement)
             if factor is not None:
                 sign = "≥" if way > 0 else "≤"
-                found.append(f"{_words(lever)} {sign} {write(float(nominal) * factor, self._unit(lever))}")
-        return tuple(found)
+                moved = f"{_words(lever)} {sign} {write(float(nominal) * factor, self._unit(lever))}"
+                found.append(moved + self._cost(lever, factor, requirement))
+        if requirement.figure == "overload":
+            found.append(f"signal power max ≤ {_told('overload', worst)}")
+        return tuple(found) or (self._in_reach(requirement, worst),)
+
+    def _cost(self, lever: str, factor: float, wanted: Requirement) -> str:
+        """What the move takes past its bound, or farther past it; nothing if all else stays as it was."""
+        figures = self._moved[lever, factor] or {}
+        lost: dict[str, str] = {}
+        for other in self._others:
+            here, there = self._margin(lever, 1.0, other), self._margin(lever, factor, other)
+            if other.figure not in (wanted.figure, *lost) and there < min(0.0, here - WORSE):
+                reached = float((np.min if other.side == "min" else np.max)(figures[other.figure]))
+                lost[other.figure] = f"{other.figure} to {_told(other.figure, reached)} for {_bound(other)}"
+        return f" but takes {', '.join(lost.values())}" if lost else ""
+
+    def _in_reach(self, requirement: Requirement, worst: float) -> str:
+        """The bound that could be asked for, where no lever within reach brings the one that is."""
+        parts = " or ".join(dict.fromkeys(lever.partition(".")[0] for lever in self._levers))
+        tried = f"; no figure of {parts} alone, changed up to {STEPS[-1]:.0f}-fold, does" if parts else ""
+        return f"to ask for {_bound(replace(requirement, bound=worst))}{tried}"
 
     def _least_factor(self, lever: str, way: int, requirement: Requirement) -> float | None:
         """Smallest move, as a factor, that turns the margin positive; None if none of `STEPS` does."""
@@ -102,6 +132,14 @@ class Remedies:
             return "V"
         record: Record = getattr(self._model.request, element.table)
         return facts(type(record))[figure].unit
+
+
+def _told(figure: str, value: float) -> str:
+    return write(value, FIGURES[figure].unit)
+
+
+def _bound(requirement: Requirement) -> str:
+    return f"{'≥' if requirement.side == 'min' else '≤'} {_told(requirement.figure, requirement.bound)}"
 
 
 def _nominal(model: Model, lever: str) -> float | Lanes:

@@ -173,14 +173,15 @@ def _requirement_rows(sized: Sized, found: Mapping[str, Extreme]) -> tuple[Found
     """A row for every bound asked for, and for each implied one that is missed."""
     rows = []
     corners = distinct(corner for extreme in found.values() for corner in (extreme.at_low, extreme.at_high))
-    ways = Remedies(sized.model, {part.ref: part.exact for part in sized.fitted}, corners)
+    exact = {part.ref: part.exact for part in sized.fitted}
+    ways = Remedies(sized.model, exact, corners, sized.requirements)
     for index, requirement in enumerate(sized.requirements):
         extreme = found[requirement.figure]
         worst, at = _worst(requirement, found)
         met = bool(requirement.margin(worst) >= 0)
         if not met or index < sized.asked:
             unit = si_unit(FIGURES[requirement.figure].unit)
-            remedies = () if met else ways.of(requirement)
+            remedies = () if met else ways.of(requirement, worst)
             rows.append(FoundRequirement(requirement, extreme.nominal, worst, at, unit, remedies))
     return tuple(rows)
 

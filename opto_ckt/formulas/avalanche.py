@@ -128,6 +128,35 @@ def optimum_gain(*, thermal_noise: Real, quality: Real, bandwidth: Real, ionisat
     return sqrt((thermal_noise / (ELEMENTARY_CHARGE * quality * bandwidth) + ionisation_ratio - 1) / ionisation_ratio)
 
 
+@source("derived: least of 2q I M^x + i²/M²; J. M. Senior, Optical Fiber Communications, Ex. 9.6, with 4kT F_n/R_L")
+def optimum_gain_in_noise(*, current_noise: Real, current: Real, exponent: Real) -> Real:
+    r"""Gain at which the signal stands highest above the noise of any amplifier.
+
+    .. math:: M = \left(\frac{i^2}{x q I}\right)^{1/(2 + x)}
+
+    Parameters
+    ----------
+    current_noise : i of all that follows the detector, referred to its current. [A/√Hz]
+    current : I, primary photocurrent and multiplied dark current. [A]
+    exponent : x of the excess noise F = M^x. [1]
+
+    Returns
+    -------
+    M. [1]
+
+    Notes
+    -----
+    Below 1 the diode is better without its gain.
+
+    Examples
+    --------
+    >>> gain = optimum_gain_in_noise(current_noise=1e-12, current=1e-8, exponent=0.3)
+    >>> print(f"{gain:.1f}")
+    27.7
+    """
+    return (current_noise**2 / (exponent * ELEMENTARY_CHARGE * current)) ** (1 / (2 + exponent))
+
+
 @source("J. M. Senior, Optical Fiber Communications, Ex. 9.6: best signal-to-noise ratio into a load resistor")
 def optimum_gain_into_load(
     *, temperature: Real, noise_factor: Real, load_resistance: Real, current: Real, exponent: Real

@@ -6,7 +6,7 @@ import math
 from statistics import NormalDist
 
 import numpy as np
-from numpy import log, sqrt
+from numpy import log, pi, sqrt
 
 from opto_ckt.constants import ELEMENTARY_CHARGE
 from opto_ckt.formulas.formula import Real, source
@@ -31,6 +31,75 @@ def quality_for_error_ratio(*, error_ratio: Real) -> Real:
     normal = NormalDist()
     quality: Real = np.vectorize(lambda ratio: -normal.inv_cdf(ratio), otypes=[float])(error_ratio)[()]
     return quality
+
+
+@source("Poisson law: a mark without a photon is taken for a space; J. M. Senior, Ex. 9.1, asks for one mark in 1/BER")
+def photons_for_error_ratio(*, error_ratio: Real) -> Real:
+    r"""Photons that a mark must hold on average where nothing but their number is uncertain: the quantum limit.
+
+    .. math:: N = -\ln(2 B)
+
+    Parameters
+    ----------
+    error_ratio : B, below one half. [1]
+
+    Returns
+    -------
+    N of a mark, each photon counted; half of it on average over marks and spaces. [1]
+
+    Notes
+    -----
+    Dark zeros, no dark current, quantum efficiency 1; textbooks that count errors of marks alone print -ln B.
+
+    Examples
+    --------
+    >>> print(f"{photons_for_error_ratio(error_ratio=1e-9):.2f}")
+    20.03
+    """
+    photons: Real = -log(2 * error_ratio)
+    return photons
+
+
+@source("S. D. Personick, 1973; the integrals are those of `personick_integrals`")
+def noise_at_bit_rate(
+    *,
+    white_noise: Real,
+    voltage_noise: Real,
+    capacitance: Real,
+    bit_rate: Real,
+    second_integral: Real,
+    third_integral: Real,
+) -> Real:
+    r"""Rms noise of a front end behind the filter that shapes its pulses, as a current of the detector.
+
+    .. math:: \sqrt{i^2 I_2 B + (2\pi C e_n)^2 I_3 B^3}
+
+    Parameters
+    ----------
+    white_noise : i, all white densities together: thermal, shot, i_n, e_n/R_f. [A/√Hz]
+    voltage_noise : e_n of the amplifier, white. [V/√Hz]
+    capacitance : C of diode, amplifier and board. [F]
+    bit_rate : B. [Hz]
+    second_integral : I_2. [1]
+    third_integral : I_3. [1]
+
+    Returns
+    -------
+    The rms current. [A]
+
+    Notes
+    -----
+    Shot noise taken as constant over the bit.
+
+    Examples
+    --------
+    >>> noise = noise_at_bit_rate(white_noise=1e-12, voltage_noise=5e-9, capacitance=10e-12, bit_rate=10e6,
+    ...     second_integral=0.5638, third_integral=0.0868)
+    >>> print(f"{noise * 1e9:.2f} nA")
+    3.77 nA
+    """
+    rising = 2 * pi * capacitance * voltage_noise
+    return sqrt(white_noise**2 * second_integral * bit_rate + rising**2 * third_integral * bit_rate**3)
 
 
 @source("definition, marks and spaces equally many")

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from numpy import log
 
-from opto_ckt.constants import BOLTZMANN
+from opto_ckt.constants import BOLTZMANN, ELEMENTARY_CHARGE
 from opto_ckt.formulas.formula import Real, source
 
 
@@ -54,6 +54,34 @@ def shunt_resistance(*, shunt_resistance: Real, temperature: Real, reference_tem
     Some tens of kelvin around T_0.
     """
     return shunt_resistance * 2.0 ** ((reference_temperature - temperature) / halving)
+
+
+@source("derived: slope of I_0 (exp(qV/(nkT)) - 1) at no voltage")
+def unbiased_shunt(*, saturation_current: Real, emission: Real, temperature: Real) -> Real:
+    r"""Resistance that a junction itself is at no bias.
+
+    .. math:: R_{sh} = \frac{n k T}{q I_0}
+
+    Parameters
+    ----------
+    saturation_current : I_0 of the junction, without surface leakage. [A]
+    emission : n, 1 for diffusion and 2 for generation. [1]
+    temperature : T. [K]
+
+    Returns
+    -------
+    R_sh; beside it lies what leaks along the surface. [Ω]
+
+    Notes
+    -----
+    Within some millivolts of zero; I_0 at the temperature.
+
+    Examples
+    --------
+    >>> print(f"{unbiased_shunt(saturation_current=25.7e-12, emission=1.0, temperature=298.15) / 1e9:.2f} GΩ")
+    1.00 GΩ
+    """
+    return emission * BOLTZMANN * temperature / (ELEMENTARY_CHARGE * saturation_current)
 
 
 @source("derived: dark current ∝ exp(-E_g/(2kT)), generation in the depleted layer")

@@ -106,6 +106,35 @@ def noise_equivalent_power(*, current_noise: Real, responsivity: Real) -> Real:
     return current_noise / responsivity
 
 
+@source("J. M. Senior, Optical Fiber Communications, Ex. 9.4: the amplifier makes the load's thermal noise worse")
+def noise_with_amplifier(*, shot: Real, thermal: Real, noise_figure: Real) -> Real:
+    r"""Shot noise and the thermal noise of a load, behind an amplifier of a noise figure.
+
+    .. math:: \sqrt{i_s^2 + i_t^2 \cdot 10^{F_{dB}/10}}
+
+    Parameters
+    ----------
+    shot : i_s, rms. [A]
+    thermal : i_t of the load, rms. [A]
+    noise_figure : F_dB of the amplifier, stated for that load at its temperature. [dB]
+
+    Returns
+    -------
+    The rms current, referred to the detector; densities give a density. [A]
+
+    Notes
+    -----
+    Shot noise is not thermal noise of the load: the figure does not raise it.
+
+    Examples
+    --------
+    >>> noise = noise_with_amplifier(shot=1.44e-19**0.5, thermal=2.02e-17**0.5, noise_figure=3.0)
+    >>> print(f"{signal_to_noise(signal=8.71e-8, noise=noise):.2f} dB")
+    22.73 dB
+    """
+    return sqrt(shot**2 + thermal**2 * 10.0 ** (noise_figure / 10))
+
+
 @source("definition")
 def signal_to_noise(*, signal: Real, noise: Real) -> Real:
     r"""Ratio of signal power to noise power.

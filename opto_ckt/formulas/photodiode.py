@@ -86,6 +86,33 @@ def responsivity(*, quantum_efficiency: Real, wavelength: Real) -> Real:
     return quantum_efficiency * ELEMENTARY_CHARGE * wavelength / (PLANCK * LIGHT_SPEED)
 
 
+@source("A. Fresnel, light straight onto the surface; S. C. Gupta, Ex. 5.30, has bare silicon")
+def surface_reflection(*, index: Real, outside_index: Real) -> Real:
+    r"""Share of the light that a bare surface throws back.
+
+    .. math:: \left(\frac{n - n_0}{n + n_0}\right)^2
+
+    Parameters
+    ----------
+    index : n of the detector. [1]
+    outside_index : n_0 of what is before it, 1 for air. [1]
+
+    Returns
+    -------
+    The share; responsivity of a bare surface is lower by as much. [1]
+
+    Notes
+    -----
+    No coating, n real.
+
+    Examples
+    --------
+    >>> print(f"{surface_reflection(index=3.5, outside_index=1.0):.2f}")
+    0.31
+    """
+    return ((index - outside_index) / (index + outside_index)) ** 2
+
+
 @source("definition: photon energy equals band gap; G. Keiser, Optical Fiber Communications, Ex. 6.4")
 def cutoff_wavelength(*, band_gap: Real) -> Real:
     r"""Longest wavelength that a material detects.

@@ -37,6 +37,36 @@ def intercept_capacitance(*, feedback_resistance: Real, input_capacitance: Real,
     return sqrt(input_capacitance / (2 * pi * feedback_resistance * gain_bandwidth))
 
 
+@source("rule of thumb of data sheets: Texas Instruments THS4631 SLOS451B p. 10, LM6211 SNOSAH2C p. 20")
+def quadratic_capacitance(*, feedback_resistance: Real, input_capacitance: Real, gain_bandwidth: Real) -> Real:
+    r"""Feedback capacitance that counts itself among what loads the summing node.
+
+    .. math:: C_f = \frac{a + \sqrt{a^2 + 4 a C}}{2}, \quad a = \frac{1}{\pi R_f GBW}
+
+    Parameters
+    ----------
+    feedback_resistance : R_f. [Ω]
+    input_capacitance : C at the summing node. [F]
+    gain_bandwidth : GBW. [Hz]
+
+    Returns
+    -------
+    C_f; called maximally flat, yet overdamped: Q is 0.574 at 2π GBW R_f C = 5, 0.692 at 1000. [F]
+
+    Notes
+    -----
+    C_i ≫ C_f; `opto_ckt.formulas.transimpedance.feedback_capacitance` is exact.
+
+    Examples
+    --------
+    >>> c_f = quadratic_capacitance(feedback_resistance=100e3, input_capacitance=23.3e-12, gain_bandwidth=230e6)
+    >>> print(f"{c_f * 1e12:.3f} pF")
+    0.575 pF
+    """
+    a = 1 / (pi * feedback_resistance * gain_bandwidth)
+    return (a + sqrt(a**2 + 4 * a * input_capacitance)) / 2
+
+
 @source("rule of thumb of data sheets: Texas Instruments LMH6611 SNOSB00K p. 32, OPA656 SBOS196I 8.2.2")
 def intercept_frequency(*, feedback_resistance: Real, input_capacitance: Real, gain_bandwidth: Real) -> Real:
     r"""Frequency at which the rising noise gain meets the open-loop gain.

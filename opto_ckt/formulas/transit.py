@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from numpy import log, pi, sqrt
+from numpy import exp, log, pi, sqrt
 
 from opto_ckt.constants import ELEMENTARY_CHARGE
 from opto_ckt.formulas.formula import Real, source
@@ -52,6 +52,61 @@ def depleted_capacitance(*, permittivity: Real, area: Real, width: Real) -> Real
     W small beside the size of A; no change with bias.
     """
     return permittivity * area / width
+
+
+@source("absorption along the path of the light; J. Wilson & J. F. B. Hawkes, Optoelectronics, Ex. 7.6")
+def absorbed_share(*, absorption: Real, width: Real) -> Real:
+    r"""Share of the light entering a layer that is absorbed in it.
+
+    .. math:: f = 1 - e^{-\alpha W}
+
+    Parameters
+    ----------
+    absorption : α of the material at the wavelength. [1/m]
+    width : W of the layer. [m]
+
+    Returns
+    -------
+    f. [1]
+
+    Notes
+    -----
+    Light straight through once, no reflection from behind.
+
+    Examples
+    --------
+    >>> print(f"{absorbed_share(absorption=1e5, width=5.09e-6):.3f}")
+    0.399
+    """
+    share: Real = 1 - exp(-absorption * width)
+    return share
+
+
+@source("definition; J. M. Senior, Optical Fiber Communications, Ex. 8.4")
+def transit_time(*, velocity: Real, width: Real) -> Real:
+    r"""Time that carriers take across the depleted layer.
+
+    .. math:: t = W/v
+
+    Parameters
+    ----------
+    velocity : v, drift velocity. [m/s]
+    width : W of the depleted layer. [m]
+
+    Returns
+    -------
+    t, the longest. [s]
+
+    Notes
+    -----
+    Uniform velocity.
+
+    Examples
+    --------
+    >>> print(f"{transit_time(velocity=1e5, width=20e-6) * 1e12:.0f} ps")
+    200 ps
+    """
+    return width / velocity
 
 
 @source("derived: half power of a rectangular pulse of current as long as the transit, sinc(f W/v)")

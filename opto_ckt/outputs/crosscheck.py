@@ -13,7 +13,7 @@ from opto_ckt.analyses.network import Evaluation, Network
 from opto_ckt.analyses.network.expansion import expand
 from opto_ckt.outputs.readings import falls_to, integrated, phase_margin_of, rise_time_of, rises_to
 from opto_ckt.outputs.simulators import Vectors, run
-from opto_ckt.outputs.spice import deck_of, is_linear, kinds, levels, output_node, step_height
+from opto_ckt.outputs.spice import deck_of, is_linear, kinds, levels, output_node, step_height, step_times
 from opto_ckt.result import Result, Scene
 from opto_ckt.units import percent, write
 
@@ -95,6 +95,8 @@ def _levels(result: Result, scene: Scene, plot: Vectors, bounds: Bounds) -> Iter
 def _response(result: Result, scene: Scene, evaluation: Evaluation, plot: Vectors, bounds: Bounds) -> Iterator[Row]:
     frequency, answer = plot["frequency"], np.abs(plot[f"v({output_node(result.topology)})"])
     midband, reference = _midband(scene), _reference(scene, evaluation)
+    if midband is None:  # the gain at DC is not in the sweep: both are referred to its first frequency
+        reference = abs(complex(response.transfer_at(evaluation, frequency[0])[0]))
     corner = float(response.bandwidth(evaluation, reference)[0])
     middle = corner if np.isfinite(corner) else float(np.sqrt(frequency[0] * frequency[-1]))
     for index in _nearest(frequency, [middle * spot for spot in SPOTS]):
@@ -116,7 +118,7 @@ def _response(result: Result, scene: Scene, evaluation: Evaluation, plot: Vector
 def _midband(scene: Scene) -> float | None:
     """Frequency at which gain is stated where DC does not pass; None where it does. [Hz]"""
     low = scene.expected.get("low_cutoff", np.nan)
-    return float(np.sqrt(low * scene.expected["bandwidth"])) if np.isfinite(low) else None
+    return float(np.sqrt(low * scene.expected["bandwidth"])) if np.isfinite(low) and low > 0 else None
 
 
 def _reference(scene: Scene, evaluation: Evaluation) -> float | None:
@@ -155,6 +157,9 @@ def _loop(scene: Scene, evaluation: Evaluation, plot: Vectors, bounds: Bounds) -
 def _step(result: Result, scene: Scene, evaluation: Evaluation, plot: Vectors, bounds: Bounds) -> Iterator[Row]:
     reference = _reference(scene, evaluation)
     predicted = float(response.rise_time(evaluation, reference)[0])
+    start, end, _ = step_times(scene)
+    if reference is None and scene.expected.get("settling_time", 0.0) > end - start:  # the run ends before the tail
+        reference = abs(float(response.dc_gain(evaluation)[0]))
     if np.isfinite(predicted):
         height = None if reference is None else reference * step_height(result.topology, scene)
         simulated = rise_time_of(plot["time"], plot[f"v({output_node(result.topology)})"], height)

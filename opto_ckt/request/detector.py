@@ -5,8 +5,7 @@ from __future__ import annotations
 from collections.abc import Iterator, Mapping
 from typing import Annotated, Any, ClassVar, Literal
 
-from opto_ckt.constants import ROOM_TEMPERATURE
-from opto_ckt.parts.avalanche import bias_for_gain, breakdown, gain_follows, is_avalanche
+from opto_ckt.parts.avalanche import bias_for_gain, gain_follows, is_avalanche
 from opto_ckt.parts.photodiode import PhotodiodeData
 from opto_ckt.parts.record import Check, Choice, Finding, Table, Unit
 from opto_ckt.request.tables import RATIO
@@ -34,13 +33,6 @@ def _gain_reached(detector: Detector) -> Iterator[Finding]:
         yield Finding(("reverse_bias",), "the gain asked for sets the bias; leave out one of reverse_bias and gain")
     elif isinstance(wanted, float) and wanted < 1:
         yield Finding(("wanted_gain",), f"{wanted:g} is below 1")
-    elif isinstance(wanted, float):
-        bias = detector.resting_bias
-        ends = {"reverse_voltage_max": detector.reverse_voltage_max, "breakdown": breakdown(detector, ROOM_TEMPERATURE)}
-        for name, end in ends.items():
-            if bias >= end:
-                reached = f"a gain of {wanted:g} takes {write(bias, 'V')} at 25 °C, {name} is {write(end, 'V')}"
-                yield Finding(("wanted_gain",), f"{reached}; a lower gain, or another diode")
 
 
 class Detector(PhotodiodeData):

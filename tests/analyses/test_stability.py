@@ -15,7 +15,7 @@ from tests.analyses.networks import RECEIVER, loop_of_poles, low_pass, receiver,
 
 
 def test_exact_second_order():
-    """A 130 MHz op amp, 1 kΩ, 49 pF, 8 pF: receiver check RX-ST-01, by an ngspice run and by closed forms."""
+    """A 130 MHz op amp, 1 kΩ, 49 pF, 8 pF: figures of an ngspice run and of closed forms."""
     values = {
         "gain_bandwidth": 130e6,
         "R1": 1e3,
@@ -33,7 +33,7 @@ def test_exact_second_order():
 
 
 def test_two_pole_op_amp():
-    """230 MHz with a second pole at 230 MHz, 100 kΩ: receiver check RX-ST-03, its figures from an ngspice run."""
+    """230 MHz with a second pole at 230 MHz, 100 kΩ: figures of an ngspice run."""
     values = {
         "gain_bandwidth": 230e6,
         "second_pole": 230e6,
@@ -81,7 +81,7 @@ def _aligned(quality):
 
 
 def test_alignment_table():
-    """Margins and overshoots of the usual alignments: receiver check RX-TIA-14.
+    """Margins and overshoots of the usual alignments.
 
     Butterworth's 65° and 4.3 % stand in the OPA607 data sheet SBOS981J; the AD8065 and AD8067 data sheets print 2 dB
     and 15 % for Q = 1 and 5 % for the doubled capacitor, which are off: the exact figures are tested.

@@ -5,16 +5,28 @@ from __future__ import annotations
 import numpy as np
 import pytest
 from scipy.integrate import quad
+from scipy.optimize import brentq, minimize_scalar
 from scipy.special import erfc, ndtri
+from scipy.stats import poisson
 
 from opto_ckt.formulas.avalanche import (
     excess_noise_factor,
     excess_noise_power_law,
     multiplied_shot_noise,
     optimum_gain,
+    optimum_gain_in_noise,
     optimum_gain_into_load,
 )
-from opto_ckt.formulas.decision import error_ratio, personick_integrals, quality_for_error_ratio, sensitivity
+from opto_ckt.formulas.decision import (
+    error_ratio,
+    extinction_penalty,
+    modulation_amplitude,
+    noise_at_bit_rate,
+    personick_integrals,
+    photons_for_error_ratio,
+    quality_for_error_ratio,
+    sensitivity,
+)
 from opto_ckt.formulas.noise import (
     capacitance_current_noise,
     excess_noise,
@@ -25,6 +37,7 @@ from opto_ckt.formulas.noise import (
 )
 from opto_ckt.formulas.noise_figures import (
     capacitance_noise_crossover,
+    noise_with_amplifier,
     shot_equals_thermal_voltage,
     thermal_penalty,
 )
@@ -162,3 +175,87 @@ def test_optimum_gain_into_a_load_has_the_best_ratio():
         return (shot**2 + 2.0 * thermal**2) / gain**2
 
     assert noise(best) < min(noise(0.99 * best), noise(1.01 * best))
+
+
+def test_optimum_gain_in_noise_is_that_into_a_load_and_the_minimum():
+    known = {"current": np.array([1e-9, 1e-7]), "exponent": np.array([0.3, 1.0])}
+    thermal = thermal_current_noise(resistance=1e3, temperature=300.0)
+    best = optimum_gain_in_noise(current_noise=2**0.5 * thermal, **known)
+    into_load = optimum_gain_into_load(temperature=300.0, noise_factor=2.0, load_resistance=1e3, **known)
+    np.testing.assert_allclose(best, into_load, rtol=1e-12)
+    for current, exponent, gain in zip(known["current"], known["exponent"], best, strict=True):
+        found = minimize_scalar(
+            lambda m, i=current, x=exponent: 2 * 1.602176634e-19 * i * m**x + 2 * thermal**2 / m**2,
+            bounds=(1, 1000), method="bounded", options={"xatol": 1e-6},
+        )  # fmt: skip
+        assert gain == near(found.x, rel=1e-4)
+
+
+def test_excess_noise_at_its_ends():
+    """F is 2 - 1/M without the slower carrier, M with both alike, 1 without gain; arrays as numbers."""
+    gain = np.array([1.0, 2.0, 10.0, 300.0])
+    np.testing.assert_allclose(excess_noise_factor(gain=gain, ionisation_ratio=0.0), 2 - 1 / gain, rtol=1e-14)
+    np.testing.assert_allclose(excess_noise_factor(gain=gain, ionisation_ratio=1.0), gain, rtol=1e-14)
+    np.testing.assert_allclose(excess_noise_factor(gain=1.0, ionisation_ratio=np.linspace(0, 1, 5)), 1.0, rtol=1e-14)
+    np.testing.assert_allclose(excess_noise_power_law(gain=gain, exponent=np.array([0.0, 1, 1, 0])), [1, 2, 10, 1])
+
+
+def test_excess_noise_by_counting_carriers():
+    """One carrier that ionises alone: the number of its descendants is geometric, F = <n²>/<n>² = 2 - 1/M."""
+    for gain in (1.5, 8.0, 40.0):
+        n = np.arange(1, 20_000)
+        chance = (1 - 1 / gain) ** (n - 1) / gain
+        mean, square = chance @ n, chance @ n**2
+        assert mean == near(gain)
+        assert square / mean**2 == near(excess_noise_factor(gain=gain, ionisation_ratio=0.0))
+
+
+def test_photons_of_the_quantum_limit_by_the_poisson_law():
+    for ratio in (1e-3, 1e-9, 1e-15):
+        photons = photons_for_error_ratio(error_ratio=ratio)
+        assert poisson.pmf(0, photons) / 2 == near(ratio, rel=1e-9)
+
+
+def test_noise_at_a_bit_rate_is_the_integral_of_its_density():
+    """A rectangular pulse shaped into a raised cosine: its filter over white noise and noise that rises."""
+    bit_rate, capacitance, voltage_noise = 10e6, 12e-12, 4e-9
+    second, third = personick_integrals(rolloff=1.0, duty=1.0)
+
+    def density(y):
+        shaping = ((1 + np.cos(np.pi * y)) / 2 / np.sinc(y)) ** 2
+        rising = 2 * np.pi * capacitance * voltage_noise * y * bit_rate
+        return (1e24 * (1e-12) ** 2 + 1e24 * rising**2) * shaping * bit_rate
+
+    found = noise_at_bit_rate(
+        white_noise=1e-12, voltage_noise=voltage_noise, capacitance=capacitance, bit_rate=bit_rate,
+        second_integral=second, third_integral=third,
+    )  # fmt: skip
+    assert found == near(1e-12 * quad(density, 0, 1)[0] ** 0.5, rel=1e-9)
+
+
+def test_noise_figure_raises_thermal_noise_alone():
+    ten = noise_with_amplifier(shot=3e-9, thermal=np.array([0.0, 4e-9]), noise_figure=np.array([10.0, 0.0]))
+    np.testing.assert_allclose(ten, [3e-9, 5e-9], rtol=1e-12)
+
+
+def test_extinction_penalty_is_what_amplitude_is_missing():
+    ratio = np.array([1.01, 2.0, 8.33, 1e3])
+    share = modulation_amplitude(average_power=1.0, extinction_ratio=ratio) / 2
+    np.testing.assert_allclose(extinction_penalty(extinction_ratio=ratio), -10 * np.log10(share), rtol=1e-10)
+
+
+@pytest.mark.parametrize("ratio", [1.2, 3.0, 30.0, 1e4])
+@pytest.mark.parametrize("thermal", [1e-9, 3e-7])
+def test_sensitivity_against_a_search_for_the_power(ratio, thermal):
+    """Root of Q(P) = Q wanted, levels and noise put together anew for every trial."""
+    figures = {"responsivity": 0.8, "bandwidth": 0.7e9, "gain": 12.0, "excess_noise": 3.1}
+
+    def missing(logarithm):
+        zero = 2 * np.exp(logarithm) / (ratio + 1)
+        levels = figures["responsivity"] * figures["gain"] * zero * np.array([1, ratio])
+        shot = 2 * 1.602176634e-19 * levels * figures["gain"] * figures["excess_noise"] * figures["bandwidth"]
+        return (levels[1] - levels[0]) / np.sqrt(thermal**2 + shot).sum() - 6.0
+
+    found = np.exp(brentq(missing, np.log(1e-12), np.log(1.0), xtol=1e-14))
+    power = sensitivity(quality=6.0, thermal_noise=thermal, extinction_ratio=ratio, **figures)
+    assert power == near(found, rel=1e-9)

@@ -2,10 +2,11 @@
 
 from __future__ import annotations
 
-from math import log10
+from math import hypot, log10
 
 import pytest
 
+from opto_ckt.constants import LIGHT_SPEED, PLANCK
 from opto_ckt.formulas.decision import (
     error_ratio,
     extinction_penalty,
@@ -13,9 +14,14 @@ from opto_ckt.formulas.decision import (
     modulation_amplitude,
     overload_power,
     personick_integrals,
+    photons_for_error_ratio,
     quality_for_error_ratio,
     sensitivity,
 )
+from opto_ckt.formulas.noise import shot_noise, thermal_current_noise
+from opto_ckt.formulas.noise_figures import signal_to_noise
+from opto_ckt.formulas.output_noise import rms_in_band
+from opto_ckt.formulas.photodiode import photon_energy
 from tests.published.printed import printed
 
 
@@ -139,3 +145,38 @@ def test_personick():
     second, third = personick_integrals(rolloff=1.0, duty=0.5)
     assert second == printed("0.4026")
     assert third == printed("0.0361")
+
+
+def test_quantum_limit():
+    """J. C. Palais, Fiber Optic Communications, 11.6: 10 photons a bit on average at 1e-9.
+
+    J. M. Senior, Ex. 9.1, counts errors of marks alone, -ln B = 20.7 photons a mark; with as many spaces, which are
+    never mistaken, it is -ln 2B = 20.03.
+    """
+    photons = photons_for_error_ratio(error_ratio=1e-9)
+    assert photons == printed("20.03")
+    assert photons / 2 == printed("10.0")
+    as_printed = photons_for_error_ratio(error_ratio=1e-9 / 2)
+    assert as_printed == printed("20.7")
+    energy = photon_energy(wavelength=LIGHT_SPEED / 2.998e14)
+    assert as_printed * energy * 10e6 / 2 == printed("2.06e-11")
+    assert dbm(as_printed * energy * 10e6 / 2) == printed("-76.9")
+
+
+def test_palais_11_6():
+    """Palais, Ex. 11.6: ten photons of 820 nm in a microsecond; printed with h = 6.63e-34 and c = 3e8, 0.13 % high."""
+    power = 10 * photon_energy(wavelength=0.82e-6) / 1e-6
+    assert power == printed("2.42249e-12")
+    assert power * (6.63e-34 / PLANCK) * (3e8 / LIGHT_SPEED) == printed("2.4256e-12")
+
+
+def test_palais_11_1():
+    """Palais, Ex. 11.1: 10 mW less 44 dB, 0.5 A/W, 50 Ω at 300 K over 10 MHz; 10.77 dB is 10.776 cut off."""
+    power = 10e-3 * 10**-4.4
+    assert power == printed("3.98e-7")
+    current = 0.5 * power
+    assert current == printed("1.99e-7")
+    noise = hypot(shot_noise(current=current), thermal_current_noise(resistance=50.0, temperature=300.0))
+    ratio = signal_to_noise(signal=current, noise=rms_in_band(density=noise, bandwidth=10e6))
+    assert ratio == pytest.approx(10.77, abs=0.01)
+    assert ratio == printed("10.7756")

@@ -7,10 +7,12 @@ from math import hypot, log10, pi, sqrt
 import pytest
 
 from opto_ckt.constants import BOLTZMANN
+from opto_ckt.formulas.load_resistor import load_for_bandwidth
 from opto_ckt.formulas.loop import noise_gain
 from opto_ckt.formulas.noise import excess_noise, shot_noise, thermal_current_noise, thermal_voltage_noise
 from opto_ckt.formulas.noise_figures import (
     noise_equivalent_power,
+    noise_with_amplifier,
     shot_equals_thermal_voltage,
     signal_to_noise,
     thermal_penalty,
@@ -22,7 +24,7 @@ from opto_ckt.formulas.noise_generator import (
     resistance_for_shot_noise,
     resistance_for_voltage_noise,
 )
-from opto_ckt.formulas.output_noise import flicker_and_white, rms_in_band, thermal_output
+from opto_ckt.formulas.output_noise import flicker_and_white, rms_in_band, thermal_output, voltage_output
 from opto_ckt.formulas.photodiode import responsivity
 from opto_ckt.formulas.rules_of_thumb import band_limited_input_noise
 from opto_ckt.formulas.second_order import bandwidth_ratio, noise_bandwidth, square_noise_bandwidth
@@ -39,7 +41,7 @@ def test_senior_9_3_and_9_4():
     assert rms_in_band(density=shot_noise(current=current + 3e-9), bandwidth=5e6) == printed("3.80e-10")
     thermal = rms_in_band(density=thermal_current_noise(resistance=4e3, temperature=293.0), bandwidth=5e6)
     assert thermal == printed("4.50e-9")
-    noise = sqrt(1.44e-19 + 2.02e-17 * 10**0.3)
+    noise = noise_with_amplifier(shot=sqrt(1.44e-19), thermal=sqrt(2.02e-17), noise_figure=3.0)
     assert signal_to_noise(signal=8.71e-8, noise=noise) == printed("22.73")
 
 
@@ -84,6 +86,8 @@ def test_quantum_limit_exercise():
     noise = rms_in_band(density=shot_noise(current=current), bandwidth=20e6)
     assert current == printed("2.09704e-6")
     assert noise == printed("3.66597e-9")
+    assert current != printed("2.01e-6")
+    assert rms_in_band(density=shot_noise(current=2.01e-6), bandwidth=20e6) == printed("3.59e-9")
     assert signal_to_noise(signal=current, noise=noise) == printed("55")
 
 
@@ -94,7 +98,7 @@ def test_wilson_hawkes_9_1():
     """
     current = responsivity(quantum_efficiency=0.6, wavelength=1.3e-6) * 10e-6
     assert current == printed("6.3e-6")
-    best = 1 / (2 * pi * 500e6 * 1e-12)
+    best = load_for_bandwidth(capacitance=1e-12, bandwidth=500e6)
     assert corner_frequency(resistance=best, capacitance=1e-12) == near(500e6, rel=1e-12)
     assert best == printed("318.31")
     assert best == near(318.5, rel=0.002)
@@ -134,10 +138,12 @@ def test_opa928_teraohm():
 def test_johnson_table_3_1():
     """M. Johnson, Photodetection and Measurement (2003), table 3.1.
 
-    Printed 5.5e7 and 5.5e4 are cut off, 1754 is 0.7 % low: within 2 %, exact values beside them.
+    Printed 5.5e7 and 5.5e4 are cut off, 1754 and, a microampere, 1,754,000 are 0.7 % low: within 2 %, exact values
+    beside them.
     """
     for current, as_printed, exact in (
         (1e-3, 5.5e7, "5.58637e7"),
+        (1e-6, 1.754e6, "1.76657e6"),
         (1e-9, 5.5e4, "5.58637e4"),
         (1e-12, 1754, "1766.57"),
     ):
@@ -169,22 +175,25 @@ def test_opa656_popular_rule():
 
     2.8 pF of the amplifier are added from memory to the 25 pF: without them the rule gives 2.48 pA.
     """
-    density = band_limited_input_noise(
-        voltage_noise=7e-9,
-        current_noise=1.3e-15,
-        feedback_resistance=50e3,
-        input_capacitance=27.8e-12,
-        band=3.8e6,
-        temperature=1.6e-20 / (4 * BOLTZMANN),
-    )
+    figures = {
+        "voltage_noise": 7e-9,
+        "current_noise": 1.3e-15,
+        "feedback_resistance": 50e3,
+        "band": 3.8e6,
+        "temperature": 1.6e-20 / (4 * BOLTZMANN),
+    }
+    density = band_limited_input_noise(input_capacitance=27.8e-12, **figures)
     assert density == printed("2.7e-12")
+    assert density == printed("2.74511e-12")
+    assert band_limited_input_noise(input_capacitance=25e-12, **figures) == printed("2.48e-12")
 
 
 def test_ad823a_table_8():
     """Analog Devices, AD823A data sheet Rev. B pp. 16-18, table 8.
 
     Printed 55.17 µV is 0.12 % below the rule that it comes from; exact for a single pole is 54.64 µV, whatever the
-    input capacitance.
+    input capacitance. The sum of 149.1 µV is right to its digits. Its voltage term, 138.5 µV, belongs to 9.95 nV/√Hz
+    and not to the 14 nV/√Hz of the sheet's first page, with which it is 183 µV at the sheet's own 7.5 pF.
     """
     published_pole = 17e6 * 1.2e-12 / (1.2e-12 + 5e-12 + 1.3e-12 + 1.2e-12)
     by_rule = thermal_voltage_noise(resistance=50e3, temperature=300.0) * sqrt(pi / 2 * published_pole)
@@ -203,14 +212,30 @@ def test_ad823a_table_8():
         quality=quality_factor(**values),
     )
     assert exact == printed("5.4642e-5")
+    assert hypot(by_rule, 138.5e-6) == printed("1.491e-4")
+    loaded = values | {"input_capacitance": 7.5e-12}
+    stated = voltage_output(
+        voltage_noise=14e-9,
+        feedback_resistance=50e3,
+        total_capacitance=8.7e-12,
+        gain_bandwidth=17e6,
+        natural_frequency=natural_frequency(**loaded),
+        quality=quality_factor(**loaded),
+    )
+    assert stated == printed("183e-6")
 
 
 def test_johnson_table_3_7_is_3_db_low_at_the_corner():
     """M. Johnson, Photodetection and Measurement, table 3.7 (p. 63).
 
     Corners 1000 Hz and 10 Hz are rounded by him. The four spot densities, 0.63, 0.05, 0.5 and 0.9 µV/√Hz, are off:
-    R and Z_c in parallel at the corner are R/√2 in quadrature, not R/2.
+    R and Z_c in parallel at the corner are R/√2 in quadrature, not the R/2 that gives his figures within their digits
+    (0.05 µV/√Hz, from 0.055, cut off).
     """
+    thermal = thermal_current_noise(resistance=1e8, temperature=300.0)
+    for source, figure in ((thermal, 0.63e-6), (1.1e-15, 0.05e-6), (shot_noise(current=1e-9), 0.9e-6)):
+        assert 1e8 / 2 * source == near(figure, rel=0.1)
+        assert 1e8 / hypot(1, 2 * pi * 1e3 * 1e8 * 1.6e-12) * source > 1.3 * figure
     assert corner_frequency(resistance=1e8, capacitance=1.6e-12) == printed("994.718")
     assert corner_frequency(resistance=1e8, capacitance=161.6e-12) == printed("9.8487")
     impedance = 1e8 / hypot(1, 2 * pi * 1e3 * 1e8 * 1.6e-12)
@@ -219,6 +244,7 @@ def test_johnson_table_3_7_is_3_db_low_at_the_corner():
     assert impedance * shot_noise(current=1e-9) == printed("1.26242e-6")
     gain = noise_gain(frequency=1e3, feedback_resistance=1e8, input_capacitance=160e-12, feedback_capacitance=1.6e-12)
     assert 1e-8 * gain == printed("7.16101e-7")
+    assert printed("0.5e-6") == 1e-8 * 160e-12 / 1.6e-12 / 2
 
 
 def test_ad546_power_limit():

@@ -2,8 +2,13 @@
 
 from __future__ import annotations
 
+from math import log10
+
+import pytest
+
 from opto_ckt.constants import ELEMENTARY_CHARGE
 from opto_ckt.formulas.avalanche import avalanche_gain, excess_noise_factor, optimum_gain
+from opto_ckt.formulas.decision import sensitivity
 from opto_ckt.formulas.leakage import diffusion_doubling, generation_doubling
 from opto_ckt.formulas.photodiode import (
     MATERIALS,
@@ -13,14 +18,19 @@ from opto_ckt.formulas.photodiode import (
     junction_capacitance,
     photon_energy,
     responsivity,
+    surface_reflection,
     zero_bias_capacitance,
 )
 from opto_ckt.formulas.transit import (
+    absorbed_share,
     cautious_transit_frequency,
     corner_frequency,
     depleted_capacitance,
     depletion_width,
+    transit_time,
 )
+from opto_ckt.parts.photodiode import PhotodiodeData, WavelengthError
+from opto_ckt.parts.record import Spread
 from tests.near import near
 from tests.published.printed import printed
 
@@ -51,23 +61,32 @@ def test_optical_seti_page_39_responsivity():
 def test_kumar_deen_5_2_is_beyond_its_own_cutoff():
     """S. Kumar & M. J. Deen, Fiber Optic Communications, Ex. 5.2 (p. 198).
 
-    The print is off: 0.9 A/W for η = 0.9 at 1.1 µm, where the formula gives 0.798 A/W and GaAs sees nothing.
+    The print is off: 0.9 A/W for η = 0.9 at 1.1 µm, where the formula gives 0.798 A/W and GaAs sees nothing; a record
+    of such a diode refuses the wavelength.
     """
     assert responsivity(quantum_efficiency=0.9, wavelength=1.1e-6) == printed("0.798489")
+    assert responsivity(quantum_efficiency=0.9, wavelength=1.1e-6) != printed("0.9")
     cutoff = cutoff_wavelength(band_gap=MATERIALS["GaAs"].band_gap)
     assert cutoff == printed("0.873e-6")
     assert cutoff < 1.1e-6
+    diode = PhotodiodeData(
+        material="GaAs", responsivity=Spread(typ=0.5), responsivity_wavelength=0.85e-6, reverse_voltage_max=20.0,
+        capacitance=Spread(typ=2e-12), capacitance_bias=5.0, dark_current=Spread(typ=1e-9),
+    )  # fmt: skip
+    with pytest.raises(WavelengthError, match="beyond the cut-off of GaAs, 873"):
+        diode.responsivity_at(1.1e-6)
 
 
 def test_senior_8_4_capacitance_of_a_depleted_layer():
     """Senior, Ex. 8.4 (p. 463): transit time 200 ps.
 
-    The capacitance as transcribed is off by 100 (F/cm taken for F/m); 4.12 pF is exact.
+    The capacitance as transcribed, 0.041 pF, is off by 100 (F/cm taken for F/m); 4.12 pF is exact.
     """
     area = 3.141592653589793 * (0.5e-3) ** 2
-    assert depleted_capacitance(permittivity=1.05e-10, area=area, width=20e-6) == printed("4.12334e-12")
-    transit = 20e-6 / 1e5
-    assert transit == printed("2.00e-10")
+    capacitance = depleted_capacitance(permittivity=1.05e-10, area=area, width=20e-6)
+    assert capacitance == printed("4.12334e-12")
+    assert capacitance / 100 == printed("4.1e-14")
+    assert transit_time(velocity=1e5, width=20e-6) == printed("2.00e-10")
 
 
 def test_senior_8_5_cautious_transit():
@@ -78,9 +97,16 @@ def test_senior_8_5_cautious_transit():
 
 
 def test_wilson_hawkes_7_6_depletion_width():
-    """J. Wilson & J. F. B. Hawkes, Optoelectronics, Ex. 7.6 (p. 329)."""
+    """J. Wilson & J. F. B. Hawkes, Optoelectronics, Ex. 7.6 (p. 329): width, and the light absorbed in it."""
     permittivity = 11.7 * 8.8541878128e-12
-    assert depletion_width(permittivity=permittivity, voltage=100.0, doping=5e21) == printed("5.09e-6")
+    width = depletion_width(permittivity=permittivity, voltage=100.0, doping=5e21)
+    assert width == printed("5.09e-6")
+    assert absorbed_share(absorption=1e5, width=width) == printed("0.399")
+
+
+def test_gupta_5_30_bare_silicon():
+    """S. C. Gupta, Ex. 5.30: n = 3.5 throws 31 % back."""
+    assert surface_reflection(index=3.5, outside_index=1.0) == printed("0.31")
 
 
 def test_senior_8_6_dark_nep_and_detectivity():
@@ -148,6 +174,10 @@ def test_mynbaev_11_3_3_excess_noise():
 
 
 def test_optimum_gain_of_an_ingaas_diode():
-    """G. P. Agrawal, Fiber-Optic Communication Systems, 4.5, from memory; the figure is this project's own."""
-    gain = optimum_gain(thermal_noise=3e-7, quality=7.0345, bandwidth=1.8e9, ionisation_ratio=0.5)
+    """G. P. Agrawal, Fiber-Optic Communication Systems, 4.5, from memory; the figures are this project's own."""
+    known = {"thermal_noise": 3e-7, "quality": 7.0345, "bandwidth": 1.8e9}
+    gain = optimum_gain(**known, ionisation_ratio=0.5)
     assert gain == printed("17.1685")
+    factor = excess_noise_factor(gain=gain, ionisation_ratio=0.5)
+    power = sensitivity(**known, responsivity=0.9, extinction_ratio=1e15, gain=gain, excess_noise=factor)
+    assert 10 * log10(power / 1e-3) == printed("-35.4047")

@@ -11,13 +11,21 @@ from opto_ckt.formulas.feedback_network import (
     inner_filter_quality,
     shaped_corner,
     shaping_feedback_capacitance,
+    tee_capacitance,
     tee_resistance,
 )
 from opto_ckt.formulas.front_end import droop, input_capacitance, output_offset, servo_corner
 from opto_ckt.formulas.loop import alignment_margin, crossover, phase_margin
-from opto_ckt.formulas.rules_of_thumb import flat_feedback_pole, intercept_capacitance, intercept_frequency
+from opto_ckt.formulas.rules_of_thumb import (
+    comfortable_gain_bandwidth,
+    flat_feedback_pole,
+    intercept_capacitance,
+    intercept_frequency,
+    quadratic_capacitance,
+)
 from opto_ckt.formulas.second_order import BESSEL, BUTTERWORTH, CRITICAL, bandwidth, bandwidth_ratio, overshoot, peaking
 from opto_ckt.formulas.transimpedance import feedback_capacitance, natural_frequency, quality_factor
+from opto_ckt.formulas.transimpedance_limits import required_gain_bandwidth
 from opto_ckt.formulas.transit import corner_frequency
 from tests.near import near
 from tests.published.printed import printed
@@ -74,8 +82,11 @@ def test_opa656_8_2_2():
 
 def test_opa607_9_2():
     """Texas Instruments, OPA607 data sheet SBOS981J (2021), 9.2: 50 MHz and 1.1 pF for 100 kΩ, 20 pF, 2 MHz."""
-    gain_bandwidth = 2 * pi * 100e3 * 20e-12 * 2e6**2
+    wanted = {"feedback_resistance": 100e3, "input_capacitance": 20e-12, "bandwidth": 2e6}
+    gain_bandwidth = comfortable_gain_bandwidth(**wanted) / 2
     assert gain_bandwidth == printed("50e6")
+    exact = required_gain_bandwidth(**wanted, quality=BUTTERWORTH)
+    assert exact == near(gain_bandwidth, rel=0.06)
     parts = {"feedback_resistance": 100e3, "input_capacitance": 20e-12, "gain_bandwidth": gain_bandwidth}
     assert intercept_frequency(**parts) == near(2e6, rel=1e-12)
     assert 1 / (2 * pi * 100e3 * flat_feedback_pole(**parts)) == printed("1.1e-12")
@@ -109,6 +120,18 @@ def test_opa657_figure_3():
     parts = {"feedback_resistance": 200e3, "input_capacitance": 50e-12, "gain_bandwidth": 1.6e9}
     assert intercept_frequency(**parts) == printed("5e6")
     assert 1 / (2 * pi * 200e3 * flat_feedback_pole(**parts)) == printed("0.2e-12")
+    loaded = parts | {"input_capacitance": 55.2e-12}
+    assert intercept_frequency(**loaded) == printed("4.80e6")
+    assert 1 / (2 * pi * 200e3 * flat_feedback_pole(**loaded)) == printed("0.234e-12")
+
+
+@pytest.mark.parametrize(("product", "quality"), [(5, "0.574"), (20, "0.623"), (100, "0.663"), (1000, "0.692")])
+def test_ths4631_quadratic_rule_is_overdamped(product, quality):
+    """Texas Instruments, THS4631 SLOS451B p. 10, LM6211 SNOSAH2C p. 20: said to be flat; Q computed here."""
+    parts = {"feedback_resistance": 100e3, "input_capacitance": 20e-12}
+    gain_bandwidth = product / (2 * pi * 100e3 * 20e-12)
+    fitted = quadratic_capacitance(**parts, gain_bandwidth=gain_bandwidth)
+    assert quality_factor(**parts, gain_bandwidth=gain_bandwidth, feedback_capacitance=fitted) == printed(quality)
 
 
 def test_opa657_inverting_compensation():
@@ -137,7 +160,10 @@ def test_alignment_table():
     assert alignment_margin(quality=BESSEL) == printed("72.3756")
     assert bandwidth_ratio(quality=BESSEL) == printed("0.786151")
     assert bandwidth_ratio(quality=CRITICAL) / bandwidth_ratio(quality=1.0) == printed("0.5")
+    assert bandwidth_ratio(quality=CRITICAL) / bandwidth_ratio(quality=1.0) == printed("0.505963")
     assert overshoot(quality=CRITICAL + 1e-6) < 1e-300
+    assert peaking(quality=1.0) != printed("2")
+    assert 100 * overshoot(quality=1.0) != printed("15")
 
 
 def test_johnson_2_7_1_body_of_a_resistor():
@@ -160,8 +186,11 @@ def test_opa380_inner_filter():
 def test_ths4601_tee():
     """Texas Instruments, THS4601 SLOS388B p. 18 and THS4631 SLOS451B p. 12.
 
-    The print, R_1 (1 + R_2/R_3) = 990.0 MΩ, leaves R_2 out; exact 990.03 MΩ.
+    The print, R_1 (1 + R_2/R_3) = 990.0 MΩ, leaves R_2 out; exact 990.03 MΩ. The capacitive tee is printed with
+    1/C = (1/C_1)(1 + C_3/C_2), which leaves 1/C_2 out.
     """
+    exact, c_1, c_2, c_3 = tee_capacitance(first=2e-12, second=3e-12, shunt=10e-12), 2e-12, 3e-12, 10e-12
+    assert 1 / exact == near((1 / c_1) * (1 + c_3 / c_2) + 1 / c_2, rel=1e-12)
     assert tee_resistance(first=36e6, second=26.5e3, shunt=1e3) == printed("990.03e6")
     as_printed = 36e6 * (1 + 26.5)
     assert as_printed == printed("990.0e6")

@@ -8,7 +8,7 @@ from math import inf, isfinite, log
 import numpy as np
 
 from opto_ckt.circuit import Refusal
-from opto_ckt.circuits.receivers.feed import bias_limit
+from opto_ckt.circuits.receivers.detector import bias_reach
 from opto_ckt.errors import InfeasibleError
 from opto_ckt.limits import Figures
 from opto_ckt.parts.avalanche import bias_for_gain, breakdown, gain_at, gain_follows
@@ -17,6 +17,7 @@ from opto_ckt.units import write
 
 LEAST_GAIN = 1.2  #: from which the best gain is looked for
 TRIALS = 12  #: of a golden section search: the gain is found to a few per cent, the sensitivity far closer
+CLOSER = 20  #: steps towards the bias whose upper end is just what is allowed
 GOLDEN = (5**0.5 - 1) / 2
 DANGEROUS = 60.0  #: direct voltage from which a board needs care against touch, as extra-low voltage is bounded [V]
 
@@ -68,35 +69,38 @@ def _most_gain(request: ReceiverRequest) -> float:
 
 def _most_bias(request: ReceiverRequest) -> float:
     """Nominal bias that at the upper end of its tolerance stays just below breakdown in the cold and the limit. [V]"""
-    tolerance = request.conditions.supply.tolerance if request.bias is None else request.bias.tolerance
     coldest = request.conditions.temperature.low
     end = min(request.detector.reverse_voltage_max, 0.999 * breakdown(request.detector, coldest))
-    return end / (1 + tolerance)
+    bias = end
+    for _ in range(CLOSER):
+        bias *= end / bias_reach(request, 1, bias)
+    return bias
 
 
 def refused(request: ReceiverRequest) -> tuple[Refusal, ...]:
-    """A gain whose bias passes breakdown, or the diode's limit, at the cold end or the end of its tolerance."""
+    """A bias that passes breakdown, or the diode's limit, at the cold end or the end of its tolerance."""
     detector = request.detector
-    if not gain_follows(detector) or detector.wanted_gain in (None, "optimum"):
+    if not gain_follows(detector) or detector.wanted_gain == "optimum":
         return ()
-    coldest = request.conditions.temperature.low
-    limit = bias_limit(request)
-    most = max(abs(limit.low - request.conditions.input_level), abs(limit.high - request.conditions.input_level))
+    coldest, most = request.conditions.temperature.low, bias_reach(request, 1)
     end = breakdown(detector, coldest)
     if most < min(end, detector.reverse_voltage_max):
         return ()
+    key, it = "reverse_bias", write(detector.resting_bias, "V")
+    allowed = f"a bias of at most {write(_most_bias(request), 'V')}"
+    if detector.wanted_gain is not None:
+        key, it, allowed = "gain", "the bias for it", f"a gain of at most {_most_gain(request):.3g}"
     return (
         Refusal(
-            ("detector", "gain"),
-            f"the bias for it may reach {write(most, 'V')}; breakdown at {write(coldest, '°C')} is {write(end, 'V')},"
-            f" reverse_voltage_max {write(detector.reverse_voltage_max, 'V')}; a gain of at most"
-            f" {_most_gain(request):.3g}, or a closer bias tolerance",
+            ("detector", key),
+            f"{it} may reach {write(most, 'V')}; breakdown at {write(coldest, '°C')} is {write(end, 'V')},"
+            f" reverse_voltage_max {write(detector.reverse_voltage_max, 'V')}; {allowed}, or a closer bias tolerance",
         ),
     )
 
 
 def remarks(request: ReceiverRequest) -> list[str]:
-    """Gain and bias over temperature, and the caution that its voltage asks for."""
+    """Gain and bias over temperature, what stands for a shunt, and the caution that a voltage asks for."""
     detector = request.detector
     found = []
     if gain_follows(detector) and detector.resting_bias:
@@ -108,6 +112,11 @@ def remarks(request: ReceiverRequest) -> list[str]:
         found.append(
             f"avalanche gain {gain:.3g} at {write(bias, 'V')}; over {span} that bias gives {cold:.3g} … {hot:.3g},"
             f" the same gain takes {low} … {high}"
+        )
+    if not detector.resting_bias and detector.shunt_resistance is None:
+        found.append(
+            "the sheet of D1 states no shunt_resistance: without bias it is taken as kT/(q I_d), dark current as its"
+            " saturation current; measured ones are often higher"
         )
     if detector.resting_bias > DANGEROUS:
         found.append(

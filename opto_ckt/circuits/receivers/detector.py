@@ -2,14 +2,16 @@
 
 from __future__ import annotations
 
+from itertools import product
+
 import numpy as np
 
 from opto_ckt.circuit import Bench
 from opto_ckt.constants import BOLTZMANN, ELEMENTARY_CHARGE, ROOM_TEMPERATURE
-from opto_ckt.formulas.leakage import dark_current
+from opto_ckt.formulas.leakage import dark_current, unbiased_shunt
 from opto_ckt.formulas.transit import bandwidth_of_rise_time
 from opto_ckt.limits import Lanes, Limit, Values
-from opto_ckt.parts.avalanche import excess_noise, gain_at, is_avalanche
+from opto_ckt.parts.avalanche import excess_noise, gain_at, gain_follows, is_avalanche
 from opto_ckt.parts.photodiode import PhotodiodeData
 from opto_ckt.parts.record import Spread, facts
 from opto_ckt.request import ReceiverRequest
@@ -17,6 +19,9 @@ from opto_ckt.request.detector import Detector
 
 POLARITY = {"cathode": 1.0, "anode": -1.0}
 """Sign of the output step that light makes, by the end of the diode that feeds an inverting amplifier."""
+
+LEAST_DARK = 1e-18  #: dark current taken of a diode that is said to have none [A]
+BIASED = 100.0  #: reverse bias over kT/q beyond which a junction conducts no more
 
 BANDWIDTH_PER_BIT_RATE = 0.7  #: common practice, between noise and eye closure
 MIDBAND = 0.01  #: of the bandwidth: where the gain of a data receiver that does not pass DC is stated
@@ -43,8 +48,7 @@ def detected(values: Values, request: ReceiverRequest, detector: str = "D1") -> 
         f"{detector}.capacitance": data.capacitance_at(bias, values.get(f"{detector}.capacitance")),
         f"{detector}.transit_frequency": _speed(values, data, detector, gain),
         f"{detector}.dark_current": dark + multiplied * gain,
-        f"{detector}.shunt_resistance": values[f"{detector}.shunt_resistance"]
-        * 2.0 ** (-(np.asarray(temperature) - ROOM_TEMPERATURE) / data.dark_current_doubling),
+        f"{detector}.shunt_resistance": _shunt(values, data, detector),
         f"{detector}.signal_current": signal,
         f"{detector}.ambient_current": ambient,
         f"{detector}.signal_shot": signal * noisy,
@@ -77,6 +81,22 @@ def _dark_currents(values: Values, data: Detector, detector: str) -> tuple[float
         at = data.resting_bias if data.dark_current_bias is None else data.dark_current_bias
         return 0.0, whole / gain_at(data, at, ROOM_TEMPERATURE)
     return warm(values.get(f"{detector}.surface_dark_current", 0.0)), warm(multiplied)
+
+
+def _shunt(values: Values, data: Detector, detector: str) -> Lanes:
+    """Shunt of the junction; where the sheet states none, what a junction of the dark current is near no bias. [Ω]
+
+    It grows as exp(V q/kT) with reverse bias, so that only an unbiased diode has it.
+    """
+    temperature = np.asarray(values["temperature"], dtype=float)
+    warming = 2.0 ** ((temperature - ROOM_TEMPERATURE) / data.dark_current_doubling)
+    stated = np.asarray(values[f"{detector}.shunt_resistance"] / warming)
+    if data.shunt_resistance is not None:
+        return stated
+    current = np.maximum(values[f"{detector}.dark_current"] * warming, LEAST_DARK)
+    unbiased = np.asarray(unbiased_shunt(saturation_current=current, emission=1.0, temperature=temperature))
+    ratio = np.asarray(values["detector.reverse_bias"]) * ELEMENTARY_CHARGE / (BOLTZMANN * temperature)
+    return np.asarray(np.minimum(stated, unbiased * np.exp(np.clip(ratio, 0.0, BIASED))))
 
 
 def _saturation(reverse_bias: float | Lanes, temperature: float | Lanes) -> Lanes:
@@ -132,8 +152,29 @@ def detector_limits(request: ReceiverRequest, detector: str = "D1") -> dict[str,
     }
 
 
-def on_the_bench(request: ReceiverRequest, bench: Bench, temperature: float) -> dict[str, float]:
-    """The detector at its resting bias and one temperature, in the most light, its currents at their most."""
+def bias_reach(request: ReceiverRequest, end: float, resting: float | None = None) -> float:
+    """Reverse bias at one end, -1 or 1, of the tolerances of its supply and of the amplifier's level. [V]
+
+    Parameters
+    ----------
+    resting : the bias at nominal, if not that of the request. [V]
+    """
+    bias = request.detector.resting_bias if resting is None else resting
+    supply, level = request.conditions.supply, request.conditions.input_level
+    far = level - POLARITY[request.detector.output] * bias
+    if not bias or (request.bias is None and far in (supply.positive, supply.negative)):
+        return bias * (1 + end * supply.tolerance)
+    own = supply.tolerance if request.bias is None else request.bias.tolerance
+    return max(bias + end * (own * abs(far) + supply.tolerance * abs(level)), 0.0)
+
+
+def on_the_bench(
+    request: ReceiverRequest, bench: Bench, temperature: float, reverse_bias: float | None = None
+) -> dict[str, float]:
+    """The detector at one temperature and a bias, the resting one if none is given, in the most light.
+
+    Its currents are at their most.
+    """
     most = ("dark_current", "multiplied_dark_current", "surface_dark_current", "responsivity")
     values = {
         name: bench.high(name) if name.removeprefix("D1.") in most else bench.nominal(name)
@@ -141,7 +182,7 @@ def on_the_bench(request: ReceiverRequest, bench: Bench, temperature: float) -> 
         if name.startswith("D1.")
     } | {
         "temperature": temperature,
-        "detector.reverse_bias": request.detector.resting_bias,
+        "detector.reverse_bias": request.detector.resting_bias if reverse_bias is None else reverse_bias,
         "signal.ambient": bench.high("signal.ambient"),
         "signal.power": bench.high("signal.power"),
     }
@@ -149,9 +190,10 @@ def on_the_bench(request: ReceiverRequest, bench: Bench, temperature: float) -> 
 
 
 def brightest(request: ReceiverRequest, bench: Bench) -> dict[str, float]:
-    """`on_the_bench` at the end of the temperature range where the most current flows."""
-    ends = (bench.high("temperature"), bench.low("temperature"))
-    found = [on_the_bench(request, bench, temperature) for temperature in ends]
+    """`on_the_bench` at the end of the temperature range, and of the bias where gain follows it, of most current."""
+    biases = [bias_reach(request, end) for end in (-1, 1)] if gain_follows(request.detector) else [None]
+    ends = product((bench.high("temperature"), bench.low("temperature")), biases)
+    found = [on_the_bench(request, bench, temperature, bias) for temperature, bias in ends]
 
     def current(values: dict[str, float]) -> float:
         return float(one_level(values, request)) + values["D1.ambient_current"] + values["D1.dark_current"]

@@ -2,10 +2,15 @@
 
 from __future__ import annotations
 
+from math import isfinite
+
 from opto_ckt.circuit import Refusal
 from opto_ckt.circuits.receivers import avalanche
-from opto_ckt.circuits.receivers.detector import midband
+from opto_ckt.circuits.receivers.detector import bias_reach, level_factor, midband
+from opto_ckt.constants import ROOM_TEMPERATURE
+from opto_ckt.parts.avalanche import gain_at, gain_follows
 from opto_ckt.request import ReceiverRequest
+from opto_ckt.units import write
 
 WITHOUT_DC = ("low_cutoff", "droop")
 """Figures that have a meaning where DC does not pass."""
@@ -15,8 +20,8 @@ OF_DATA = ("sensitivity", "dynamic_range", "eye_opening", "eye_penalty", "photon
 
 
 def refused(request: ReceiverRequest) -> tuple[Refusal, ...]:
-    """A gain beyond breakdown; figures of data for an analog signal, of an area or a cut-off that is not there."""
-    found = list(avalanche.refused(request))
+    """A detector beyond its limits; figures of data for an analog signal, of an area or a cut-off that is not there."""
+    found = [*avalanche.refused(request), *_overdriven(request)]
     if request.signal.bit_rate is None:
         found += [
             Refusal(("require", name), "has a meaning for a bit rate only; this signal has a band")
@@ -32,3 +37,47 @@ def refused(request: ReceiverRequest) -> tuple[Refusal, ...]:
     if request.detector.area is None and "detectivity" in request.require:
         found.append(Refusal(("require", "detectivity"), "needs area under [detector]"))
     return tuple(found)
+
+
+def _overdriven(request: ReceiverRequest) -> list[Refusal]:
+    """A bias whose tolerance passes the detector's limit; light that makes more current than the detector stands."""
+    detector, found = request.detector, []
+    reach, limit = bias_reach(request, 1), detector.reverse_voltage_max
+    if reach > limit and not gain_follows(detector):
+        found.append(
+            Refusal(
+                ("detector", "reverse_bias"),
+                f"{write(detector.resting_bias, 'V')} may reach {write(reach, 'V')} within the tolerance of its supply,"
+                f" reverse_voltage_max is {write(limit, 'V')}; at most"
+                f" {write(detector.resting_bias * limit / reach, 'V')}, or a closer tolerance",
+            )
+        )
+    most = detector.photocurrent_max
+    gain, where = _most_gain(request)
+    responsivity = detector.responsivity_spread(request.signal.wavelength).high / detector.responsivity_gain * gain
+    light = responsivity * request.signal.power.high * level_factor(request)
+    ambient = request.ambient_current.high * gain
+    if most is not None and isfinite(gain) and light + ambient > most:
+        allowed = f"at most {write(max(most - ambient, 0.0) / light * request.signal.power.high, 'W')}"
+        if ambient >= most:
+            allowed = f"the background alone makes {write(ambient, 'A')}"
+        found.append(
+            Refusal(
+                ("signal", "power"),
+                f"a one with the background makes up to {write(light + ambient, 'A')} in the detector{where},"
+                f" photocurrent_max is {write(most, 'A')}; {allowed}",
+            )
+        )
+    return found
+
+
+def _most_gain(request: ReceiverRequest) -> tuple[float, str]:
+    """Largest gain at full bias, and where; that at nominal where a resistance takes of the bias as light grows."""
+    detector, coldest = request.detector, request.conditions.temperature.low
+    if not gain_follows(detector) or detector.wanted_gain == "optimum":
+        return 1.0, ""
+    if request.inverting and "bias_filter" not in request.blocks_asked:
+        gain = float(gain_at(detector, bias_reach(request, 1), coldest))
+        return gain, f" at {write(coldest, '°C')}, at a gain of {gain:.3g}"
+    gain = float(gain_at(detector, detector.resting_bias, ROOM_TEMPERATURE))
+    return gain, f" at a gain of {gain:.3g}"

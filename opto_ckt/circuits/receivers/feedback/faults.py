@@ -6,6 +6,7 @@ import numpy as np
 
 from opto_ckt.circuit import Fault, FaultOutcome
 from opto_ckt.circuits.receivers.detector import POLARITY, one_level
+from opto_ckt.circuits.receivers.feed import bias_node
 from opto_ckt.limits import Lanes, Values
 from opto_ckt.request import OpAmpReceiverRequest, ReceiverRequest
 from opto_ckt.topology import OPEN, SHORT
@@ -24,10 +25,23 @@ def faults(request: ReceiverRequest) -> tuple[Fault, ...]:
         Fault("detector short", {"D1.shunt_resistance": SHORT}),
         Fault("R1 open", {"R1": OPEN}),
         Fault("R1 short", {"R1": SHORT}),
-        Fault("bias before supplies", {"supply.positive": 0.0, "supply.negative": 0.0}),
-        Fault("supplies before bias", {"supply.bias": 0.0}),
+        *supplies(request),
         Fault(f"light {OVERLOAD:.0f} times the most", {"signal.power": OVERLOAD * request.signal.power.high}),
     )
+
+
+def supplies(request: ReceiverRequest) -> list[Fault]:
+    """Supplies and bias one before the other; a bias from a rail comes and goes with that rail."""
+    off = {"supply.positive": 0.0, "supply.negative": 0.0}
+    node = bias_node(request)
+    if node == "bias":
+        return [Fault("bias before supplies", off), Fault("supplies before bias", {"supply.bias": 0.0})]
+    found = [Fault("light before supplies", off)]
+    if node in ("positive", "negative") and request.conditions.supply.negative:
+        other = "negative" if node == "positive" else "positive"
+        found.append(Fault(f"{node} supply before {other}", {f"supply.{other}": 0.0}))
+        found.append(Fault(f"{other} supply before {node}", {f"supply.{node}": 0.0}))
+    return found
 
 
 def outcome(fault: Fault, values: Values, request: OpAmpReceiverRequest) -> FaultOutcome:

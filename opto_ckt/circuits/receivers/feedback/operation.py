@@ -124,7 +124,7 @@ class FeedbackFigures(ReceiverFigures):
 
     def _headroom_of(self, values: Values, request: OpAmpReceiverRequest) -> float | Lanes:
         """In the direction of the signal. [V]"""
-        return rooms(values)[int(POLARITY[request.detector.output])]
+        return rooms(values, request)[int(POLARITY[request.detector.output])]
 
     @cached_property
     def noise_gain(self) -> Lanes:
@@ -167,12 +167,23 @@ def figures(values: Values, evaluation: Evaluation, request: OpAmpReceiverReques
     return OnDemand(FeedbackFigures(values, evaluation, request), OFFERS)
 
 
-def rooms(values: Values) -> dict[int, float | Lanes]:
-    """From the level to the output's limit: upwards (1), downwards (-1). [V]"""
-    return {
+def rooms(values: Values, request: OpAmpReceiverRequest) -> dict[int, float | Lanes]:
+    """From the level upwards (1) and downwards (-1) to the output's limit: a rail's, or that of its current. [V]"""
+    rails = {
         1: values["supply.positive"] - values["U1.swing_to_positive"] - values["input_level"],
         -1: values["input_level"] - values["supply.negative"] - values["U1.swing_to_negative"],
     }
+    return {sign: np.minimum(rail, _driven(values, request, sign)) for sign, rail in rails.items()}
+
+
+def _driven(values: Values, request: OpAmpReceiverRequest, sign: int) -> float | Lanes:
+    """How far the output gets on its largest current, which feeds the feedback and a load at the output. [V]"""
+    conductance = 1 / values["feedback_resistance"]
+    drive = values["U1.output_current_max"]
+    if "RL" in values and "gain_stage" not in request.blocks_asked:
+        drive = drive - sign * values["input_level"] / values["RL"]
+        conductance = conductance + 1 / values["RL"]
+    return drive / conductance
 
 
 def dark(values: Values, request: OpAmpReceiverRequest) -> dict[str, Lanes]:

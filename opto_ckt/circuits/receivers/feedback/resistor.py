@@ -108,7 +108,9 @@ def _swing_resistance(stage: Stage, overshoot: float) -> float:
                 f"conditions.supply wider by {write(-rail, 'V')}",
             ],
         )
-    swings = {"rail": (rail, spread * (light + steady) + dark + stage.standing)}
+    whole = spread * (light + steady) + dark + stage.standing
+    rail = min(rail, _driven(stage, whole))
+    swings = {"rail": (rail, whole)}
     required = request.require.get("output_swing")
     if required is not None and required.max:
         swings["required"] = (required.max, spread * (light + steady))
@@ -120,6 +122,31 @@ def _swing_resistance(stage: Stage, overshoot: float) -> float:
     reason += f" {percent(spread - 1)} for overshoot and tolerance"
     return stage.derivation.compute(
         "R1 from swing", transimpedance.feedback_resistance, reason=reason, swing=swing, current=current
+    )
+
+
+def _driven(stage: Stage, current: float) -> float:
+    """Swing that the op amp can put across a load beside the current that it feeds through R1. [V]
+
+    Raises
+    ------
+    InfeasibleError : that current alone is more than it gives.
+    """
+    request, bench = stage.request, stage.bench
+    drive = bench.low("U1.output_current_max")
+    load = inf if request.load.resistance is None or "gain_stage" in request.blocks_asked else request.load.resistance
+    level = request.conditions.input_level
+    drive -= (abs(level) if stage.both_ways else POLARITY[request.detector.output] * level) / load
+    if current < drive:
+        return (drive - current) * load
+    raise InfeasibleError(
+        f"the light takes {write(current, 'A')} through R1, whatever its value; U1 gives {write(max(drive, 0.0), 'A')}",
+        [
+            f"signal.power.max ≤ {write(request.signal.power.high * max(drive, 0.0) / current, 'W')}",
+            f"output_current_max of U1 ≥ {write(bench.nominal('U1.output_current_max') * current / drive, 'A')}"
+            if drive > 0
+            else "a lighter load",
+        ],
     )
 
 

@@ -6,8 +6,7 @@ import numpy as np
 
 from opto_ckt.circuit import Fault, FaultOutcome
 from opto_ckt.circuits.receivers.detector import POLARITY
-from opto_ckt.circuits.receivers.feed import bias_node
-from opto_ckt.circuits.receivers.feedback.faults import DIODE_DROP, INPUT_CLAMP_CURRENT, OVERLOAD
+from opto_ckt.circuits.receivers.feedback.faults import DIODE_DROP, INPUT_CLAMP_CURRENT, OVERLOAD, supplies
 from opto_ckt.circuits.receivers.load_resistor.form import amplified
 from opto_ckt.circuits.receivers.load_resistor.operation import PHOTOVOLTAIC, most_current
 from opto_ckt.limits import Lanes, Values
@@ -20,11 +19,7 @@ ENDLESS = 1.0  #: a current above it is limited by nothing on the board [A]
 
 
 def faults(request: LoadResistorRequest) -> tuple[Fault, ...]:
-    """The cases; each computed by overriding values. A bias from a rail comes and goes with that."""
-    off = {"supply.positive": 0.0, "supply.negative": 0.0}
-    supplies = [Fault("light before supplies", off)]
-    if bias_node(request) == "bias":
-        supplies = [Fault("bias before supplies", off), Fault("supplies before bias", {"supply.bias": 0.0})]
+    """The cases; each computed by overriding values."""
     around = [Fault("R4 open", {"R4": OPEN}), Fault("R5 open", {"R5": OPEN})] if amplified(request) else []
     return (
         Fault("detector open", {"D1.responsivity": 0.0, "D1.dark_current": 0.0, "signal.ambient": 0.0}),
@@ -32,7 +27,7 @@ def faults(request: LoadResistorRequest) -> tuple[Fault, ...]:
         Fault("R1 open", {"R1": OPEN}),
         Fault("R1 short", {"R1": SHORT}),
         *around,
-        *supplies,
+        *supplies(request),
         Fault(f"light {OVERLOAD:.0f} times the most", {"signal.power": OVERLOAD * request.signal.power.high}),
     )
 

@@ -90,7 +90,7 @@ class BalancedFigures(FeedbackFigures):
         """Where the currents are subtracted the second beam alone drives the output the other way. [V]"""
         if by_outputs(request):
             return super()._headroom_of(values, request)
-        return np.asarray(np.min(np.broadcast_arrays(*operation.rooms(values).values()), axis=0))
+        return np.asarray(np.min(np.broadcast_arrays(*operation.rooms(values, request).values()), axis=0))
 
     @cached_property
     def dc_offset(self) -> Lanes:

@@ -7,7 +7,7 @@ import numpy as np
 from opto_ckt.circuit import Bench, Fault, FaultOutcome, Fitted, Heat, Stress
 from opto_ckt.circuits.receivers import avalanche, board
 from opto_ckt.circuits.receivers.detector import one_level
-from opto_ckt.circuits.receivers.feedback.faults import INPUT_CLAMP_CURRENT, OVERLOAD
+from opto_ckt.circuits.receivers.feedback.faults import INPUT_CLAMP_CURRENT, OVERLOAD, supplies
 from opto_ckt.circuits.receivers.tia_fixed.structure import passes_dc
 from opto_ckt.derivation import Derivation
 from opto_ckt.formulas import decision, fixed_tia
@@ -47,8 +47,7 @@ def faults(request: FixedTiaRequest) -> tuple[Fault, ...]:
     return (
         Fault("detector open", {"D1.responsivity": 0.0, "D1.dark_current": 0.0, "signal.ambient": 0.0}),
         Fault("detector short", {"D1.shunt_resistance": SHORT}),
-        Fault("bias before supplies", {"supply.positive": 0.0, "supply.negative": 0.0}),
-        Fault("supplies before bias", {"supply.bias": 0.0}),
+        *supplies(request),
         Fault(f"light {OVERLOAD:.0f} times the most", {"signal.power": OVERLOAD * request.signal.power.high}),
     )
 
