@@ -5,9 +5,8 @@ from __future__ import annotations
 from types import ModuleType
 from typing import Any
 
-from opto_ckt.circuit import Block, Heat, Refusal
+from opto_ckt.circuit import Block, Refusal
 from opto_ckt.circuits.blocks.servo import integrator, resistor, transistor
-from opto_ckt.limits import Values
 from opto_ckt.request import ReceiverRequest
 
 FORMS: dict[str, ModuleType] = {"resistor": resistor, "transistor": transistor}
@@ -17,10 +16,6 @@ FORMS: dict[str, ModuleType] = {"resistor": resistor, "transistor": transistor}
 def _form(request: ReceiverRequest) -> Any:
     asked = request.blocks.servo
     return FORMS["resistor" if asked is None else asked.injection]
-
-
-def _heat(values: Values, request: ReceiverRequest) -> tuple[Heat, ...]:
-    return (*integrator.heat(values, request), *_form(request).heat(values, request))
 
 
 def _refused(request: ReceiverRequest) -> tuple[Refusal, ...]:
@@ -34,7 +29,7 @@ BLOCK = Block(
     given=integrator.given,
     bias=lambda values, request: _form(request).bias(values, request),
     stresses=lambda values, request: _form(request).stresses(values, request),
-    heat=_heat,
+    heat=lambda values, request: _form(request).heat(values, request),
     remarks=lambda values, limits, request: _form(request).remarks(values, limits, request),
     refused=_refused,
     formulas=(*integrator.FORMULAS, *transistor.FORMULAS),

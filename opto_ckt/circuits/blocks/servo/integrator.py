@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Iterable, Mapping
 from typing import NamedTuple
 
 import numpy as np
@@ -9,7 +10,7 @@ import numpy as np
 from opto_ckt.circuit import Bench, Fitted, Heat, Refusal
 from opto_ckt.circuits.blocks.cutoff import allowed
 from opto_ckt.circuits.receivers.amplifier import either_sign
-from opto_ckt.circuits.receivers.board import BYPASS, negative_node
+from opto_ckt.circuits.receivers.board import BYPASS
 from opto_ckt.circuits.receivers.detector import brightest
 from opto_ckt.derivation import Derivation
 from opto_ckt.formulas import front_end
@@ -39,18 +40,15 @@ def data(request: ReceiverRequest) -> OpAmpData:
     return record
 
 
-def bypass(request: ReceiverRequest, x: float) -> tuple[list[Element], list[tuple[Point, str]]]:
-    """Capacitors at the supply pins, and what their ends are tied to."""
-    elements: list[Element] = [
-        Capacitor("C38", "positive", GROUND, role="bypass", stock="bypass", at=(x, 1), to=(x, -1))
-    ]
-    marks: list[tuple[Point, str]] = [((x, 1), "positive"), ((x, -1), GROUND)]
-    if negative_node(request) != GROUND:
-        beside = x + 2
-        elements.append(
-            Capacitor("C39", GROUND, "negative", role="bypass", stock="bypass", at=(beside, 1), to=(beside, -1))
-        )
-        marks += [((beside, 1), GROUND), ((beside, -1), "negative")]
+def bypass(rails: Mapping[str, str], x: float) -> tuple[list[Element], list[tuple[Point, str]]]:
+    """Capacitors from supply pins to ground, by designator and rail, and what their ends are tied to."""
+    elements: list[Element] = []
+    marks: list[tuple[Point, str]] = []
+    for ref, rail in rails.items():
+        upper, lower = (GROUND, rail) if rail == "negative" else (rail, GROUND)
+        elements.append(Capacitor(ref, upper, lower, role="bypass", stock="bypass", at=(x, 1), to=(x, -1)))
+        marks += [((x, 1), upper), ((x, -1), lower)]
+        x += 2
     return elements, marks
 
 
@@ -73,7 +71,7 @@ class Integrator(NamedTuple):
     capacitor: Fitted
 
 
-def integrator(
+def parts(
     request: ReceiverRequest, derivation: Derivation, bench: Bench, without: Values, injection: float
 ) -> Integrator:
     """R31 and C32 for the low cut-off, at values `without` the servo and a resistance from its output to the node."""
@@ -97,10 +95,10 @@ def integrator(
     )
 
 
-def bypass_parts(request: ReceiverRequest, derivation: Derivation) -> tuple[Fitted, ...]:
+def bypass_parts(request: ReceiverRequest, derivation: Derivation, refs: Iterable[str]) -> tuple[Fitted, ...]:
     """Capacitors at the supply pins."""
     found = []
-    for ref in ("C38", "C39") if request.conditions.supply.negative else ("C38",):
+    for ref in refs:
         derivation.note(ref, "common practice: 100 nF close to each supply pin")
         value = request.fixed.get(ref, BYPASS)
         series = request.preferred.bypass.series
@@ -114,12 +112,12 @@ def neutral(exact: Values, injection: Values) -> dict[str, Lanes]:
     return {name: np.array([value]) for name, value in {**exact, **parts, **injection}.items()}
 
 
-def heat(values: Values, request: ReceiverRequest) -> tuple[Heat, ...]:
-    """U30, where its sheet says what it is heated by."""
+def heat(values: Values, request: ReceiverRequest, supply: float | Lanes) -> tuple[Heat, ...]:
+    """U30 on a supply [V], where its sheet says what it is heated by."""
     record = data(request)
     if record.junction_to_ambient is None:
         return ()
-    power = (values["supply.positive"] - values["supply.negative"]) * values["U30.quiescent_current"]
+    power = supply * values["U30.quiescent_current"]
     return (Heat("U30", power, values["temperature"] + power * record.junction_to_ambient.high, record.junction_max),)
 
 

@@ -14,15 +14,8 @@ from dataclasses import replace
 import numpy as np
 
 from opto_ckt.circuit import Bench, Fitted, Heat, Refusal, Stress
-from opto_ckt.circuits.blocks.servo.integrator import (
-    bypass,
-    bypass_parts,
-    data,
-    integrator,
-    neutral,
-    table,
-    wanted_range,
-)
+from opto_ckt.circuits.blocks.servo import integrator
+from opto_ckt.circuits.blocks.servo.integrator import bypass, bypass_parts, data, neutral, table, wanted_range
 from opto_ckt.circuits.receivers.amplifier import warmed
 from opto_ckt.circuits.receivers.board import level_node, negative_node
 from opto_ckt.circuits.receivers.detector import POLARITY
@@ -40,7 +33,7 @@ SETTLINGS = 3  #: of output and integrator against each other; each shrinks the 
 def topology(request: ReceiverRequest) -> Topology:
     """Drawn by itself; the names of its two ends tie it to the amplifier."""
     negative, level = negative_node(request), level_node(request)
-    capacitors, ends = bypass(request, 12)
+    capacitors, ends = bypass(_rails(request), 12)
     elements: list[Element] = [
         Resistor("R31", "in", "sensed", role="servo", at=(0, 0), to=(3, 0)),
         Capacitor("C31", "sensed", GROUND, role="servo", stock="bypass", at=(3, 0), to=(3, 2)),
@@ -67,6 +60,10 @@ def topology(request: ReceiverRequest) -> Topology:
     )  # fmt: skip
 
 
+def _rails(request: ReceiverRequest) -> dict[str, str]:
+    return {"C38": "positive", "C39": "negative"} if negative_node(request) != GROUND else {"C38": "positive"}
+
+
 def propose(request: ReceiverRequest, derivation: Derivation, bench: Bench, exact: Values) -> tuple[Fitted, ...]:
     """R30 from the range of current, the integrator from the low cut-off.
 
@@ -85,7 +82,7 @@ def propose(request: ReceiverRequest, derivation: Derivation, bench: Bench, exac
         "R30", front_end.injection_resistance, reason=f"{write(float(room), 'V')} of headroom for {write(wanted, 'A')}",
         headroom=float(room), current=wanted,
     )  # fmt: skip
-    resistor, capacitor = integrator(request, derivation, bench, neutral(exact, {"R30": 1e12}), injection)
+    resistor, capacitor = integrator.parts(request, derivation, bench, neutral(exact, {"R30": 1e12}), injection)
     found = [
         Fitted("R30", injection, resistors, high=injection, fixed="R30" in request.fixed), resistor, capacitor,
     ]  # fmt: skip
@@ -97,7 +94,7 @@ def propose(request: ReceiverRequest, derivation: Derivation, bench: Bench, exac
         own = request.fixed.get(ref)
         like = replace(twin, ref=ref, twin=twin.ref)
         found.append(like if own is None else replace(like, twin="", exact=own, fixed=True))
-    return (*found, *bypass_parts(request, derivation))
+    return (*found, *bypass_parts(request, derivation, _rails(request)))
 
 
 def _worst(bench: Bench) -> dict[str, float]:
@@ -162,8 +159,8 @@ def remarks(values: Values, limits: Limits, request: ReceiverRequest) -> tuple[s
 
 
 def heat(values: Values, request: ReceiverRequest) -> tuple[Heat, ...]:
-    """Nothing beside the op amp."""
-    return ()
+    """The op amp."""
+    return integrator.heat(values, request, values["supply.positive"] - values["supply.negative"])
 
 
 def refused(request: ReceiverRequest) -> tuple[Refusal, ...]:

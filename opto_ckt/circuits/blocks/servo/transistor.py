@@ -4,8 +4,11 @@ r"""Injection by a transistor: range up to the far rail, one direction, a low cu
                              [ R30 ]
     amp --[R31]--+--|- \       |
                  |  |   U30 >--|> Q30
-    level -------|--|+ /    |  |
+    0 -----------|--|+ /    |  |
                  +--[ C32 ]-+  +-- sum
+
+U30 works between ground and the rail that R30 goes to: on both rails it could pull the base past the summing node, and
+the collector's junction would then latch the loop.
 """
 
 from __future__ import annotations
@@ -13,19 +16,10 @@ from __future__ import annotations
 import numpy as np
 
 from opto_ckt.circuit import Bench, Fitted, Heat, Refusal, Stress
-from opto_ckt.circuits.blocks.servo.integrator import (
-    WHERE,
-    bypass,
-    bypass_parts,
-    data,
-    integrator,
-    neutral,
-    table,
-    wanted_range,
-)
+from opto_ckt.circuits.blocks.servo import integrator
+from opto_ckt.circuits.blocks.servo.integrator import WHERE, bypass, bypass_parts, data, neutral, table, wanted_range
 from opto_ckt.circuits.receivers import bipolar
 from opto_ckt.circuits.receivers.amplifier import warmed
-from opto_ckt.circuits.receivers.board import level_node, negative_node
 from opto_ckt.circuits.receivers.detector import POLARITY
 from opto_ckt.constants import ROOM_TEMPERATURE
 from opto_ckt.derivation import Derivation
@@ -38,6 +32,7 @@ from opto_ckt.topology import GROUND, RIGHT, BipolarTransistor, Capacitor, Eleme
 from opto_ckt.units import write
 
 KINDS = {1: "pnp", -1: "npn"}  #: by the way that light drives the output
+NODES = {1: "positive", -1: "negative"}
 RAILS = {1: "supply.positive", -1: "supply.negative"}  #: that R30 goes to
 TURN_OFF = 0.2  #: of base-emitter voltage for a thousandth of the current [V]
 LEAST_CURRENT = 1e-12  #: of Q30 where nothing is to be taken away [A]
@@ -51,14 +46,15 @@ def _sign(request: ReceiverRequest) -> int:
 
 def topology(request: ReceiverRequest) -> Topology:
     """Drawn by itself; the names of its two ends tie it to the amplifier."""
-    negative, level, sign = negative_node(request), level_node(request), _sign(request)
-    rail = "positive" if sign > 0 else negative
-    capacitors, ends = bypass(request, 12)
+    sign = _sign(request)
+    rail = NODES[sign]
+    positive, negative = (rail, GROUND) if sign > 0 else (GROUND, rail)
+    capacitors, ends = bypass({"C38": rail}, 12)
     emitter, collector = -0.5 + sign, -0.5 - sign
     elements: list[Element] = [
         Resistor("R31", "in", "held", role="servo", at=(0, 0), to=(3, 0)),
         Capacitor("C32", "held", "injected", role="servo", stock="bypass", at=(3.5, 2), to=(6.5, 2)),
-        OpAmp("U30", plus=level, minus="held", out="injected", positive="positive", negative=negative,
+        OpAmp("U30", plus=GROUND, minus="held", out="injected", positive=positive, negative=negative,
               role="servo", table=table(request), at=(4, -0.5), facing=RIGHT),
         BipolarTransistor("Q30", drain="out", control="injected", source="emitter", polarity=-sign, role="injection",
                           table="transistor", at=(8, -0.5), facing=RIGHT, flipped=sign > 0),
@@ -66,8 +62,8 @@ def topology(request: ReceiverRequest) -> Topology:
         *capacitors,
     ]  # fmt: skip
     marks: list[tuple[Point, str]] = [
-        ((0, 0), "in"), ((3, -1), level), ((9, collector), "out"), ((9, emitter + 2 * sign), rail),
-        ((5, 0.5), "positive"), ((5, -1.5), negative), *ends,
+        ((0, 0), "in"), ((3, -1), GROUND), ((9, collector), "out"), ((9, emitter + 2 * sign), rail),
+        ((5, 0.5), positive), ((5, -1.5), negative), *ends,
     ]  # fmt: skip
     return Topology(
         elements=tuple(elements),
@@ -90,14 +86,11 @@ def propose(request: ReceiverRequest, derivation: Derivation, bench: Bench, exac
     """
     wanted = wanted_range(request, bench)
     sign = _sign(request)
-    worst = {name: bench.high(name) for name in ("Q30.saturation_voltage", "Q30.base_emitter_voltage")}
-    worst |= {name: bench.high(name) for name in ("U30.swing_to_positive", "U30.swing_to_negative")}
-    worst |= {"supply.positive": bench.low("supply.positive"), "supply.negative": bench.high("supply.negative")}
-    room = float(_headroom({**worst, "temperature": bench.low("temperature")}, request, sign))
+    names = ("Q30.base_emitter_voltage", "U30.swing_to_positive", "U30.swing_to_negative", "supply.negative")
+    worst = {name: bench.high(name) for name in names} | {"supply.positive": bench.low("supply.positive")}
+    room = float(_headroom({**worst, "temperature": bench.low("temperature")}, sign))
     if room <= 0:
-        raise InfeasibleError(
-            f"R30 and Q30 have no headroom: {write(room, 'V')}", ["conditions.supply wider", "another level"]
-        )
+        raise InfeasibleError(f"R30 and Q30 have no headroom: {write(room, 'V')}", ["conditions.supply wider"])
     injection = request.fixed.get("R30") or derivation.compute(
         "R30", front_end.injection_resistance, reason=f"{write(room, 'V')} of headroom for {write(wanted, 'A')}",
         headroom=room, current=wanted,
@@ -105,63 +98,57 @@ def propose(request: ReceiverRequest, derivation: Derivation, bench: Bench, exac
     without = neutral(exact, {"R30": 1e12})
     return (
         Fitted("R30", injection, request.preferred.resistors.series, high=injection, fixed="R30" in request.fixed),
-        *integrator(request, derivation, bench, without, injection),
-        *bypass_parts(request, derivation),
+        *integrator.parts(request, derivation, bench, without, injection),
+        *bypass_parts(request, derivation, ("C38",)),
     )
 
 
-def _headroom(values: Values, request: ReceiverRequest, sign: int) -> float | Lanes:
-    """Left for R30 by the saturation of Q30, or by the reach of U30 at its base, if that is less. [V]"""
-    rail, level = values[RAILS[sign]], request.conditions.input_level
-    far = {
-        1: values["supply.negative"] + values["U30.swing_to_negative"],
-        -1: values["supply.positive"] - values["U30.swing_to_positive"],
-    }[sign]
+def _headroom(values: Values, sign: int) -> float | Lanes:
+    """Left for R30 by the reach of U30, whose output comes near to ground, at the base of Q30. [V]"""
     drop = values["Q30.base_emitter_voltage"] + bipolar.DRIFT * (values["temperature"] - ROOM_TEMPERATURE)
-    return np.minimum(sign * (rail - level) - values["Q30.saturation_voltage"], sign * (rail - far) - drop)
+    return sign * values[RAILS[sign]] - values[f"U30.swing_to_{NODES[-sign]}"] - drop
 
 
 def bias(values: Values, request: ReceiverRequest) -> dict[str, float | Lanes]:
     """Current of Q30 that holds the output at its level; where light asks for none, Q30 is off and nothing holds it."""
     found, sign = warmed(values, data(request), "U30"), _sign(request)
-    level, room = values["input_level"], _headroom({**values, **found}, request, sign)
-    reach = np.maximum(room, LEAST_ROOM) / values["R30"]
+    reach = np.maximum(_headroom({**values, **found}, sign), LEAST_ROOM) / values["R30"]
     offset = values["R31"] * found["U30.bias_current"] + found["U30.offset"]
-    collector, base, volts = np.asarray(reach), np.asarray(level), np.asarray(0.0)
-    output: float | Lanes = level + offset
+    collector, base, volts = np.asarray(reach), np.asarray(0.0), np.asarray(0.0)
+    output: float | Lanes = offset
     for _ in range(SETTLINGS):
-        output = level + offset - base / values["U30.open_loop_gain"]
+        output = offset - base / values["U30.open_loop_gain"]
         collector = np.maximum(sign * _wanted(values, output, values["summing_current"]), LEAST_CURRENT)
         emitter = collector * (values["Q30.current_gain"] + 1) / values["Q30.current_gain"]
         volts = _base_emitter(values, reach, emitter)
         base = values[RAILS[sign]] - sign * (emitter * values["R30"] + volts)
     off = collector <= LEAST_CURRENT
     output = np.where(off, values["node.amp"], output)
-    swung = values["U30.open_loop_gain"] * (level + offset - output)
+    swung = values["U30.open_loop_gain"] * (offset - output)
     light = sign * (values["D1.responsivity"] * values["signal.power"] + values["D1.ambient_current"])
     dark_current = values["summing_current"] - light
-    holds = sign * _wanted(values, level + offset, dark_current) > 0
+    holds = sign * _wanted(values, offset, dark_current) > 0
     return {
         **found,
         **bipolar.small_signal(values, "Q30", collector, volts),
-        "servo.offset": np.where(holds, offset, _unheld(values, dark_current) - level),
+        "servo.offset": np.where(holds, offset, _unheld(values, dark_current)),
         "servo.range": reach * values["Q30.current_gain"] / (values["Q30.current_gain"] + 1),
         "node.amp": output,
-        "node.sum": level + values["U1.offset"] - output / values["U1.open_loop_gain"],
+        "node.sum": values["U1.offset"] - output / values["U1.open_loop_gain"],
         "node.injected": np.where(off, swung, base),
     }
 
 
 def _wanted(values: Values, output: float | Lanes, drawn: float | Lanes) -> Lanes:
     """Current into the summing node that an output leaves to be injected. [A]"""
-    summed = values["input_level"] + values["U1.offset"] - output / values["U1.open_loop_gain"]
+    summed = values["U1.offset"] - output / values["U1.open_loop_gain"]
     back = (output - summed * (1 + values["feedback_ratio"])) / values["feedback_resistance"]
     return np.asarray(drawn + summed * values["summing_conductance"] - back)
 
 
 def _unheld(values: Values, drawn: float | Lanes) -> Lanes:
     """Output with Q30 off, for a current drawn from the summing node. [V]"""
-    summed = values["input_level"] + values["U1.offset"]
+    summed = values["U1.offset"]
     through = drawn + summed * values["summing_conductance"]
     return np.asarray(summed * (1 + values["feedback_ratio"]) + values["feedback_resistance"] * through)
 
@@ -189,18 +176,20 @@ def stresses(values: Values, request: ReceiverRequest) -> tuple[Stress, ...]:
         Stress("R30", voltage=rail, power=current**2 * values["R30"], current=current),
         Stress("Q30", voltage=rail, current=current),
         Stress("R31", voltage=volts, power=volts**2 / values["R31"]),
-        Stress("U30", voltage=values["supply.positive"] - values["supply.negative"]),
-        *(Stress(ref, voltage=volts) for ref in ("C32", "C38", "C39")),
+        Stress("U30", voltage=rail),
+        *(Stress(ref, voltage=volts) for ref in ("C32", "C38")),
     )
 
 
 def heat(values: Values, request: ReceiverRequest) -> tuple[Heat, ...]:
-    """Q30, where its sheet states the way to the ambient."""
-    record = request.transistor
+    """The op amp; Q30, where its sheet states the way to the ambient."""
+    record, rail = request.transistor, np.abs(values[RAILS[_sign(request)]])
+    found = integrator.heat(values, request, rail)
     if record is None or record.junction_to_ambient is None:
-        return ()
-    power = values["Q30.drain_current"] * np.abs(values[RAILS[_sign(request)]] - values["input_level"])
-    return (Heat("Q30", power, values["temperature"] + power * record.junction_to_ambient.high, record.junction_max),)
+        return found
+    power = values["Q30.drain_current"] * rail
+    junction = values["temperature"] + power * record.junction_to_ambient.high
+    return (*found, Heat("Q30", power, junction, record.junction_max))
 
 
 def remarks(values: Values, limits: Limits, request: ReceiverRequest) -> tuple[str, ...]:
@@ -219,8 +208,11 @@ def remarks(values: Values, limits: Limits, request: ReceiverRequest) -> tuple[s
 
 
 def refused(request: ReceiverRequest) -> tuple[Refusal, ...]:
-    """No transistor, one of the wrong kind, or an op amp that cannot turn it off."""
+    """A raised level; no transistor, one of the wrong kind, or an op amp that cannot turn it off or lacks supply."""
     record, sign = request.transistor, _sign(request)
+    if request.conditions.input_level:
+        message = 'an input at 0 V is needed: from a raised one U30 could pull the base past it; injection = "resistor"'
+        return (Refusal(WHERE, message),)
     if record is None:
         return (Refusal(WHERE, f'injection = "transistor" needs a table [transistor], {KINDS[sign]}'),)
     if record.kind != KINDS[sign]:
@@ -231,9 +223,11 @@ def refused(request: ReceiverRequest) -> tuple[Refusal, ...]:
 
 
 def _turned_off(request: ReceiverRequest, record: BipolarData, sign: int) -> tuple[Refusal, ...]:
-    op_amp = request.second_amplifier or request.amplifier
-    if op_amp is None:
-        return ()
+    op_amp, supply = data(request), request.conditions.supply
+    least = abs(supply.positive if sign > 0 else supply.negative) * (1 - supply.tolerance)
+    if least < op_amp.supply_min:
+        message = f"its op amp works between ground and one rail, {write(least, 'V')} at least, and needs"
+        return (Refusal(WHERE, f"{message} {write(op_amp.supply_min, 'V')}: another under [second_amplifier]"),)
     swing = (op_amp.swing_to_positive if sign > 0 else op_amp.swing_to_negative).high
     hottest = request.conditions.temperature.high - ROOM_TEMPERATURE
     off = record.base_emitter_voltage.low + bipolar.DRIFT * hottest - TURN_OFF
