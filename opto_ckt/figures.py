@@ -31,6 +31,7 @@ _ALL = (
     Figure("low_cutoff", "Hz", "lower cut-off", "-3 dB electrical, re midband", 0.01),
     Figure("peaking", "dB", "peaking", "highest gain over midband, 20 log", 0.5),
     Figure("phase_margin", "°", "phase margin", "smallest over all crossings of unity loop gain", 45.0),
+    Figure("range_margin", "1", "range margin", "light at the output's limit over the largest of its range", 1.0),
     Figure("noise_gain", "V/V", "noise gain", "1 + C_in/C_f, what the op amp sees at its crossover", 1.0),
     Figure(
         "quality_factor", "1", "quality factor", "largest of all complex pole pairs; 0.5 where all poles are real", 0.5

@@ -15,6 +15,7 @@ CIRCUITS: dict[str, str] = {
     "tia-cascode": "opto_ckt.circuits.receivers.tia_cascode",
     "tia-tee": "opto_ckt.circuits.receivers.tia_tee",
     "tia-balanced": "opto_ckt.circuits.receivers.tia_balanced",
+    "tia-switched": "opto_ckt.circuits.receivers.tia_switched",
     "tia-discrete": "opto_ckt.circuits.receivers.tia_discrete",
     "tia-fixed": "opto_ckt.circuits.receivers.tia_fixed",
     "laser-current": "opto_ckt.circuits.drivers.laser_current",

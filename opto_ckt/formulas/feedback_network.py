@@ -58,6 +58,29 @@ def tee_capacitance(*, first: Real, second: Real, shunt: Real) -> Real:
     return first * second / (first + second + shunt)
 
 
+@source("Ohm's law: two ways beside each other")
+def branch_resistance(*, total: Real, first: Real, contact: Real) -> Real:
+    r"""Resistance that, behind a contact and beside another resistor, makes a wanted one.
+
+    .. math:: R_b = \frac{R\,R_1}{R_1 - R} - R_{on}
+
+    Parameters
+    ----------
+    total : R wanted in all. [Ω]
+    first : R_1 that is always there, above R. [Ω]
+    contact : R_on of the closed contact. [Ω]
+
+    Returns
+    -------
+    R_b. [Ω]
+
+    Notes
+    -----
+    Exact.
+    """
+    return total * first / (first - total) - contact
+
+
 @source("derived for R_A ≪ R_f; Texas Instruments LM6211 SNOSAH2C p. 20")
 def tapped_capacitance(*, wanted: Real, upper: Real, lower: Real) -> Real:
     r"""Capacitor to fit at a divider on the output so that it acts as a smaller one.

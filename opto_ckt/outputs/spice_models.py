@@ -17,6 +17,7 @@ from opto_ckt.outputs.spice_jfet import jfet_subcircuit
 from opto_ckt.outputs.spice_noise import LEAST, noise_pair, noise_pair_gain, shot_noise
 from opto_ckt.outputs.spice_text import card, comment, name, number
 from opto_ckt.topology import (
+    AnalogSwitch,
     BipolarTransistor,
     Capacitor,
     Comparator,
@@ -80,6 +81,23 @@ def _(element: Inductor, values: Values, driven: bool) -> Cards:
         card(ref, name(element.a), inner, number(values[element.ref]))
         + card(f"r{ref}", inner, name(element.b), number(values[f"{element.ref}.resistance"]))
     )
+
+
+@cards.register
+def _(element: AnalogSwitch, values: Values, driven: bool) -> Cards:
+    """The contact in its position: resistance, capacitances, leakage."""
+    ref, v = name(element.ref), _figures(element, values)
+    body = (
+        comment("pins: the two ends of the contact; put the maker's model here")
+        + card(".subckt", ref, "a b")
+        + card("ron", "a b", number(v["resistance"]))
+        + card("coff", "a b", number(v["capacitance"]))
+        + card("ca", "a 0", number(v["terminal_capacitance"]))
+        + card("cb", "b 0", number(v["terminal_capacitance"]))
+        + card("ileak", "a 0 dc", number(v["leak"]))
+        + card(".ends", ref)
+    )
+    return Cards(card(f"x{ref}", name(element.a), name(element.b), ref), body)
 
 
 @cards.register

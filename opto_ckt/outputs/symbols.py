@@ -8,6 +8,7 @@ from functools import singledispatch
 from math import cos, hypot, pi, sin
 
 from opto_ckt.topology import (
+    AnalogSwitch,
     Capacitor,
     Diode,
     Element,
@@ -120,7 +121,8 @@ def half_length(element: Element) -> float:
 
 
 _HALF_LENGTHS: tuple[tuple[type[Element], float], ...] = (
-    (Capacitor, 0.08), (Inductor, 0.52), (Diode, 0.18), (Photodiode, 0.18), (LaserDiode, 0.18), (Reference, 0.18),
+    (Capacitor, 0.08), (AnalogSwitch, 0.4), (Inductor, 0.52), (Diode, 0.18), (Photodiode, 0.18), (LaserDiode, 0.18),
+    (Reference, 0.18),
 )  # fmt: skip
 
 
@@ -143,6 +145,13 @@ def _box(left: float, bottom: float, right: float, top: float) -> Shape:
 @outline.register
 def _(element: Capacitor) -> tuple[Shape, ...]:
     return line((-0.08, -0.3), (-0.08, 0.3)), line((0.08, -0.3), (0.08, 0.3))
+
+
+@outline.register
+def _(element: AnalogSwitch) -> tuple[Shape, ...]:
+    """An open contact between two rings."""
+    rings = (disc((-0.34, 0), 0.06, filled=False), disc((0.34, 0), 0.06, filled=False))
+    return (*rings, line((-0.29, 0.04), (0.3, 0.34)))
 
 
 @outline.register

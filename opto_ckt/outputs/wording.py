@@ -45,6 +45,7 @@ LIGHT: Mapping[tuple[str, Level], str] = {
     ("temperature", "low"): "coldest",
     ("temperature", "high"): "hottest",
 }
+CONTACTS: Mapping[tuple[str, Level], str] = {("closed", "low"): "open", ("closed", "high"): "closed"}
 SUPPLIES: Mapping[str, str] = {
     "supply.positive": "positive supply",
     "supply.negative": "negative supply",
@@ -86,6 +87,9 @@ def _setting(name: str, level: Level, limits: Limits, labels: Mapping[str, str])
         return f"{SUPPLIES[name]} {write(float(limits[name].at(level, 0.0)), 'V')}"
     if (name, level) in LIGHT:
         return LIGHT[name, level]
+    ref, _, figure = name.partition(".")
+    if (figure, level) in CONTACTS:
+        return f"{ref} {CONTACTS[figure, level]}"
     return f"{_subject(name, labels)} {level}"
 
 

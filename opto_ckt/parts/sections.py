@@ -23,6 +23,7 @@ SECTIONS: Mapping[str, tuple[str, tuple[str, ...]]] = MappingProxyType(
         "thermistor": ("passives", ("ThermistorData",)),
         "logic_output": ("logic", ("LogicOutputData",)),
         "fibre": ("fibre", ("FibreData",)),
+        "analog_switch": ("analog_switch", ("AnalogSwitchData",)),
         "fixed_tia": ("fixed_tia", ("FixedTiaData",)),
     }
 )  #: section to module of this package and the classes in it

@@ -17,6 +17,7 @@ if TYPE_CHECKING:
         LoadResistorRequest,
         OpAmpReceiverRequest,
         ReceiverRequest,
+        SwitchedRequest,
     )
 
 __all__ = [
@@ -29,6 +30,7 @@ __all__ = [
     "OpAmpReceiverRequest",
     "ReceiverRequest",
     "Request",
+    "SwitchedRequest",
 ]
 
 LOADED_ON_USE = {
@@ -39,6 +41,7 @@ LOADED_ON_USE = {
     "LoadResistorRequest": "receiver",
     "OpAmpReceiverRequest": "receiver",
     "ReceiverRequest": "receiver",
+    "SwitchedRequest": "receiver",
     "LaserDriverRequest": "driver",
 }
 

@@ -8,10 +8,11 @@ from typing import Annotated, Any, ClassVar, Literal
 
 from pydantic import Field
 
+from opto_ckt.parts.analog_switch import AnalogSwitchData
 from opto_ckt.parts.fixed_tia import FixedTiaData
 from opto_ckt.parts.opamp import OpAmpData
 from opto_ckt.parts.photodiode import WavelengthError
-from opto_ckt.parts.record import Check, Choice, Finding, FindingsError, ReadBy, Spread, Table, Unit, Whole
+from opto_ckt.parts.record import Check, Choice, Finding, FindingsError, Points, ReadBy, Spread, Table, Unit, Whole
 from opto_ckt.parts.transistor import BipolarData, JfetData
 from opto_ckt.request.blocks import ReceiverBlocks
 from opto_ckt.request.detector import BiasSupply, Detector
@@ -164,6 +165,12 @@ def _bias_reached(detector: Detector, bias: BiasSupply | None) -> Iterator[Findi
         yield Finding(("bias", "supply"), f"{write(bias.supply, 'V')} is below the reverse bias of {wanted}")
 
 
+class GainRange(Table):
+    """One range of a receiver of switched gain."""
+
+    power: Annotated[float, Unit("W", "2 µW")]  #: largest average light on the detector
+
+
 class ReceiverRequest(Request):
     """A design file of a receiver."""
 
@@ -177,6 +184,8 @@ class ReceiverRequest(Request):
     follower: JfetData | None = None  #: that drives the far end of the detector
     comparator: OpAmpData | None = None  #: that decides the bits, by the figures of an op amp's record
     fixed_tia: FixedTiaData | None = None  #: a transimpedance amplifier that is bought whole
+    analog_switch: AnalogSwitchData | None = None  #: each contact that switches the gain
+    gain_ranges: Annotated[tuple[GainRange, ...], Points(2)] = ()  #: of switched gain
     signal: ReceivedSignal
     target: Target = Field(default_factory=Target.model_construct)
     load: Load = Field(default_factory=Load.model_construct)
@@ -184,7 +193,7 @@ class ReceiverRequest(Request):
     blocks: ReceiverBlocks = Field(default_factory=ReceiverBlocks.model_construct)
     conditions: ReceiverConditions
 
-    checks = (
+    checks: ClassVar[tuple[Check, ...]] = (
         Check(("detector", "signal"), _seen),
         Check(("amplifier", "conditions"), amplifier_supplied),
         Check(("second_amplifier", "conditions"), amplifier_supplied),
@@ -238,6 +247,24 @@ class CascodeRequest(OpAmpReceiverRequest):
     """A design file of a receiver whose photocurrent passes a transistor."""
 
     transistor: BipolarData
+
+
+def _up_to_the_most(ranges: tuple[GainRange, ...], signal: ReceivedSignal) -> Iterator[Finding]:
+    last, most = ranges[-1].power, signal.power.high
+    if abs(last / most - 1) > 1e-9:
+        yield Finding(
+            ("gain_ranges",),
+            f"the last range ends at {write(last, 'W')}, the light at {write(most, 'W')}: the two have to be one",
+        )
+
+
+class SwitchedRequest(OpAmpReceiverRequest):
+    """A design file of a receiver whose gain is switched; the ranges are in order of their light."""
+
+    gain_ranges: Annotated[tuple[GainRange, ...], Points(2)]
+    analog_switch: AnalogSwitchData
+
+    checks = (*ReceiverRequest.checks, Check(("gain_ranges", "signal"), _up_to_the_most))
 
 
 class DiscreteRequest(ReceiverRequest):

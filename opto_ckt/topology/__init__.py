@@ -19,6 +19,7 @@ from opto_ckt.topology.element import (
     renamed,
 )
 from opto_ckt.topology.elements import (
+    AnalogSwitch,
     BipolarTransistor,
     Capacitor,
     Comparator,
@@ -50,6 +51,7 @@ __all__ = [
     "RIGHT",
     "SHORT",
     "UP",
+    "AnalogSwitch",
     "BipolarTransistor",
     "Capacitor",
     "Comparator",

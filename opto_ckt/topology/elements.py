@@ -42,6 +42,13 @@ class Inductor(TwoTerminal):
     absent: ClassVar[Mapping[str, float]] = {"resistance": SHORT}
 
 
+class AnalogSwitch(TwoTerminal):
+    """One contact of an analog switch, by what it is in its position; ``a`` is the end that its leakage comes from."""
+
+    kind: ClassVar[str] = "analog switch"
+    figures: ClassVar[tuple[str, ...]] = ("resistance", "capacitance", "terminal_capacitance", "leak")
+
+
 @dataclass(frozen=True)
 class Junction(Element):
     """An element with an anode and a cathode."""

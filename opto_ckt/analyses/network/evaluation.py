@@ -2,9 +2,10 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
+from collections.abc import Callable, Mapping
 from dataclasses import dataclass
 from functools import cached_property
+from typing import Any
 
 import numpy as np
 from numpy.typing import NDArray
@@ -51,6 +52,7 @@ class Evaluation:
     gain : current of the input source for an input signal of 1. [A per unit of input]
     read_noise : gives the sums over all generators of white and of 1/f noise.
     read_generators : gives the noise generators one by one.
+    at : gives the same network at other values.
     """
 
     lanes: int
@@ -67,6 +69,7 @@ class Evaluation:
     gain: Array
     read_noise: Callable[[], list[Array]]
     read_generators: Callable[[], Generators]
+    at: Callable[[Mapping[str, Any]], Evaluation]
 
     @property
     def order(self) -> int:

@@ -12,6 +12,7 @@ from opto_ckt.analyses.network.primitives import Expansion, Kind, NoiseGenerator
 from opto_ckt.constants import BOLTZMANN, ELEMENTARY_CHARGE
 from opto_ckt.topology import (
     GROUND,
+    AnalogSwitch,
     BipolarTransistor,
     Capacitor,
     Comparator,
@@ -110,6 +111,22 @@ def _(element: Inductor) -> Parts:
 @_expand.register
 def _(element: Diode) -> Parts:
     return (_own("C", element, "capacitance", (element.anode, element.cathode)),), ()
+
+
+@_expand.register
+def _(element: AnalogSwitch) -> Parts:
+    """Resistance and capacitance of the contact in its position; each end's capacitance to ground."""
+    ends, ground = (element.a, element.b), _named(f"{element.ref}.terminal_capacitance")
+    resistance = _named(element.value_name("resistance"))
+    return (
+        (
+            _own("R", element, "resistance", ends),
+            _own("C", element, "capacitance", ends),
+            Primitive("C", f"{element.ref}.ground_a", (element.a, GROUND), ground),
+            Primitive("C", f"{element.ref}.ground_b", (element.b, GROUND), ground),
+        ),
+        (_thermal(f"{element.ref} contact", ends, resistance),),
+    )
 
 
 @_expand.register(Supply)

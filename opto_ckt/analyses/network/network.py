@@ -170,6 +170,7 @@ class Network:
             gain=np.broadcast_to(np.asarray(self.expansion.gain(given), dtype=float), (lanes,)),
             read_noise=lambda: self._noise.split(self._noise.run(given, lanes)),
             read_generators=lambda: self._generators(given, lanes),
+            at=self.evaluate,
         )
 
     def _generators(self, given: Mapping[str, Any], lanes: int) -> Generators:

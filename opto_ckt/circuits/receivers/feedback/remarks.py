@@ -14,11 +14,11 @@ from opto_ckt.units import write
 
 def remarks(values: Values, limits: Limits, request: OpAmpReceiverRequest) -> tuple[str, ...]:
     """Advice on slew rate, thick film, dark reach, polarity and capacitors too small to fit."""
-    r1 = float(np.max(values["feedback_resistance"]))
+    feedback = values["feedback_resistance"]
     found = [
         "output rises with light" if POLARITY[request.detector.output] > 0 else "output falls with light",
     ]
-    step = float(np.max(one_level(values, request))) * r1
+    step = float(np.max(one_level(values, request) * feedback))
     bandwidth = wanted_bandwidth(request)
     if bandwidth is not None:
         needed = 2 * np.pi * bandwidth * step / 2
@@ -27,7 +27,7 @@ def remarks(values: Values, limits: Limits, request: OpAmpReceiverRequest) -> tu
                 f"slew rate: the largest step asks for {write(float(needed), 'V/s')}, U1 gives"
                 f" {write(request.amplifier.slew_rate.low, 'V/s')}"
             )
-    standing = float(np.max(values["D1.signal_current"] + values["D1.ambient_current"])) * r1
+    standing = float(np.max((values["D1.signal_current"] + values["D1.ambient_current"]) * feedback))
     if standing > 0.05 and noise_band(request)[0] < 1e3:
         found.append(
             f"R1 carries {write(standing, 'V')} of standing photocurrent: fit thin film, thick film adds 1/f noise"

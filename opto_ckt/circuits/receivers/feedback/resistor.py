@@ -159,9 +159,10 @@ def _most(request: ReceiverRequest) -> float:
 
 def _headroom(stage: Stage) -> float:
     bench, level, polarity = stage.bench, stage.request.conditions.input_level, POLARITY[stage.request.detector.output]
+    lowest = level * (1 - stage.request.conditions.supply.tolerance) if level > 0 else level  # a divider's, of a supply
     rooms = {
         1: bench.low("supply.positive") - bench.high("U1.swing_to_positive") - level,
-        -1: level - bench.high("supply.negative") - bench.high("U1.swing_to_negative"),
+        -1: lowest - bench.high("supply.negative") - bench.high("U1.swing_to_negative"),
     }
     return min(rooms.values()) if stage.both_ways else rooms[int(polarity)]
 
