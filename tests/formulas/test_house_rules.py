@@ -87,11 +87,12 @@ BY_NAME = {  # where an equation holds only for figures that suit one another
     "second_slope": 0.25,
     "second_threshold": 12e-3,
     "stated_current": 20e-3,
-    "surface_current": 1e-9,
     "supply": 5.0,
+    "surface_current": 1e-9,
     "tap_voltage": 0.4,
     "thermal_noise": 3e-7,
     "threshold": 5e-3,
+    "total": 300.0,
     "zero": 430.0,
 }
 
