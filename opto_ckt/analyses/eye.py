@@ -30,7 +30,8 @@ def opening(evaluation: Evaluation, bit: float, run: int = LONGEST, reference: A
     Notes
     -----
     Of the response p to one bit, sampled each bit, the largest sample less the magnitudes of all others: the peak
-    distortion of R. W. Lucky, 1965. Exact exponentials; the instant is the best of `INSTANTS` of a bit, its end among them.
+    distortion of R. W. Lucky, 1965. Exact exponentials; the instant is the best of `INSTANTS` of a bit, the last at its
+    end.
     """
     modes = evaluation.modes
     period = bit * evaluation.frequency_scale

@@ -142,7 +142,7 @@ def test_best_gain_against_a_scan_of_the_real_sensitivity(name: str, excess: str
     found = [_sensitivity(asked, gain) for gain in gains]
     chosen = best.request.detector.wanted_gain
     assert isinstance(chosen, float)
-    assert _sensitivity(asked, chosen) <= min(found) * 1.005
+    assert _sensitivity(asked, chosen) <= min(found) * 10**0.005  # 0.05 dB: the sizing of trials moves in steps
     finite = [power for power in found if np.isfinite(power)]
     assert len(finite) > 20
     assert max(finite) > 1.2 * min(finite)
