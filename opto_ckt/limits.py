@@ -23,6 +23,7 @@ Steps = NDArray[np.int8]
 
 LEVELS: tuple[Level, ...] = ("low", "nominal", "high")  #: in order of the steps -1, 0, 1
 BLOCK = 20_000  #: most lanes that are evaluated in one call
+FAR = 1e9  #: margin of what is missed, or kept, by far
 ROUNDING = 1e-9  #: share of the largest figure below which a difference is rounding
 
 
@@ -93,8 +94,8 @@ class Requirement:
         distance = np.asarray(achieved, dtype=float) - self.bound
         signed = distance if self.side == "min" else -distance
         measure = max(abs(self.bound), self.scale)
-        share = signed / measure if measure else np.where(signed == 0, 0.0, signed * np.inf)
-        return np.nan_to_num(share, nan=-1e9, posinf=1e9, neginf=-1e9)
+        share = signed / measure if measure else FAR * np.sign(signed)
+        return np.nan_to_num(share, nan=-FAR, posinf=FAR, neginf=-FAR)
 
     def follows_from(self, other: Requirement) -> bool:
         """Whether the other bound, kept, leaves this one nothing to say."""

@@ -156,3 +156,11 @@ def test_distinct_keeps_each_corner_once_in_order(corners):
     assert all(corner in found for corner in corners)
     assert all(first != second for i, first in enumerate(found) for second in found[:i])
     assert found == sorted(found, key=corners.index)
+
+
+def test_a_bound_of_nothing_is_kept_or_missed_by_far():
+    """A bound and a scale of zero leave no measure: any distance is a large one, none is just enough."""
+    least, most = (Requirement("overload", side, 0.0, 0.0) for side in ("min", "max"))
+    achieved = np.array([-1e-9, 0.0, 1e-9, np.nan])
+    np.testing.assert_array_equal(least.margin(achieved), [-1e9, 0.0, 1e9, -1e9])
+    np.testing.assert_array_equal(most.margin(achieved), [1e9, 0.0, -1e9, -1e9])

@@ -30,11 +30,12 @@ def opening(evaluation: Evaluation, bit: float, run: int = LONGEST, reference: A
     Notes
     -----
     Of the response p to one bit, sampled each bit, the largest sample less the magnitudes of all others: the peak
-    distortion of R. W. Lucky, 1965. Exact exponentials; the instant is the best of `INSTANTS` of a bit.
+    distortion of R. W. Lucky, 1965. Exact exponentials; the instant is the best of `INSTANTS` of a bit, the last at its
+    end.
     """
     modes = evaluation.modes
     period = bit * evaluation.frequency_scale
-    instants = period * (np.arange(INSTANTS)[:, None] + 0.5) / INSTANTS
+    instants = period * (np.arange(INSTANTS)[:, None] + 1.0) / INSTANTS
     poles = np.where(np.isnan(modes.poles), -1.0, modes.poles)
     weights = np.where(poles.imag > 0, 2.0, np.where(poles.imag < 0, 0.0, 1.0))
     with np.errstate(divide="ignore", invalid="ignore", over="ignore"):

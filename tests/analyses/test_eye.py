@@ -32,11 +32,15 @@ def test_one_pole_leaves_what_its_step_has_reached_twice_less_one(share):
     """A one after zeros reaches 1 - e^(-T/RC) by its end; ones before a zero have left as much: 1 - 2 e^(-T/RC)."""
     bit = 1e-9 / share
     evaluation = _ladder(("R1", "C1")).evaluate({"R1": 1e3, "C1": 1e-12})
-    instant = (31.5 / 32) * bit
-    left = np.exp(-bit / 1e-9)
-    one = 1 - np.exp(-instant / 1e-9)
-    rest = np.exp(-instant / 1e-9) * (1 - left) / (1 - left)
-    assert opening(evaluation, bit)[0] == pytest.approx(one - rest, abs=1e-4)
+    assert opening(evaluation, bit)[0] == pytest.approx(1 - 2 * np.exp(-bit / 1e-9), abs=1e-4)
+
+
+@pytest.mark.parametrize(("share", "penalty"), [(0.5, 0.39257), (0.7, 0.10816), (1.0, 0.016251)])
+def test_penalty_of_one_pole(share: float, penalty: float) -> None:
+    """-10 log(1 - 2 exp(-2π f_3/B)), computed here; the peak of a lone bit as in an ngspice run."""
+    evaluation = _ladder(("R1", "C1")).evaluate({"R1": 1e3, "C1": 1e-12})
+    bit = share * 2 * np.pi * 1e-9
+    assert -10 * np.log10(opening(evaluation, bit)[0]) == pytest.approx(penalty, rel=1e-3)
 
 
 def test_no_pattern_of_ten_bits_closes_the_eye_further():
@@ -46,7 +50,7 @@ def test_no_pattern_of_ten_bits_closes_the_eye_further():
     )
     bit = 8e-9
     gain = response.dc_gain(evaluation)[0]
-    instants = bit * (np.arange(32) + 0.5) / 32
+    instants = bit * (np.arange(32) + 1.0) / 32
     bits = np.array(list(product((0, 1), repeat=10)))
     widest = -np.inf
     for delay in range(3):

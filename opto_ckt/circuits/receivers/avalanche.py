@@ -8,7 +8,7 @@ from math import inf, isfinite, log
 import numpy as np
 
 from opto_ckt.circuit import Refusal
-from opto_ckt.circuits.receivers.detector import bias_reach
+from opto_ckt.circuits.receivers.detector import bias_reach, level_factor
 from opto_ckt.errors import InfeasibleError
 from opto_ckt.limits import Figures
 from opto_ckt.parts.avalanche import bias_for_gain, breakdown, gain_at, gain_follows
@@ -16,7 +16,8 @@ from opto_ckt.request import ReceiverRequest
 from opto_ckt.units import write
 
 LEAST_GAIN = 1.2  #: from which the best gain is looked for
-TRIALS = 12  #: of a golden section search: the gain is found to a few per cent, the sensitivity far closer
+SCANNED = 8  #: gains from the least to the most, evenly in their logarithm
+TRIALS = 6  #: of golden section: the gain is found to some per cent, the sensitivity to 0.05 dB
 CLOSER = 20  #: steps towards the bias whose upper end is just what is allowed
 GOLDEN = (5**0.5 - 1) / 2
 DANGEROUS = 60.0  #: direct voltage from which a board needs care against touch, as extra-low voltage is bounded [V]
@@ -25,6 +26,7 @@ DANGEROUS = 60.0  #: direct voltage from which a board needs care against touch,
 def settled(request: ReceiverRequest, figures: Callable[[ReceiverRequest], Figures]) -> ReceiverRequest:
     """The request with the gain that needs the least light, each trial sized; as it is where a gain is given.
 
+    No gain is tried at which the most light makes more current than the detector stands.
     For a data signal the sensitivity decides, for an analog one the noise over the signal at its typical power.
     """
     if request.detector.wanted_gain != "optimum":
@@ -43,23 +45,35 @@ def settled(request: ReceiverRequest, figures: Callable[[ReceiverRequest], Figur
         value = float((found["sensitivity"] if request.signal.bit_rate is not None else analog)[0])
         return value if isfinite(value) else inf
 
-    return with_gain(_least(cost, log(LEAST_GAIN), log(max(_most_gain(request), LEAST_GAIN))))
+    low, high = log(LEAST_GAIN), log(max(_most_gain(request), LEAST_GAIN))
+    if overlit(with_gain(high)) is not None:
+        dim = low
+        for _ in range(CLOSER):
+            middle = (dim + high) / 2
+            dim, high = (middle, high) if overlit(with_gain(middle)) is None else (dim, middle)
+        high = dim
+    return with_gain(_least(cost, low, high))
 
 
 def _least(cost: Callable[[float], float], low: float, high: float) -> float:
-    """Where a function of one minimum is least, by golden section."""
-    inner = [high - GOLDEN * (high - low), low + GOLDEN * (high - low)]
-    costs = [cost(at) for at in inner]
-    for _ in range(TRIALS - 2):
-        if costs[0] <= costs[1]:
-            high, inner[1], costs[1] = inner[1], inner[0], costs[0]
-            inner[0] = high - GOLDEN * (high - low)
-            costs[0] = cost(inner[0])
+    """Where a function is least: the best of a scan with both ends in it, then golden section between its neighbours.
+
+    The function has steps, where the sizing of a trial takes another way; so the best that was seen is what counts.
+    """
+    scanned: list[float] = np.linspace(low, high, SCANNED).tolist()
+    seen = {at: cost(at) for at in scanned}
+    best = min(range(SCANNED), key=lambda index: seen[scanned[index]])
+    low, high = scanned[max(best - 1, 0)], scanned[min(best + 1, SCANNED - 1)]
+    left, right = high - GOLDEN * (high - low), low + GOLDEN * (high - low)
+    for _ in range(TRIALS):
+        seen |= {at: cost(at) for at in (left, right) if at not in seen}
+        if seen[left] <= seen[right]:
+            high, right = right, left
+            left = high - GOLDEN * (high - low)
         else:
-            low, inner[0], costs[0] = inner[0], inner[1], costs[1]
-            inner[1] = low + GOLDEN * (high - low)
-            costs[1] = cost(inner[1])
-    return inner[0] if costs[0] <= costs[1] else inner[1]
+            low, left = left, right
+            right = low + GOLDEN * (high - low)
+    return min(seen, key=lambda at: seen[at])
 
 
 def _most_gain(request: ReceiverRequest) -> float:
@@ -97,6 +111,37 @@ def refused(request: ReceiverRequest) -> tuple[Refusal, ...]:
             f" reverse_voltage_max {write(detector.reverse_voltage_max, 'V')}; {allowed}, or a closer bias tolerance",
         ),
     )
+
+
+def overlit(request: ReceiverRequest) -> Refusal | None:
+    """Light that makes more current than the detector stands, at its largest gain; None if it does not."""
+    detector, most = request.detector, request.detector.photocurrent_max
+    gain, where = _largest_gain(request)
+    responsivity = detector.responsivity_spread(request.signal.wavelength).high / detector.responsivity_gain * gain
+    light = responsivity * request.signal.power.high * level_factor(request)
+    ambient = request.ambient_current.high * gain
+    if most is None or not isfinite(gain) or light + ambient <= most:
+        return None
+    allowed = f"at most {write(max(most - ambient, 0.0) / light * request.signal.power.high, 'W')}" if light else ""
+    if ambient >= most:
+        allowed = f"the background alone makes {write(ambient, 'A')}"
+    return Refusal(
+        ("signal", "power"),
+        f"a one with the background makes up to {write(light + ambient, 'A')} in the detector{where},"
+        f" photocurrent_max is {write(most, 'A')}; {allowed}",
+    )
+
+
+def _largest_gain(request: ReceiverRequest) -> tuple[float, str]:
+    """Largest gain at full bias, and where; that at nominal where a resistance takes of the bias as light grows."""
+    detector, coldest = request.detector, request.conditions.temperature.low
+    if not gain_follows(detector) or detector.wanted_gain == "optimum":
+        return 1.0, ""
+    if request.inverting and "bias_filter" not in request.blocks_asked:
+        gain = float(gain_at(detector, bias_reach(request, 1), coldest))
+        return gain, f" at {write(coldest, '°C')}, at a gain of {gain:.3g}"
+    gain = float(gain_at(detector, detector.resting_bias, detector.gain_temperature))
+    return gain, f" at a gain of {gain:.3g}"
 
 
 def remarks(request: ReceiverRequest) -> list[str]:

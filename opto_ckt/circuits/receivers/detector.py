@@ -120,11 +120,11 @@ def direction(request: ReceiverRequest) -> float:
 
 
 def level_factor(request: ReceiverRequest) -> float:
-    """Power of a one over average power, 2 r/(r + 1) at equal numbers of ones and zeros; 1 for an analog signal."""
+    """Power of a one over average power, r/(d r + 1 - d) at a share d of ones; 1 for an analog signal."""
     if request.signal.bit_rate is None:
         return 1.0
-    ratio = request.signal.extinction_ratio
-    return 2 * ratio / (ratio + 1)
+    ratio, ones = request.signal.extinction_ratio, request.signal.mark_density
+    return ratio / (ones * ratio + 1 - ones)
 
 
 def one_level(values: Values, request: ReceiverRequest, detector: str = "D1") -> float | Lanes:

@@ -198,6 +198,8 @@ class ReceiverFigures:
                 gain=gain,
                 excess_noise=values[f"{detector}.excess_noise"],
             )
+        ratio = signal.extinction_ratio
+        power = power * 2 * ratio / (ratio + 1) / level_factor(self._request)  # the one level, at the share of ones
         return np.where(self.eye_opening > 0, power, np.where(np.isnan(self.eye_opening), np.nan, np.inf))
 
     @cached_property

@@ -2,13 +2,10 @@
 
 from __future__ import annotations
 
-from math import isfinite
-
 from opto_ckt.circuit import Refusal
 from opto_ckt.circuits.receivers import avalanche
-from opto_ckt.circuits.receivers.detector import bias_reach, level_factor, midband
-from opto_ckt.constants import ROOM_TEMPERATURE
-from opto_ckt.parts.avalanche import gain_at, gain_follows
+from opto_ckt.circuits.receivers.detector import bias_reach, midband
+from opto_ckt.parts.avalanche import gain_follows
 from opto_ckt.request import ReceiverRequest
 from opto_ckt.units import write
 
@@ -52,32 +49,4 @@ def _overdriven(request: ReceiverRequest) -> list[Refusal]:
                 f" {write(detector.resting_bias * limit / reach, 'V')}, or a closer tolerance",
             )
         )
-    most = detector.photocurrent_max
-    gain, where = _most_gain(request)
-    responsivity = detector.responsivity_spread(request.signal.wavelength).high / detector.responsivity_gain * gain
-    light = responsivity * request.signal.power.high * level_factor(request)
-    ambient = request.ambient_current.high * gain
-    if most is not None and isfinite(gain) and light + ambient > most:
-        allowed = f"at most {write(max(most - ambient, 0.0) / light * request.signal.power.high, 'W')}"
-        if ambient >= most:
-            allowed = f"the background alone makes {write(ambient, 'A')}"
-        found.append(
-            Refusal(
-                ("signal", "power"),
-                f"a one with the background makes up to {write(light + ambient, 'A')} in the detector{where},"
-                f" photocurrent_max is {write(most, 'A')}; {allowed}",
-            )
-        )
-    return found
-
-
-def _most_gain(request: ReceiverRequest) -> tuple[float, str]:
-    """Largest gain at full bias, and where; that at nominal where a resistance takes of the bias as light grows."""
-    detector, coldest = request.detector, request.conditions.temperature.low
-    if not gain_follows(detector) or detector.wanted_gain == "optimum":
-        return 1.0, ""
-    if request.inverting and "bias_filter" not in request.blocks_asked:
-        gain = float(gain_at(detector, bias_reach(request, 1), coldest))
-        return gain, f" at {write(coldest, '°C')}, at a gain of {gain:.3g}"
-    gain = float(gain_at(detector, detector.resting_bias, ROOM_TEMPERATURE))
-    return gain, f" at a gain of {gain:.3g}"
+    return found if (overlit := avalanche.overlit(request)) is None else [*found, overlit]
