@@ -25,8 +25,11 @@ _ALL = (
         "bandwidth",
         "Hz",
         "bandwidth",
-        "light to the last node, blocks and load included; -3 dB electrical, re midband",
+        "light to the last node, blocks and load included, or drive to light; -3 dB electrical, re midband",
         1.0,
+    ),
+    Figure(
+        "optical_bandwidth", "Hz", "optical bandwidth", "drive to light: half the light, -6 dB of a photocurrent", 1.0
     ),
     Figure("low_cutoff", "Hz", "lower cut-off", "-3 dB electrical, re midband", 0.01),
     Figure("peaking", "dB", "peaking", "highest gain over midband, 20 log", 0.5),

@@ -18,6 +18,7 @@ CIRCUITS: dict[str, str] = {
     "tia-switched": "opto_ckt.circuits.receivers.tia_switched",
     "tia-discrete": "opto_ckt.circuits.receivers.tia_discrete",
     "tia-fixed": "opto_ckt.circuits.receivers.tia_fixed",
+    "led-resistor": "opto_ckt.circuits.drivers.led_resistor",
     "laser-current": "opto_ckt.circuits.drivers.laser_current",
 }
 """Name -> module whose ``CIRCUIT`` it is."""

@@ -12,7 +12,7 @@ from opto_ckt.outputs.linear_deck import loop_deck
 from opto_ckt.outputs.spice_models import cards
 from opto_ckt.outputs.spice_text import LONGEST, card, comment, deck, number, title
 from opto_ckt.result import DesignHead, Result, Scene
-from opto_ckt.topology import GROUND, LaserDiode, Photodiode, Topology, Transistor
+from opto_ckt.topology import GROUND, LaserDiode, Led, Photodiode, Topology, Transistor
 from opto_ckt.units import write
 
 POINTS_AC = 50  #: a decade
@@ -64,7 +64,7 @@ def head(design: DesignHead, scene: Scene, kind: str) -> list[str]:
 
 def is_linear(topology: Topology) -> bool:
     """Whether no element is modelled by its large-signal law."""
-    return not any(isinstance(element, Transistor | LaserDiode) for element in topology)
+    return not any(isinstance(element, Transistor | LaserDiode | Led) for element in topology)
 
 
 def source(topology: Topology) -> str:

@@ -1,14 +1,14 @@
-"""Cards of photodiodes and lasers, light in watts as volts."""
+"""Cards of photodiodes, lasers and LEDs, light in watts as volts."""
 
 from __future__ import annotations
 
-from math import pi
+from math import expm1, pi
 
 from opto_ckt.constants import BOLTZMANN, ELEMENTARY_CHARGE
 from opto_ckt.outputs.spice_cards import NOWHERE, Cards, Values, cards, figures_of
 from opto_ckt.outputs.spice_noise import shot_noise
 from opto_ckt.outputs.spice_text import card, comment, name, number
-from opto_ckt.topology import LaserDiode, Photodiode
+from opto_ckt.topology import LaserDiode, Led, Photodiode
 
 
 @cards.register
@@ -74,5 +74,37 @@ def _(element: LaserDiode, values: Values, driven: bool) -> Cards:
         + card(".ends", ref)
     )
     light = name(f"pw{element.ref}")
+    load = card(f"r{light[:7]}", light, "0", "1e6")
+    return Cards(card(f"x{ref}", name(element.anode), name(element.cathode), light, ref) + load, body)
+
+
+@cards.register
+def _(element: Led, values: Values, driven: bool) -> Cards:
+    """Diode law through the operating point; its current, delayed by the lifetime, makes the light."""
+    ref, v = name(element.ref), figures_of(element, values)
+    thermal = BOLTZMANN * values["temperature"] / ELEMENTARY_CHARGE
+    emission = v["junction_resistance"] * v["current"] / thermal
+    drop = values[f"{element.ref}.forward_voltage"] - v["current"] * v["series_resistance"]
+    saturation = v["current"] / expm1(drop / (emission * thermal))
+    dark = values[f"{element.ref}.emitted_power"] - v["slope_efficiency"] * v["current"]
+    light = name(element.light)
+    body = (
+        comment("pins: anode cathode light; put the maker's model here, light in watts as volts")
+        + comment("forward voltage and light hold at the operating current and temperature of this deck")
+        + card(".subckt", ref, "a k pw")
+        + card("rs", "a j", number(v["series_resistance"]))
+        + card("vs", "j j1 dc", "0")
+        + card("dj", "j1 k", "dj")
+        + card(".model dj", f"d(is={number(saturation)} n={number(emission)})")
+        + card("cj", "j k", number(v["capacitance"]))
+        + comment("the junction's current, delayed by the lifetime")
+        + card("f1", "0 x vs", "1")
+        + card("grx", "x 0 x 0", "1")
+        + card("ctau", "x 0", number(v["lifetime"]))
+        + comment("straight line through the light at the operating current")
+        + card("e1", "p1 0 x 0", number(v["slope_efficiency"]))
+        + card("vp", "pw p1 dc", number(dark))
+        + card(".ends", ref)
+    )
     load = card(f"r{light[:7]}", light, "0", "1e6")
     return Cards(card(f"x{ref}", name(element.anode), name(element.cathode), light, ref) + load, body)

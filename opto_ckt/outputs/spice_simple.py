@@ -6,7 +6,17 @@ from opto_ckt.formulas.noise_generator import resistance_for_voltage_noise
 from opto_ckt.outputs.spice_cards import Cards, Values, cards, figures_of
 from opto_ckt.outputs.spice_noise import LEAST
 from opto_ckt.outputs.spice_text import card, comment, name, number
-from opto_ckt.topology import AnalogSwitch, Capacitor, Diode, Inductor, Reference, Resistor, Supply, Terminal
+from opto_ckt.topology import (
+    AnalogSwitch,
+    Capacitor,
+    Diode,
+    Inductor,
+    LogicOutput,
+    Reference,
+    Resistor,
+    Supply,
+    Terminal,
+)
 
 
 @cards.register(Terminal)
@@ -87,3 +97,16 @@ def _(element: Reference, values: Values, driven: bool) -> Cards:
         + card(".ends", ref)
     )
     return Cards(card(f"x{ref}", name(element.cathode), name(element.anode), ref), body)
+
+
+@cards.register
+def _(element: LogicOutput, values: Values, driven: bool) -> Cards:
+    ref, v = name(element.ref), figures_of(element, values)
+    body = (
+        comment("pins: out; the output at rest in one state; put the maker's model here")
+        + card(".subckt", ref, "o")
+        + card("ve", "e 0 dc", number(values[f"{element.ref}.level"]))
+        + card("gro", "e o e o", number(1 / v["resistance"]))
+        + card(".ends", ref)
+    )
+    return Cards(card(f"x{ref}", name(element.out), ref), body)

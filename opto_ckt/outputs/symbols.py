@@ -16,6 +16,8 @@ from opto_ckt.topology import (
     Inductor,
     Jfet,
     LaserDiode,
+    Led,
+    LogicOutput,
     OpAmp,
     Photodiode,
     Point,
@@ -122,7 +124,7 @@ def half_length(element: Element) -> float:
 
 _HALF_LENGTHS: tuple[tuple[type[Element], float], ...] = (
     (Capacitor, 0.08), (AnalogSwitch, 0.4), (Inductor, 0.52), (Diode, 0.18), (Photodiode, 0.18), (LaserDiode, 0.18),
-    (Reference, 0.18),
+    (Led, 0.18), (Reference, 0.18),
 )  # fmt: skip
 
 
@@ -178,8 +180,9 @@ def _(element: Photodiode) -> tuple[Shape, ...]:
     return (_triangle(1), line((0.18, -0.22), (0.18, 0.22)), *light)
 
 
-@outline.register
-def _(element: LaserDiode) -> tuple[Shape, ...]:
+@outline.register(Led)
+@outline.register(LaserDiode)
+def _(element: Element) -> tuple[Shape, ...]:
     light = (*arrow((-0.1, 0.34), (0.12, 0.72)), *arrow((0.16, 0.34), (0.38, 0.72)))
     return (_triangle(1), line((0.18, -0.22), (0.18, 0.22)), *light)
 
@@ -202,6 +205,12 @@ def _(element: OpAmp) -> tuple[Shape, ...]:
         line((0.34, -0.5), (0.54, -0.5)),
         line((0.44, -0.6), (0.44, -0.4)),
     )
+
+
+@outline.register
+def _(element: LogicOutput) -> tuple[Shape, ...]:
+    """A buffer; what drives it is not drawn."""
+    return Shape(((0.5, 0.6), (0.5, -0.6), (1.5, 0)), closed=True), line((0, 0), (0.5, 0)), line((1.5, 0), (2, 0))
 
 
 @outline.register

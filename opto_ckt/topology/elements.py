@@ -203,6 +203,31 @@ class LaserDiode(Junction):
 
 
 @dataclass(frozen=True)
+class Led(Junction):
+    """A light-emitting diode at its bias point: junction behind its series resistance, light behind its lifetime.
+
+    The light is the voltage of a node of its own, a volt a watt.
+    """
+
+    light: str = "light"  #: node that carries the light
+    kind: ClassVar[str] = "LED"
+    figures: ClassVar[tuple[str, ...]] = (
+        "series_resistance", "junction_resistance", "capacitance", "lifetime", "slope_efficiency", "current",
+    )  # fmt: skip
+
+
+@dataclass(frozen=True)
+class LogicOutput(Element):
+    """A logic output at one of its levels, behind the resistance that it has there."""
+
+    out: str
+    kind: ClassVar[str] = "logic output"
+    pins: ClassVar[tuple[str, ...]] = ("out",)
+    pin_places: ClassVar[Mapping[str, Point]] = {"out": (2, 0)}
+    figures: ClassVar[tuple[str, ...]] = ("resistance",)
+
+
+@dataclass(frozen=True)
 class Reference(Element):
     """A two-terminal (shunt) voltage reference; an input of the circuit, in volts."""
 

@@ -16,12 +16,12 @@ def expand(topology: Topology) -> Expansion:
     rails = {element.node for element in topology if isinstance(element, Supply)}
     primitives: list[Primitive] = []
     generators: list[NoiseGenerator] = []
-    for element in topology:
-        grounded = renamed(element, dict.fromkeys(rails, GROUND))
-        more_primitives, more_generators = model_of(grounded)
+    grounded = {element.ref: renamed(element, dict.fromkeys(rails, GROUND)) for element in topology}
+    for element in grounded.values():
+        more_primitives, more_generators = model_of(element)
         primitives += [each for each in more_primitives if each.nodes[0] != each.nodes[1]]
         generators += [each for each in more_generators if each.nodes[0] != each.nodes[1]]
-    nodes, gain = signal_of(topology[topology.input])
+    nodes, gain = signal_of(grounded[topology.input])
     return Expansion(
         primitives=tuple(primitives),
         generators=tuple(generators),
@@ -29,7 +29,7 @@ def expand(topology: Topology) -> Expansion:
         gain=gain,
         output=topology.output,
         loop=_opened(topology[topology.loop]) if topology.loop else None,
-        rival=signal_of(topology[topology.rival]) if topology.rival else None,
+        rival=signal_of(grounded[topology.rival]) if topology.rival else None,
     )
 
 

@@ -5,8 +5,9 @@ from __future__ import annotations
 from math import pi
 
 from opto_ckt.analyses.network.element_model import Parts, model_of, named, one, own, shot, signal_of, thermal
-from opto_ckt.analyses.network.primitives import Primitive, Value
-from opto_ckt.topology import GROUND, LaserDiode, Photodiode
+from opto_ckt.analyses.network.primitives import NoiseGenerator, Primitive, Value
+from opto_ckt.constants import ELEMENTARY_CHARGE
+from opto_ckt.topology import GROUND, LaserDiode, Led, Photodiode
 
 
 @model_of.register
@@ -44,3 +45,40 @@ def _(element: Photodiode) -> tuple[tuple[str, str], Value]:
 def _(element: LaserDiode) -> Parts:
     ends = (element.anode, element.cathode)
     return (own("R", element, "series_resistance", ends), own("C", element, "capacitance", ends)), ()
+
+
+@model_of.register
+def _(element: Led) -> Parts:
+    """Its junction's current, delayed by the lifetime of the carriers, makes the light.
+
+    The shot noise is a voltage in series with the junction's resistance, whose current is then all that recombines: a
+    stiff drive keeps noise out of the light.
+    """
+    ref, light = element.ref, element.light
+    junction, inner, noisy, carriers = (f"{ref}.{node}" for node in ("junction", "inner", "noisy", "carriers"))
+    inside = (junction, inner)
+    resistance, slope = named(f"{ref}.junction_resistance"), named(f"{ref}.slope_efficiency")
+    current = named(f"{ref}.current")
+    return (
+        (
+            own("R", element, "series_resistance", (element.anode, junction)),
+            Primitive("G", f"{ref}.junction_current", (*inside, *inside), lambda v: 1 / resistance(v)),
+            Primitive("E", f"{ref}.shot", (inner, element.cathode, noisy, GROUND), one),
+            Primitive("R", f"{ref}.noise_unity", (noisy, GROUND), one),
+            own("C", element, "capacitance", (junction, element.cathode)),
+            Primitive("G", f"{ref}.injection", (GROUND, carriers, *inside), lambda v: 1 / resistance(v)),
+            Primitive("R", f"{ref}.recombination", (carriers, GROUND), one),
+            own("C", element, "lifetime", (carriers, GROUND)),
+            Primitive("G", f"{ref}.emission", (GROUND, light, carriers, GROUND), slope),
+            Primitive("R", f"{ref}.unity", (light, GROUND), one),
+        ),
+        (
+            thermal(f"{ref} series", (element.anode, junction), named(f"{ref}.series_resistance")),
+            NoiseGenerator(
+                f"{ref} junction shot",
+                (noisy, GROUND),
+                lambda v: 2 * ELEMENTARY_CHARGE * current(v) * resistance(v) ** 2,
+                None,
+            ),
+        ),
+    )

@@ -11,6 +11,7 @@ from opto_ckt.topology import (
     Diode,
     Element,
     Inductor,
+    LogicOutput,
     Reference,
     Resistor,
     Supply,
@@ -96,3 +97,10 @@ def _(element: Reference) -> Parts:
 def _(element: Reference) -> tuple[tuple[str, str], Value]:
     resistance = named(f"{element.ref}.output_resistance")
     return (element.anode, element.cathode), lambda v: 1 / resistance(v)
+
+
+@model_of.register
+def _(element: LogicOutput) -> Parts:
+    """The resistance of the transistor that conducts; what noise it makes no sheet says."""
+    resistance, ends = named(element.value_name("resistance")), (element.out, GROUND)
+    return (Primitive("G", f"{element.ref}.output", (*ends, *ends), lambda v: 1 / resistance(v)),), ()

@@ -14,9 +14,9 @@ from opto_ckt.circuits.drivers.laser_current.slack import (
     Sharing,
     current_spread,
     offset_error,
-    resistor_spread,
 )
 from opto_ckt.circuits.drivers.side import side_of
+from opto_ckt.circuits.drivers.spread import resistor_spread
 from opto_ckt.derivation import Derivation
 from opto_ckt.errors import InfeasibleError
 from opto_ckt.formulas import driver

@@ -7,9 +7,10 @@ from math import inf
 from opto_ckt.circuit import Bench, Fitted
 from opto_ckt.circuits.drivers.laser_current.budget import Share, budget
 from opto_ckt.circuits.drivers.laser_current.compensation import compensation
-from opto_ckt.circuits.drivers.laser_current.slack import GATE, resistor_spread
+from opto_ckt.circuits.drivers.laser_current.slack import GATE
 from opto_ckt.circuits.drivers.pass_transistor import pass_transistor
 from opto_ckt.circuits.drivers.side import side_of
+from opto_ckt.circuits.drivers.spread import resistor_spread
 from opto_ckt.derivation import Derivation
 from opto_ckt.errors import InfeasibleError
 from opto_ckt.formulas import driver, driver_loop, laser, laser_heating, reference, supply_filter, transistor
