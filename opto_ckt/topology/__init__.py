@@ -29,6 +29,7 @@ from opto_ckt.topology.elements import (
     Jfet,
     Junction,
     LaserDiode,
+    MonitoredLaser,
     OpAmp,
     Photodiode,
     Reference,
@@ -37,6 +38,7 @@ from opto_ckt.topology.elements import (
     Switch,
     Terminal,
     Transistor,
+    Trimmer,
     TwoTerminal,
 )
 from opto_ckt.topology.structure import (
@@ -62,6 +64,7 @@ __all__ = [
     "Jfet",
     "Junction",
     "LaserDiode",
+    "MonitoredLaser",
     "OpAmp",
     "Photodiode",
     "Point",
@@ -72,6 +75,7 @@ __all__ = [
     "Terminal",
     "Topology",
     "Transistor",
+    "Trimmer",
     "TwoTerminal",
     "renamed",
 ]

@@ -21,6 +21,7 @@ from opto_ckt.topology import (
     FixedTia,
     Inductor,
     LaserDiode,
+    MonitoredLaser,
     OpAmp,
     Photodiode,
     Reference,
@@ -30,6 +31,7 @@ from opto_ckt.topology import (
     Terminal,
     Topology,
     Transistor,
+    Trimmer,
     renamed,
 )
 
@@ -87,6 +89,15 @@ def _(element: Resistor) -> tuple[tuple[str, str], Value]:
     """A voltage in series with the resistor, raising its second end."""
     resistance = _named(element.ref)
     return (element.a, element.b), lambda v: 1 / resistance(v)
+
+
+@_expand.register
+def _(element: Trimmer) -> Parts:
+    ends = (element.a, element.b)
+    return (
+        (_own("R", element, "setting", ends),),
+        (_thermal(element.ref, ends, _named(element.value_name("setting"))),),
+    )
 
 
 @_expand.register
@@ -310,6 +321,23 @@ def _(element: BipolarTransistor) -> Parts:
 def _(element: LaserDiode) -> Parts:
     ends = (element.anode, element.cathode)
     return (_own("R", element, "series_resistance", ends), _own("C", element, "capacitance", ends)), ()
+
+
+@_expand.register
+def _(element: MonitoredLaser) -> Parts:
+    """As any laser; current through its junction, not through its capacitance, comes back from the monitor."""
+    ref, ends = element.ref, (element.anode, element.cathode)
+    monitor = (element.monitor_cathode, element.monitor_anode)
+    gain, resistance = _named(f"{ref}.monitor_gain"), _named(f"{ref}.series_resistance")
+    primitives, generators = _expand.dispatch(LaserDiode)(element)
+    return (
+        (
+            *primitives,
+            Primitive("G", f"{ref}.monitor", (*monitor, *ends), lambda v: gain(v) / resistance(v)),
+            _own("C", element, "monitor_capacitance", monitor),
+        ),
+        (*generators, _shot(f"{ref} monitor shot", monitor, _named(f"{ref}.monitor_shot"))),
+    )
 
 
 @_expand.register
