@@ -18,6 +18,7 @@ from opto_ckt.topology import (
     LaserDiode,
     Led,
     LogicOutput,
+    MonitoredLaser,
     OpAmp,
     Photodiode,
     Point,
@@ -26,6 +27,7 @@ from opto_ckt.topology import (
     Switch,
     Terminal,
     Transistor,
+    Trimmer,
 )
 
 Segment = tuple[Point, Point]
@@ -185,6 +187,23 @@ def _(element: Photodiode) -> tuple[Shape, ...]:
 def _(element: Element) -> tuple[Shape, ...]:
     light = (*arrow((-0.1, 0.34), (0.12, 0.72)), *arrow((0.16, 0.34), (0.38, 0.72)))
     return (_triangle(1), line((0.18, -0.22), (0.18, 0.22)), *light)
+
+
+@outline.register
+def _(element: MonitoredLaser) -> tuple[Shape, ...]:
+    """Laser and monitor side by side, light going from the one to the other."""
+    laser = Shape(((-0.22, 1.18), (0.22, 1.18), (0, 0.82)), closed=True)
+    monitor = Shape(((1.28, 0.82), (1.72, 0.82), (1.5, 1.18)), closed=True)
+    bars = (line((-0.22, 0.82), (0.22, 0.82)), line((1.28, 1.18), (1.72, 1.18)))
+    leads = tuple(line((x, y), (x, middle)) for x in (0, 1.5) for y, middle in ((2, 1.18), (0, 0.82)))
+    light = (*arrow((0.4, 1.12), (0.98, 1.12)), *arrow((0.4, 0.88), (0.98, 0.88)))
+    return (laser, monitor, *bars, *leads, *light)
+
+
+@outline.register
+def _(element: Trimmer) -> tuple[Shape, ...]:
+    """A resistor with an arrow through it."""
+    return (_box(-0.45, -0.18, 0.45, 0.18), *arrow((-0.42, -0.4), (0.42, 0.4)))
 
 
 @outline.register

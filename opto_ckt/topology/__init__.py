@@ -31,6 +31,7 @@ from opto_ckt.topology.elements import (
     LaserDiode,
     Led,
     LogicOutput,
+    MonitoredLaser,
     OpAmp,
     Photodiode,
     Reference,
@@ -39,6 +40,7 @@ from opto_ckt.topology.elements import (
     Switch,
     Terminal,
     Transistor,
+    Trimmer,
     TwoTerminal,
 )
 from opto_ckt.topology.structure import (
@@ -66,6 +68,7 @@ __all__ = [
     "LaserDiode",
     "Led",
     "LogicOutput",
+    "MonitoredLaser",
     "OpAmp",
     "Photodiode",
     "Point",
@@ -76,6 +79,7 @@ __all__ = [
     "Terminal",
     "Topology",
     "Transistor",
+    "Trimmer",
     "TwoTerminal",
     "renamed",
 ]

@@ -26,6 +26,17 @@ class Resistor(TwoTerminal):
     faults: ClassVar[Mapping[str, Mapping[str, float]]] = {"open": {"": OPEN}, "short": {"": SHORT}}
 
 
+class Trimmer(TwoTerminal):
+    """A trimming resistor wired as a rheostat, wiper to one end, so that an open wiper leaves its whole track.
+
+    Its track [Ω] is named like itself; what it is set to is its ``setting``.
+    """
+
+    kind: ClassVar[str] = "trimmer"
+    stocked: ClassVar[str] = "trimmers"
+    figures: ClassVar[tuple[str, ...]] = ("setting",)
+
+
 class Capacitor(TwoTerminal):
     """A capacitor; its value [F] is named like itself."""
 
@@ -200,6 +211,24 @@ class LaserDiode(Junction):
     kind: ClassVar[str] = "laser"
     figures: ClassVar[tuple[str, ...]] = ("series_resistance", "capacitance")
     absent: ClassVar[Mapping[str, float]] = {"capacitance": 1e-15}
+
+
+@dataclass(frozen=True)
+class MonitoredLaser(LaserDiode):
+    """A laser diode with its monitor diode in one package: above threshold a share of its current comes back.
+
+    ``monitor_gain`` is the monitor's current over that of the laser, ``monitor_shot`` the current that makes its noise.
+    """
+
+    monitor_cathode: str
+    monitor_anode: str
+    pins: ClassVar[tuple[str, ...]] = ("anode", "cathode", "monitor_cathode", "monitor_anode")
+    pin_places: ClassVar[Mapping[str, Point]] = {
+        "anode": (0, 2), "cathode": (0, 0), "monitor_cathode": (1.5, 2), "monitor_anode": (1.5, 0),
+    }  # fmt: skip
+    figures: ClassVar[tuple[str, ...]] = (
+        "series_resistance", "capacitance", "monitor_gain", "monitor_capacitance", "monitor_shot",
+    )  # fmt: skip
 
 
 @dataclass(frozen=True)

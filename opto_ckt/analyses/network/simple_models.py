@@ -17,6 +17,7 @@ from opto_ckt.topology import (
     Supply,
     Switch,
     Terminal,
+    Trimmer,
 )
 
 
@@ -104,3 +105,12 @@ def _(element: LogicOutput) -> Parts:
     """The resistance of the transistor that conducts; what noise it makes no sheet says."""
     resistance, ends = named(element.value_name("resistance")), (element.out, GROUND)
     return (Primitive("G", f"{element.ref}.output", (*ends, *ends), lambda v: 1 / resistance(v)),), ()
+
+
+@model_of.register
+def _(element: Trimmer) -> Parts:
+    ends = (element.a, element.b)
+    return (
+        (own("R", element, "setting", ends),),
+        (thermal(element.ref, ends, named(element.value_name("setting"))),),
+    )

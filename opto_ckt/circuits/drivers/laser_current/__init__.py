@@ -17,6 +17,7 @@ across it and C3 filter the supply; Q2 shorts the set voltage unless the disable
 from __future__ import annotations
 
 from opto_ckt.circuit import Circuit
+from opto_ckt.circuits.drivers import warmth
 from opto_ckt.circuits.drivers.laser_current import (
     faults,
     figures,
@@ -42,7 +43,7 @@ CIRCUIT = Circuit(
     figures=figures.figures,
     implied=figures.implied,
     stresses=loads.stresses,
-    heat=loads.heat,
+    heat=warmth.heat,
     faults=faults.faults,
     outcome=faults.outcome,
     levers=(

@@ -5,8 +5,8 @@ from __future__ import annotations
 import numpy as np
 
 from opto_ckt.circuits.drivers.laser import safety
-from opto_ckt.circuits.drivers.laser_current.loads import heat
 from opto_ckt.circuits.drivers.side import SIDES, side_of
+from opto_ckt.circuits.drivers.warmth import heat
 from opto_ckt.formulas.driver import output_current_noise
 from opto_ckt.limits import Limits, Values
 from opto_ckt.request import LaserDriverRequest
