@@ -120,6 +120,11 @@ _ALL = (
     ),
     Figure("compliance_margin", "V", "compliance margin", "supply left over at the current, at its worst", 0.1),
     Figure("loop_bandwidth", "Hz", "loop bandwidth", "current over set voltage, loop closed, -3 dB electrical", 1.0),
+    Figure("peak_current", "A", "peak current", "largest through the source, first instant of a step included", 1e-6),
+    Figure("overdrive", "1", "overdrive", "base drive over what saturates, gate voltage over that of the sheet", 0.5),
+    Figure(
+        "turn_off_time", "s", "turn-off time", "drive gone to light gone: storage, then sweep-out or 90-10 %", 1e-12
+    ),
     Figure("startup_time", "s", "start-up time", "supply or enable there to 95 % of the current", 1e-6),
     Figure("harmonic_2", "dB", "second harmonic", "re the fundamental, electrical: 20 log of the photocurrents", 1.0),
     Figure("harmonic_3", "dB", "third harmonic", "re the fundamental, electrical: 20 log of the photocurrents", 1.0),

@@ -19,6 +19,7 @@ CIRCUITS: dict[str, str] = {
     "tia-discrete": "opto_ckt.circuits.receivers.tia_discrete",
     "tia-fixed": "opto_ckt.circuits.receivers.tia_fixed",
     "led-resistor": "opto_ckt.circuits.drivers.led_resistor",
+    "led-switch": "opto_ckt.circuits.drivers.led_switch",
     "laser-current": "opto_ckt.circuits.drivers.laser_current",
 }
 """Name -> module whose ``CIRCUIT`` it is."""

@@ -10,6 +10,7 @@ from math import cos, hypot, pi, sin
 from opto_ckt.topology import (
     AnalogSwitch,
     Capacitor,
+    ClosedSwitch,
     Diode,
     Element,
     FixedTia,
@@ -291,6 +292,11 @@ def _(element: Jfet) -> tuple[Shape, ...]:
 @outline.register
 def _(element: Switch) -> tuple[Shape, ...]:
     return _field_effect(element.polarity)
+
+
+@outline.register
+def _(element: ClosedSwitch) -> tuple[Shape, ...]:
+    return _bipolar(element.polarity) if element.bipolar else _field_effect(element.polarity)
 
 
 @outline.register

@@ -10,6 +10,7 @@ from opto_ckt.request.request import Request
 if TYPE_CHECKING:
     from opto_ckt.request.driver import LaserDriverRequest
     from opto_ckt.request.led import LedDriverRequest
+    from opto_ckt.request.led_switch import LedSwitchRequest
     from opto_ckt.request.receiver import (
         BootstrapRequest,
         CascodeRequest,
@@ -28,6 +29,7 @@ __all__ = [
     "FixedTiaRequest",
     "LaserDriverRequest",
     "LedDriverRequest",
+    "LedSwitchRequest",
     "LoadResistorRequest",
     "OpAmpReceiverRequest",
     "ReceiverRequest",
@@ -46,6 +48,7 @@ LOADED_ON_USE = {
     "SwitchedRequest": "receiver",
     "LaserDriverRequest": "driver",
     "LedDriverRequest": "led",
+    "LedSwitchRequest": "led_switch",
 }
 
 

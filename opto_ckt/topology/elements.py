@@ -205,6 +205,14 @@ class Switch(Element):
     pin_places: ClassVar[Mapping[str, Point]] = {"control": (0, 0), "drain": (1, 1), "source": (1, -1)}
 
 
+@dataclass(frozen=True)
+class ClosedSwitch(Switch):
+    """A transistor that is fully on: a resistance, of a bipolar one a drop besides; its control passes no signal."""
+
+    bipolar: bool = False  #: drawn as npn or pnp
+    figures: ClassVar[tuple[str, ...]] = ("on_resistance", "control_capacitance", "control_conductance")
+
+
 class LaserDiode(Junction):
     """A laser diode by its series resistance and capacitance at the bias point."""
 
