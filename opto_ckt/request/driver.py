@@ -8,6 +8,7 @@ from typing import Annotated, Literal
 from pydantic import Field
 
 from opto_ckt.parts.diode import DiodeData
+from opto_ckt.parts.fibre import FibreData
 from opto_ckt.parts.laser import LaserData
 from opto_ckt.parts.opamp import OpAmpData
 from opto_ckt.parts.record import Check, Choice, Finding, Spread, Table, Unit, Whole
@@ -108,6 +109,7 @@ class LaserDriverRequest(Request):
     amplifier: OpAmpData
     reference: ReferenceData
     diode: DiodeData | None = None  #: across the source, against reverse voltage
+    fibre: FibreData | None = None  #: that the light leaves by
     signal: DriveSignal
     conditions: DriverConditions
 
