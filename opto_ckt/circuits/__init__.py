@@ -19,6 +19,7 @@ CIRCUITS: dict[str, str] = {
     "tia-discrete": "opto_ckt.circuits.receivers.tia_discrete",
     "tia-fixed": "opto_ckt.circuits.receivers.tia_fixed",
     "laser-current": "opto_ckt.circuits.drivers.laser_current",
+    "laser-power": "opto_ckt.circuits.drivers.laser_power",
 }
 """Name -> module whose ``CIRCUIT`` it is."""
 

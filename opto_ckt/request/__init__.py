@@ -9,6 +9,7 @@ from opto_ckt.request.request import Request
 
 if TYPE_CHECKING:
     from opto_ckt.request.driver import LaserDriverRequest
+    from opto_ckt.request.laser_power import LaserPowerRequest
     from opto_ckt.request.receiver import (
         BootstrapRequest,
         CascodeRequest,
@@ -26,6 +27,7 @@ __all__ = [
     "DiscreteRequest",
     "FixedTiaRequest",
     "LaserDriverRequest",
+    "LaserPowerRequest",
     "LoadResistorRequest",
     "OpAmpReceiverRequest",
     "ReceiverRequest",
@@ -43,6 +45,7 @@ LOADED_ON_USE = {
     "ReceiverRequest": "receiver",
     "SwitchedRequest": "receiver",
     "LaserDriverRequest": "driver",
+    "LaserPowerRequest": "laser_power",
 }
 
 

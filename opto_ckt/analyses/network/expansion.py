@@ -66,7 +66,9 @@ def _expand(element: Element) -> Parts:
 
 
 def _opened(element: Element) -> str:
-    """Primitive at which a loop through an element is opened: first stage of an op amp, channel of a transistor."""
+    """Primitive at which a loop is opened: an op amp's first stage, a transistor's channel, a laser's monitor."""
+    if isinstance(element, MonitoredLaser):
+        return f"{element.ref}.monitor"
     return f"{element.ref}.{'channel' if isinstance(element, Transistor) else 'stage1'}"
 
 
