@@ -21,6 +21,7 @@ CIRCUITS: dict[str, str] = {
     "led-resistor": "opto_ckt.circuits.drivers.led_resistor",
     "led-switch": "opto_ckt.circuits.drivers.led_switch",
     "laser-current": "opto_ckt.circuits.drivers.laser_current",
+    "laser-power": "opto_ckt.circuits.drivers.laser_power",
 }
 """Name -> module whose ``CIRCUIT`` it is."""
 

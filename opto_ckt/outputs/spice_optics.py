@@ -59,7 +59,7 @@ def _(element: MonitoredLaser, values: Values, driven: bool) -> Cards:
         card("fmo", "mk ma", "vp", number(v["monitor_gain"]))
         + card("imd", "mk ma dc", number(values[f"{element.ref}.monitor_dark"]))
         + card("cmo", "mk ma", number(v["monitor_capacitance"]))
-        + shot_noise("mo", v["monitor_shot"], values["temperature"], "mk ma")
+        + shot_noise("sm", v["monitor_shot"], values["temperature"], "mk ma")
     )
     pins = "anode cathode, monitor's cathode anode, light"
     body = _laser_body(element, values, pins, "a k mk ma pw", monitor)

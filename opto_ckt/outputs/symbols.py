@@ -192,13 +192,13 @@ def _(element: Element) -> tuple[Shape, ...]:
 
 @outline.register
 def _(element: MonitoredLaser) -> tuple[Shape, ...]:
-    """Laser and monitor side by side, light going from the one to the other."""
+    """Laser and monitor side by side in one package, light going from the one to the other."""
     laser = Shape(((-0.22, 1.18), (0.22, 1.18), (0, 0.82)), closed=True)
     monitor = Shape(((1.28, 0.82), (1.72, 0.82), (1.5, 1.18)), closed=True)
     bars = (line((-0.22, 0.82), (0.22, 0.82)), line((1.28, 1.18), (1.72, 1.18)))
     leads = tuple(line((x, y), (x, middle)) for x in (0, 1.5) for y, middle in ((2, 1.18), (0, 0.82)))
     light = (*arrow((0.4, 1.12), (0.98, 1.12)), *arrow((0.4, 0.88), (0.98, 0.88)))
-    return (laser, monitor, *bars, *leads, *light)
+    return (laser, monitor, *bars, *leads, *light, _box(-0.5, 0.55, 2.0, 1.45))
 
 
 @outline.register

@@ -9,6 +9,7 @@ from opto_ckt.request.request import Request
 
 if TYPE_CHECKING:
     from opto_ckt.request.driver import LaserDriverRequest
+    from opto_ckt.request.laser_power import LaserPowerRequest
     from opto_ckt.request.led import LedDriverRequest
     from opto_ckt.request.led_switch import LedSwitchRequest
     from opto_ckt.request.receiver import (
@@ -28,6 +29,7 @@ __all__ = [
     "DiscreteRequest",
     "FixedTiaRequest",
     "LaserDriverRequest",
+    "LaserPowerRequest",
     "LedDriverRequest",
     "LedSwitchRequest",
     "LoadResistorRequest",
@@ -47,6 +49,7 @@ LOADED_ON_USE = {
     "ReceiverRequest": "receiver",
     "SwitchedRequest": "receiver",
     "LaserDriverRequest": "driver",
+    "LaserPowerRequest": "laser_power",
     "LedDriverRequest": "led",
     "LedSwitchRequest": "led_switch",
 }

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Iterator
-from typing import Annotated, Literal
+from typing import Annotated, ClassVar, Literal
 
 from pydantic import Field
 
@@ -113,7 +113,7 @@ class LaserDriverRequest(Request):
     signal: DriveSignal
     conditions: DriverConditions
 
-    checks = (
+    checks: ClassVar[tuple[Check, ...]] = (
         Check(("source", "signal", "conditions"), _in_reach),
         Check(("source", "signal"), _within_source),
         Check(("amplifier", "conditions"), amplifier_supplied),

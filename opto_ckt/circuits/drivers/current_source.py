@@ -113,11 +113,11 @@ def placed(near: dict[str, Lanes], rail: Lanes, request: LaserDriverRequest) -> 
     return {f"node.{name}": rail - voltage for name, voltage in near.items()}
 
 
-def amplifier_errors(values: Values, request: LaserDriverRequest) -> dict[str, Lanes]:
+def amplifier_errors(values: Values, request: LaserDriverRequest, ref: str = "U1") -> dict[str, Lanes]:
     """Offset with its drift, in its own direction, and input bias current at the temperature; of a FET it doubles."""
-    temperature, offset = values["temperature"], values["U1.offset_voltage"]
-    drift = values.get("U1.offset_drift", 0.0) * np.abs(temperature - ROOM_TEMPERATURE)
-    drawn, doubling = values["U1.bias_current"], request.amplifier.bias_current_doubling
+    temperature, offset = values["temperature"], values[f"{ref}.offset_voltage"]
+    drift = values.get(f"{ref}.offset_drift", 0.0) * np.abs(temperature - ROOM_TEMPERATURE)
+    drawn, doubling = values[f"{ref}.bias_current"], request.amplifier.bias_current_doubling
     if doubling is not None:
         drawn = dark_current(
             dark_current=drawn,
@@ -125,4 +125,15 @@ def amplifier_errors(values: Values, request: LaserDriverRequest) -> dict[str, L
             reference_temperature=ROOM_TEMPERATURE,
             doubling=doubling,
         )
-    return {"U1.offset": np.asarray(offset + np.copysign(drift, offset)), "U1.bias_current": np.asarray(drawn)}
+    return {f"{ref}.offset": np.asarray(offset + np.copysign(drift, offset)), f"{ref}.bias_current": np.asarray(drawn)}
+
+
+def logic_levels(values: Values, rail: Lanes) -> dict[str, float | Lanes]:
+    """Nodes of the disable input."""
+    found: dict[str, float | Lanes] = {"node.positive": values["supply.positive"]}
+    if "R11" not in values:
+        return found
+    found["node.off"] = np.where(np.asarray(values.get("control.open", 0.0)) > 0, rail, values["control.disable"])
+    if "R12" in values:
+        found["node.shift"] = np.where(disabled(values), 0.0, rail)
+    return found

@@ -18,6 +18,7 @@ from opto_ckt.circuits.drivers.current_source import (
     filter_resistance,
     flowing,
     laser_line,
+    logic_levels,
     placed,
     regulated_current,
     surroundings,
@@ -129,15 +130,4 @@ def _written(
         "drain": rail - through - current * values["R7"],
         "laser": rail - through,
     }
-    return biased | placed(near, rail, request) | _logic(values, rail, request) | {"node.rail": rail}
-
-
-def _logic(values: Values, rail: Lanes, request: LaserDriverRequest) -> dict[str, float | Lanes]:
-    """Nodes of the disable input."""
-    found: dict[str, float | Lanes] = {"node.positive": values["supply.positive"]}
-    if "R11" not in values:
-        return found
-    found["node.off"] = np.where(np.asarray(values.get("control.open", 0.0)) > 0, rail, values["control.disable"])
-    if "R12" in values:
-        found["node.shift"] = np.where(disabled(values), 0.0, rail)
-    return found
+    return biased | placed(near, rail, request) | logic_levels(values, rail) | {"node.rail": rail}
