@@ -11,6 +11,7 @@ if TYPE_CHECKING:
     from opto_ckt.request.driver import LaserDriverRequest
     from opto_ckt.request.laser_power import LaserPowerRequest
     from opto_ckt.request.led import LedDriverRequest
+    from opto_ckt.request.led_linear import LedLinearRequest
     from opto_ckt.request.led_switch import LedSwitchRequest
     from opto_ckt.request.receiver import (
         BootstrapRequest,
@@ -31,6 +32,7 @@ __all__ = [
     "LaserDriverRequest",
     "LaserPowerRequest",
     "LedDriverRequest",
+    "LedLinearRequest",
     "LedSwitchRequest",
     "LoadResistorRequest",
     "OpAmpReceiverRequest",
@@ -51,6 +53,7 @@ LOADED_ON_USE = {
     "LaserDriverRequest": "driver",
     "LaserPowerRequest": "laser_power",
     "LedDriverRequest": "led",
+    "LedLinearRequest": "led_linear",
     "LedSwitchRequest": "led_switch",
 }
 

@@ -46,14 +46,14 @@ def needed_range(request: LaserPowerRequest, bench: Bench) -> Range:
     return Range(float(least), float(most))
 
 
-def fit_trimmer(sizing: Sizing, bench: Bench) -> Range:
+def fit_trimmer(sizing: Sizing[LaserPowerRequest], bench: Bench) -> Range:
     """R14 and RV1.
 
     Raises
     ------
     InfeasibleError : one trimmer does not reach over the span, or is too coarse at its short end.
     """
-    request: LaserPowerRequest = sizing.request  # type: ignore[assignment]  # its own request, of its own kind
+    request: LaserPowerRequest = sizing.request
     found, spread, track = needed_range(request, bench), resistor_spread(request), request.preferred.trimmers
     fixed = sizing.derivation.compute(
         "R14", power_loop.set_resistance,
