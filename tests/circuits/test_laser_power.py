@@ -139,7 +139,7 @@ def test_small_signals_follow_the_operating_point(changes: tuple[tuple[str, str]
     held = Model(found.circuit, found.request.model_copy(update={"conditions": conditions}))
 
     def at(drift: float) -> dict[str, Any]:
-        return biased(held, **{"D1.junction_to_case": 1e-9, "U2.drift": drift})
+        return biased(held, **{"D1.junction_to_case": 1e-9, "U2.drift": drift, "R16": 1e15})
 
     def off_the_rail(values: dict[str, Any], node: str) -> float:
         return float(values[f"node.{node}"]) - (float(values["node.rail"]) if changes == HIGH else 0.0)
