@@ -73,7 +73,7 @@ def fit_trimmer(sizing: Sizing, bench: Bench) -> Range:
     if "RV1" not in request.fixed and not values:
         raise InfeasibleError(
             f"{said}: no trimmer of [preferred] has a track from {write(least, 'Ω')} up",
-            [f"preferred.trimmers with {write(least, 'Ω')} or more", *_narrower(request, bench, 0.9 * span)],
+            _longer(request, bench, least, span),
         )
     value = request.fixed.get("RV1", values[0] if values else least)
     coarse = SETTING * value / found.least
@@ -102,6 +102,14 @@ def _fit_off_bias(sizing: Sizing, bench: Bench, found: Range) -> None:
     )  # fmt: skip
     exact = min(exact, MOST_OFF_BIAS)
     sizing.fit("R16", exact, "resistors", low=0.5 * exact, high=exact)
+
+
+def _longer(request: LaserPowerRequest, bench: Bench, track: float, span: float) -> list[str]:
+    """A trimmer that would do; more light where there is none so long, else a narrower span."""
+    power = request.signal.power
+    if track > LARGEST and power is not None:
+        return [f"signal.power ≥ {write(power.nominal * track / LARGEST, 'W')}", "a lower reference.voltage"]
+    return [f"preferred.trimmers with {write(track, 'Ω')} or more", *_narrower(request, bench, 0.9 * span)]
 
 
 def _narrower(request: LaserPowerRequest, bench: Bench, span: float) -> list[str]:
