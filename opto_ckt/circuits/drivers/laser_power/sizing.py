@@ -17,7 +17,7 @@ from opto_ckt.circuits.drivers.laser import Most
 from opto_ckt.circuits.drivers.laser_power import inner
 from opto_ckt.circuits.drivers.laser_power.clamp import Need, clamp, needed, shares, swing
 from opto_ckt.circuits.drivers.laser_power.integrator import fit_integrator
-from opto_ckt.circuits.drivers.laser_power.refusals import refuse_dark_zero
+from opto_ckt.circuits.drivers.laser_power.refusals import refuse_dark_zero, refuse_strained_monitor
 from opto_ckt.circuits.drivers.laser_power.trim import fit_trimmer
 from opto_ckt.circuits.drivers.spread import resistor_spread
 from opto_ckt.derivation import Derivation
@@ -80,6 +80,7 @@ def propose(request: LaserPowerRequest, derivation: Derivation, bench: Bench) ->
     """
     refuse_unsuited(request, bench)
     refuse_dark_zero(request, bench)
+    refuse_strained_monitor(request, bench)
     need = needed(request, bench, derivation)
     safe = clamp(request, bench, derivation, need)
     power = request.signal.power
