@@ -20,6 +20,7 @@ CIRCUITS: dict[str, str] = {
     "tia-fixed": "opto_ckt.circuits.receivers.tia_fixed",
     "led-resistor": "opto_ckt.circuits.drivers.led_resistor",
     "laser-current": "opto_ckt.circuits.drivers.laser_current",
+    "laser-pulse": "opto_ckt.circuits.drivers.laser_pulse",
 }
 """Name -> module whose ``CIRCUIT`` it is."""
 

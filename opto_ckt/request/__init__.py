@@ -8,7 +8,8 @@ from typing import TYPE_CHECKING, Any
 from opto_ckt.request.request import Request
 
 if TYPE_CHECKING:
-    from opto_ckt.request.driver import LaserDriverRequest
+    from opto_ckt.request.driver import LaserDriverRequest, LaserRequest
+    from opto_ckt.request.laser_pulse import LaserPulseRequest
     from opto_ckt.request.led import LedDriverRequest
     from opto_ckt.request.receiver import (
         BootstrapRequest,
@@ -27,6 +28,8 @@ __all__ = [
     "DiscreteRequest",
     "FixedTiaRequest",
     "LaserDriverRequest",
+    "LaserPulseRequest",
+    "LaserRequest",
     "LedDriverRequest",
     "LoadResistorRequest",
     "OpAmpReceiverRequest",
@@ -45,6 +48,8 @@ LOADED_ON_USE = {
     "ReceiverRequest": "receiver",
     "SwitchedRequest": "receiver",
     "LaserDriverRequest": "driver",
+    "LaserPulseRequest": "laser_pulse",
+    "LaserRequest": "driver",
     "LedDriverRequest": "led",
 }
 
