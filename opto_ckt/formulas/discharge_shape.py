@@ -103,6 +103,20 @@ def damping_for(*, share: float) -> float:
     return _grown(excess)
 
 
+def damping_at(*, peak_share: float) -> float:
+    """Damping at which the peak is a share of U √(C/L).
+
+    Parameters
+    ----------
+    peak_share : peak over U √(C/L), below 1. [1]
+    """
+
+    def excess(zeta: float) -> bool:
+        return float(peak(damping=zeta)) > peak_share
+
+    return _grown(excess)
+
+
 def damping_of(*, product: float) -> float:
     """Damping of a given loop whose capacitor is chosen by the width: ζ k(ζ) = R t_w/(2 L).
 

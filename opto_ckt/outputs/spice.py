@@ -182,7 +182,7 @@ def _expected(result: Result, scene: Scene, kind: str) -> list[str]:
         ],
         "step": [
             comment(f"step of {number(100 * step_share(result.topology))} per cent; answer: v({node})"),
-            figure("rise_time", "rise time, 10-90 per cent"),
+            "" if result.topology.trigger else figure("rise_time", "rise time, 10-90 per cent"),
             figure("overshoot", "overshoot, as a share of the step"),
         ],
         "loop": [

@@ -35,4 +35,7 @@ def _(element: PulseSwitch, values: Values, driven: bool) -> Cards:
 
 @cards.register
 def _(element: HeldCurrent, values: Values, driven: bool) -> Cards:
-    return Cards(card(name(element.ref), name(element.a), name(element.b), "dc", number(values[element.ref])))
+    """Nothing where it is none: in the deck of the pulse the capacitor gives it itself."""
+    held = values[element.ref]
+    said = comment("the instant of the peak is held: this is what the capacitor gives then")
+    return Cards(said + card(name(element.ref), name(element.a), name(element.b), "dc", number(held)) if held else "")

@@ -10,6 +10,7 @@ from opto_ckt.formulas import discharge_shape
 from opto_ckt.limits import Lanes, Values
 from opto_ckt.request import LaserPulseRequest
 
+LOST = 10.0  #: direct current over the largest allowed, from which the laser is lost and no warmth is worked out [1]
 WARMING = 4  #: passes: warmth takes light, less light leaves more warmth
 
 
@@ -42,9 +43,10 @@ def light(
     )]  # fmt: skip
     share = coupling(values, request)
     flash = np.maximum(slope * (peak - threshold), 0.0)
-    still = settle(values, request, steady)
+    borne = np.minimum(steady, LOST * data.current_max)
+    still = settle(values, request, borne)
     warm = rate * (electrical - energy)
-    standing = steady * line.at(steady) - still.power
+    standing = borne * line.at(borne) - still.power
     heat = np.where(steady > 0, standing, warm)
     hottest = np.where(steady > 0, still.junction_temperature, junction)
     return {

@@ -151,7 +151,9 @@ def _heat(values: Values, line: Forward, found: dict[str, float | Lanes], steady
     share = switch / (switch + values["R3"] + values["LS.resistance"])
     output = discharge.stored_energy(capacitance=values["Q1.output_capacitance"], voltage=charge)
     gate = values["Q1.gate_charge"] * values["U1.high"] * rate
-    still = np.where(_flag(values, "C1.short"), 0.0, supply * feed(values)[1])
+    whole = supply * feed(values)[1]
+    still = np.where(charge > line.turn_on, whole, np.minimum(line.turn_on, whole))  # too fast: drawn as it comes
+    still = np.where(_flag(values, "C1.short"), 0.0, still)
     low = np.where(stuck(values) & (steady > 0), steady * (line.resistance + values["R3"] + switch), still)
     resting = (supply - low) ** 2 / values["R1"]
     drawn = rate * values["C1"] * charge

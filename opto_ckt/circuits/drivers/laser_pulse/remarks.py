@@ -11,8 +11,9 @@ from opto_ckt.circuits.drivers.laser_pulse.loads import gate_current
 from opto_ckt.formulas import discharge
 from opto_ckt.limits import Limits, Values
 from opto_ckt.request import LaserPulseRequest
-from opto_ckt.units import write
+from opto_ckt.units import percent, write
 
+HELD_BACK = 0.8  #: of the voltage that a switch is rated for; common practice [1]
 SLOW = 0.2  #: turn-on over width, from which the pulse is lower than told; by simulation, common practice [1]
 
 
@@ -89,6 +90,12 @@ def _ratings(values: Values, request: LaserPulseRequest) -> list[str]:
     if request.transistor.pulse_current_max is None:
         limit = write(switch_limit(request), "A")
         found.append(f"the transistor's sheet gives no pulse_current_max: current_max, {limit}, is taken for the peak")
+    supply, stands = float(np.max(values["supply.positive"])), request.transistor.voltage_max
+    if supply > HELD_BACK * stands:
+        found.append(
+            f"the switch bears {write(supply, 'V')} of its {write(stands, 'V')}: common practice keeps to"
+            f" {percent(HELD_BACK)}, for the leads add their spikes"
+        )
     driver = request.logic_output
     drawn = float(np.max(gate_current(values)))
     if driver.current_max is None:

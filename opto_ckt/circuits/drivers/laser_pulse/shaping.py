@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
-from math import pi
-from typing import NamedTuple
+from collections.abc import Callable, Mapping
+from math import inf, pi
+from typing import NamedTuple, NoReturn
 
 from opto_ckt.circuit import Bench
 from opto_ckt.circuits.drivers.laser import coupling, forward
@@ -17,6 +18,7 @@ from opto_ckt.request import LaserPulseRequest
 from opto_ckt.units import write
 
 UNDAMPED = 3 / (2 * pi)  #: I L/(U t_w) of a discharge without damping, the most there is [1]
+FURTHEST = 1e4  #: how far width or inductance are moved in the search for one that would do [1]
 LEAST_DAMPING = 10e-3  #: R3, below which the parts of the loop are said to damp too much [Ω]
 
 
@@ -63,7 +65,8 @@ def asked_peak(request: LaserPulseRequest, bench: Bench, derivation: Derivation)
 def shaped(request: LaserPulseRequest, derivation: Derivation, bench: Bench, charge: float) -> Pulse:
     """C1 and R3, the capacitor charged to a voltage.
 
-    Peak over width fixes the damping, the width then fixes the frequency, and both fix capacitance and resistance.
+    Peak over width fixes the damping, the width then fixes the frequency, and both fix capacitance and resistance. With
+    C1 fixed in the design file the peak alone is kept, with R3 fixed the width alone.
 
     Raises
     ------
@@ -73,10 +76,21 @@ def shaped(request: LaserPulseRequest, derivation: Derivation, bench: Bench, cha
     current, width, stray = asked_peak(request, bench, derivation), request.signal.pulse_width.nominal, values["LS"]
     turn_on, own = (float(part) for part in forward(values, request, current))
     voltage = charge - turn_on
-    share = current * stray / (voltage * width) if voltage > 0 else float("inf")
-    if share >= UNDAMPED:
-        _refuse_slow(request, bench, current, charge, turn_on)
-    damping = discharge_shape.damping_for(share=share)
+    taken = {
+        "laser": own,
+        "transistor": float(on_resistance(values, request)),
+        "capacitor and tracks": values["LS.resistance"],
+    }
+    share = current * stray / (voltage * width) if voltage > 0 else inf
+    if "C1" in request.fixed:
+        damping = _for_peak(request, bench, current, charge, turn_on, sum(taken.values()) + LEAST_DAMPING)
+    elif "R3" in request.fixed:
+        whole = request.fixed["R3"] + sum(taken.values())
+        damping = discharge_shape.damping_of(product=whole * width / (2 * stray))
+    elif share >= UNDAMPED:
+        _refuse(request, bench, current, charge, turn_on, taken)
+    else:
+        damping = discharge_shape.damping_for(share=share)
     ratio = float(discharge_shape.width(damping=damping))
     reason = (
         f"{write(current, 'A')} in {write(width, 's')} from {write(voltage, 'V')} through {write(stray, 'H')} takes"
@@ -85,58 +99,103 @@ def shaped(request: LaserPulseRequest, derivation: Derivation, bench: Bench, cha
     capacitance = derivation.compute(
         "C1", discharge.storage_capacitance, reason=reason, width=width, inductance=stray, width_ratio=ratio
     )
-    taken = {
-        "laser": own,
-        "transistor": float(on_resistance(values, request)),
-        "capacitor and tracks": values["LS.resistance"],
-    }
+    capacitance = request.fixed.get("C1", capacitance)
     parts = ", ".join(f"{name} {write(resistance, 'Ω')}" for name, resistance in taken.items())
     resistance = derivation.compute(
         "R3", discharge.loop_resistance, reason=f"less {parts}",
         damping=damping, inductance=stray, capacitance=capacitance,
     )  # fmt: skip
-    rest = resistance - sum(taken.values())
+    rest = request.fixed.get("R3", resistance - sum(taken.values()))
     if rest < LEAST_DAMPING and "R3" not in request.fixed:
-        _refuse_damped(request, bench, current, charge, turn_on, sum(taken.values()) + LEAST_DAMPING, parts)
+        _refuse(request, bench, current, charge, turn_on, taken)
     return Pulse(current, width, voltage, turn_on, damping, capacitance, resistance, rest)
 
 
-def _refuse_slow(request: LaserPulseRequest, bench: Bench, current: float, charge: float, turn_on: float) -> None:
-    """Even without damping the inductance lets less current flow than is asked for."""
-    width, stray = request.signal.pulse_width.nominal, bench.nominal("LS")
-    shares = ", ".join(f"{name} {write(part.nominal, 'H')}" for name, part in budget(request).items())
-    most = UNDAMPED * max(charge - turn_on, 0.0) * width / stray
-    least = turn_on + current * stray / (UNDAMPED * width)
-    remedies = [f"conditions.supply.positive > {write(bench.nominal('supply.positive') * least / charge, 'V')}"]
-    if most > 0:
+def undamped_capacitance(request: LaserPulseRequest, bench: Bench) -> float:
+    """C1 that the width asks for without damping, or as it is fixed: to begin with. [F]"""
+    width = request.signal.pulse_width.nominal
+    ratio = discharge.pulse_width(inductance=1.0, capacitance=1.0)
+    exact = discharge.storage_capacitance(width=width, inductance=bench.nominal("LS"), width_ratio=ratio)
+    return request.fixed.get("C1", float(exact))
+
+
+def _for_peak(
+    request: LaserPulseRequest, bench: Bench, current: float, charge: float, turn_on: float, least: float
+) -> float:
+    """Damping that leaves the peak asked for of a capacitor that the design file fixes.
+
+    Raises
+    ------
+    InfeasibleError : with the resistance that is in the loop anyway it gives less.
+    """
+    capacitance, stray, voltage = request.fixed["C1"], bench.nominal("LS"), charge - turn_on
+
+    def most(volts: float, farads: float) -> float:
+        damping = discharge.damping_ratio(resistance=least, inductance=stray, capacitance=farads)
+        whole = discharge.undamped_peak(voltage=volts, inductance=stray, capacitance=farads)
+        return float(whole * discharge_shape.peak(damping=damping))
+
+    if most(max(voltage, 0.0), capacitance) < current:
+        supply = bench.nominal("supply.positive") * (turn_on + current / most(1.0, capacitance)) / charge
+        remedies = [f"conditions.supply.positive ≥ {write(supply, 'V')}"]
+        if voltage > current * least:
+            larger = _least_factor(lambda factor: most(voltage, factor * capacitance) >= current)
+            remedies.append(f"C1 ≥ {write(capacitance * larger, 'F')}")
+        raise InfeasibleError(
+            f"C1, fixed at {write(capacitance, 'F')}, gives no more than {write(most(voltage, capacitance), 'A')}"
+            f" through {write(stray, 'H')} and {write(least, 'Ω')}; {write(current, 'A')} are asked for",
+            remedies,
+        )
+    whole = discharge.undamped_peak(voltage=voltage, inductance=stray, capacitance=capacitance)
+    return discharge_shape.damping_at(peak_share=current / float(whole))
+
+
+def most_current(voltage: float, width: float, stray: float, resistance: float) -> float:
+    """Greatest peak of a width that a loop allows, whatever its capacitor. [A]"""
+    damping = discharge_shape.damping_of(product=resistance * width / (2 * stray))
+    share = float(discharge_shape.peak(damping=damping) / discharge_shape.width(damping=damping))
+    return share * voltage * width / stray
+
+
+def _refuse(
+    request: LaserPulseRequest, bench: Bench, current: float, charge: float, turn_on: float, taken: Mapping[str, float]
+) -> NoReturn:
+    """Inductance and the resistance that is in the loop anyway let less current flow than is asked for.
+
+    Raises
+    ------
+    InfeasibleError : always.
+    """
+    width, stray, supply = request.signal.pulse_width.nominal, bench.nominal("LS"), bench.nominal("supply.positive")
+    voltage, least = charge - turn_on, sum(taken.values()) + LEAST_DAMPING
+    strays = ", ".join(f"{name} {write(part.nominal, 'H')}" for name, part in budget(request).items())
+    resistances = ", ".join(f"{name} {write(resistance, 'Ω')}" for name, resistance in taken.items())
+    most = most_current(max(voltage, 0.0), width, stray, least)
+    needed = turn_on + current / most_current(1.0, width, stray, least)
+    remedies = [f"conditions.supply.positive ≥ {write(supply * needed / charge, 'V')}"]
+    if voltage > current * least:
+        slimmer = _least_factor(lambda factor: most_current(voltage, width, stray / factor, least) >= current)
+        longer = _least_factor(lambda factor: most_current(voltage, width * factor, stray, least) >= current)
         remedies += [
-            f"less inductance in the loop, < {write(stray * most / current, 'H')}",
-            f"signal.pulse_width > {write(width * current / most, 's')}",
-            f"signal.current < {write(most, 'A')}",
+            f"less inductance in the loop, ≤ {write(stray / slimmer, 'H')}",
+            f"signal.pulse_width ≥ {write(width * longer, 's')}",
         ]
+    if most > 0:
+        remedies.append(f"signal.current ≤ {write(most, 'A')}")
     raise InfeasibleError(
-        f"{write(charge, 'V')} through {write(stray, 'H')} ({shares}) and a laser that takes {write(turn_on, 'V')} give"
-        f" no more than {write(most, 'A')} in {write(width, 's')}, without any damping; {write(current, 'A')} are asked"
-        " for",
+        f"{write(charge, 'V')}, of which the laser takes {write(turn_on, 'V')}, give no more than {write(most, 'A')} in"
+        f" {write(width, 's')} through {write(stray, 'H')} ({strays}) and {write(least, 'Ω')} ({resistances}, a damping"
+        f" resistor of {write(LEAST_DAMPING, 'Ω')}); {write(current, 'A')} are asked for",
         remedies,
     )
 
 
-def _refuse_damped(
-    request: LaserPulseRequest, bench: Bench, current: float, charge: float, turn_on: float, least: float, parts: str
-) -> None:
-    """The resistance that is in the loop anyway leaves less current than is asked for."""
-    width, stray = request.signal.pulse_width.nominal, bench.nominal("LS")
-    damping = discharge_shape.damping_of(product=least * width / (2 * stray))
-    share = float(discharge_shape.peak(damping=damping) / discharge_shape.width(damping=damping))
-    most = share * (charge - turn_on) * width / stray
-    needed = turn_on + (charge - turn_on) * current / most
-    raise InfeasibleError(
-        f"{parts} and a damping resistor of {write(LEAST_DAMPING, 'Ω')} leave {write(most, 'A')} in"
-        f" {write(width, 's')} from {write(charge, 'V')}; {write(current, 'A')} are asked for",
-        [
-            f"conditions.supply.positive ≥ {write(bench.nominal('supply.positive') * needed / charge, 'V')}",
-            f"signal.current ≤ {write(most, 'A')}",
-            "a laser or a transistor with less resistance",
-        ],
-    )
+def _least_factor(does: Callable[[float], bool]) -> float:
+    """Least factor above 1 from which on something does. [1]"""
+    low, high = 1.0, 2.0
+    while not does(high) and high < FURTHEST:
+        low, high = high, 2 * high
+    for _ in range(40):
+        middle = (low + high) / 2
+        low, high = (low, middle) if does(middle) else (middle, high)
+    return high

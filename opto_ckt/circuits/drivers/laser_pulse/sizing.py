@@ -6,7 +6,7 @@ from math import inf
 
 from opto_ckt.circuit import Bench, Fitted
 from opto_ckt.circuits.drivers.laser_pulse.figures import safe_voltage
-from opto_ckt.circuits.drivers.laser_pulse.shaping import Pulse, shaped
+from opto_ckt.circuits.drivers.laser_pulse.shaping import Pulse, shaped, undamped_capacitance
 from opto_ckt.circuits.drivers.spread import resistor_spread
 from opto_ckt.derivation import Derivation
 from opto_ckt.errors import InfeasibleError
@@ -50,11 +50,13 @@ def propose(request: LaserPulseRequest, derivation: Derivation, bench: Bench) ->
     """
     _refuse_unsuited(request, bench)
     sizing = _Sizing(request, derivation)
-    reached = 1.0
+    capacitance = undamped_capacitance(request, bench)
+    charging, bleed = _charging(sizing, bench, capacitance)
     for _ in range(3):  # what is not recharged in a period, and what the bleed takes, come off the supply
-        pulse = shaped(request, derivation, bench, bench.nominal("supply.positive") * reached)
-        charging, bleed = _charging(sizing, bench, pulse.capacitance)
-        reached = _reached(bench, pulse.capacitance, charging, bleed)
+        charge = bench.nominal("supply.positive") * _reached(bench, capacitance, charging, bleed)
+        pulse = shaped(request, derivation, bench, charge)
+        capacitance = pulse.capacitance
+        charging, bleed = _charging(sizing, bench, capacitance)
     _explained(derivation, bench, pulse)
     sizing.fit("C1", pulse.capacitance, "capacitors", pulse.capacitance / 1.2, pulse.capacitance * 1.2)
     sizing.fit("R3", pulse.damping_resistance, "resistors", pulse.damping_resistance / 1.3,
