@@ -150,6 +150,8 @@ def test_a_fixed_part_has_the_other_sized_around_it() -> None:
     """C1 fixed: the peak is kept, the width is not; R3 fixed: the other way round."""
     found = {row.figure: row.exact for row in sized(NAME, ("", '[fixed]\nC1 = "3 nF"')).roundings}
     assert found["peak_current"] == near(25.0, rel=1e-3)
+    both = sized(NAME, ("", '[fixed]\nC1 = "3 nF"\nR3 = "2.2 Ω"'), ("peak_current  ", ""), ("peak_power  ", ""))
+    assert both.figure("peak_current").nominal < 20.0
     width = figure(sized(NAME, ("", '[fixed]\nR3 = "1 Ω"')), "pulse_width")[1]
     assert width == near(12e-9, rel=0.02)  # preferred value of C1
 
@@ -201,7 +203,13 @@ def test_faults_by_hand() -> None:
     assert stuck["R1.power"] == near(75.0**2 / chosen["R1"], rel=0.01)
     assert stuck["D1.optical_power"] == 0.0
     assert reached("trigger stuck high")["D1.steady_current"] == near(stuck["D1.steady_current"], rel=1e-9)
-    for case in ("switch open", "trigger open", "load open", "storage capacitor short", "charging resistor open"):
+    for case in (
+        "switch open",
+        "supply before control, trigger open",
+        "load open",
+        "storage capacitor short",
+        "charging resistor open",
+    ):
         assert reached(case)["D1.current"] < 1e-3
         assert reached(case)["D1.optical_power"] == 0.0
     short = reached("load short")

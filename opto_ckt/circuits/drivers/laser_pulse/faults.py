@@ -27,11 +27,11 @@ def faults(request: LaserPulseRequest) -> tuple[Fault, ...]:
     wild = np.geomspace(signal.repetition_rate.high, FASTEST / signal.pulse_width.nominal, SWEEP)[:, None]
     found = [
         Fault("supply at its highest", {"supply.positive": highest}),
-        Fault("slow power-down, brown-out", {"supply.positive": sweep[::-1]}),
+        Fault("control before supply, brown-out, slow power-down", {"supply.positive": sweep[::-1]}),
         Fault("switch stuck on", {"Q1.short": 1.0}),
         Fault("switch open", {"Q1.open": 1.0}),
         Fault("trigger stuck high", {"U1.stuck": 1.0}),
-        Fault("trigger open", {"control.open": 1.0}),
+        Fault("supply before control, trigger open", {"control.open": 1.0}),
         Fault("repetition too fast", {"signal.repetition_rate": wild}),
         Fault("load open", {"D1.open": 1.0}),
         Fault("load short", {"D1.short": 1.0}),

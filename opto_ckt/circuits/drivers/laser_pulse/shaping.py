@@ -82,7 +82,10 @@ def shaped(request: LaserPulseRequest, derivation: Derivation, bench: Bench, cha
         "capacitor and tracks": values["LS.resistance"],
     }
     share = current * stray / (voltage * width) if voltage > 0 else inf
-    if "C1" in request.fixed:
+    if {"C1", "R3"} <= set(request.fixed):
+        whole = request.fixed["R3"] + sum(taken.values())
+        damping = float(discharge.damping_ratio(resistance=whole, inductance=stray, capacitance=request.fixed["C1"]))
+    elif "C1" in request.fixed:
         damping = _for_peak(request, bench, current, charge, turn_on, sum(taken.values()) + LEAST_DAMPING)
     elif "R3" in request.fixed:
         whole = request.fixed["R3"] + sum(taken.values())

@@ -142,7 +142,7 @@ def _charging(sizing: _Sizing, bench: Bench, capacitance: float) -> tuple[float,
         duration=duration, capacitance=whole, voltage=supply, safe_voltage=safe,
     ) / spread - charging  # fmt: skip
     bleed = request.fixed.get("R2", bleed)
-    if bleed < BLEED_LEAST * charging:
+    if bleed < BLEED_LEAST * charging and "R2" not in request.fixed:
         longer = duration * (BLEED_LEAST + 1) * charging / (bleed + charging)
         raise InfeasibleError(
             f"a bleed that discharges C1 and C2 within {write(duration, 's')} is {write(max(bleed, 0.0), 'Ω')}, less"
