@@ -119,7 +119,36 @@ _ALL = (
         "extinction_ratio", "W/W", "extinction ratio", "one level over zero level, as a ratio; 10 log in dB", 1.0, 10.0
     ),
     Figure("compliance_margin", "V", "compliance margin", "supply left over at the current, at its worst", 0.1),
-    Figure("loop_bandwidth", "Hz", "loop bandwidth", "current over set voltage, loop closed, -3 dB electrical", 1.0),
+    Figure("clamp_margin", "1", "clamp margin", "current that the clamp lets flow over that needed, less one", 0.05),
+    Figure(
+        "clamp_power", "W", "clamp power", "light at the clamp's current, at the plane of the laser's sheet", 1e-9, 10.0
+    ),
+    Figure(
+        "runaway_factor",
+        "1",
+        "runaway factor",
+        "loop gain of self-heating at constant power; from 1 on the laser runs away",
+        0.5,
+    ),
+    Figure(
+        "inner_phase_margin",
+        "°",
+        "inner phase margin",
+        "as phase_margin, of the current loop inside the power loop",
+        45.0,
+    ),
+    Figure(
+        "loop_bandwidth",
+        "Hz",
+        "loop bandwidth",
+        "current, or power where it is controlled, over set voltage, loop closed, -3 dB",
+        1.0,
+    ),
+    Figure("peak_current", "A", "peak current", "largest through the source, first instant of a step included", 1e-6),
+    Figure("overdrive", "1", "overdrive", "base drive over what saturates, gate voltage over that of the sheet", 0.5),
+    Figure(
+        "turn_off_time", "s", "turn-off time", "drive gone to light gone: storage, then sweep-out or 90-10 %", 1e-12
+    ),
     Figure("startup_time", "s", "start-up time", "supply or enable there to 95 % of the current", 1e-6),
     Figure("peak_current", "A", "peak current", "of a pulse through the source", 1e-6),
     Figure("pulse_width", "s", "pulse width", "of the current, at half of its peak", 1e-12),

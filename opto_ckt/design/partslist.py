@@ -25,7 +25,7 @@ from opto_ckt.result import FoundPart
 from opto_ckt.topology import Capacitor, Element, Resistor
 from opto_ckt.units import percent, write
 
-UNITS: Mapping[str, str] = {"resistor": "Ω", "capacitor": "F", "inductor": "H"}
+UNITS: Mapping[str, str] = {"resistor": "Ω", "trimmer": "Ω", "capacitor": "F", "inductor": "H"}
 HALF_RATING = 2.0  #: rating over worst dissipation of a resistor; common practice
 
 

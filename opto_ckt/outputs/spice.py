@@ -13,7 +13,16 @@ from opto_ckt.outputs.pulse_deck import READ_OUT, pulse_deck
 from opto_ckt.outputs.spice_models import cards
 from opto_ckt.outputs.spice_text import card, comment, deck, fitting, number, title
 from opto_ckt.result import DesignHead, Result, Scene
-from opto_ckt.topology import GROUND, LaserDiode, Led, Photodiode, PulseSwitch, Topology, Transistor
+from opto_ckt.topology import (
+    GROUND,
+    LaserDiode,
+    Led,
+    MonitoredLaser,
+    Photodiode,
+    PulseSwitch,
+    Topology,
+    Transistor,
+)
 from opto_ckt.units import write
 
 POINTS_AC = 50  #: a decade
@@ -186,7 +195,7 @@ def _expected(result: Result, scene: Scene, kind: str) -> list[str]:
             figure("overshoot", "overshoot, as a share of the step"),
         ],
         "loop": [
-            comment("small-signal circuit at the operating point, loop opened at the op amp's first stage"),
+            comment(f"small-signal circuit at the operating point, loop opened at {_opening(result.topology)}"),
             comment("answer: v(ret), return ratio with the sign of negative feedback at dc"),
             figure("phase_margin", "phase margin where |v(ret)| = 1"),
         ],
@@ -200,6 +209,12 @@ def _expected(result: Result, scene: Scene, kind: str) -> list[str]:
         ]
     at_rest = [comment(f"expect v({node}) at rest: {write(v, 'V', digits=5)}") for node, v in levels(scene, kind)]
     return [*lines[kind], *at_rest]
+
+
+def _opening(topology: Topology) -> str:
+    """Where the loop is opened, in words."""
+    watched = any(isinstance(element, MonitoredLaser) and element.ref == topology.loop for element in topology)
+    return "the monitor's current" if watched else "the op amp's first stage"
 
 
 def levels(scene: Scene, kind: str = "ac") -> list[tuple[str, float]]:

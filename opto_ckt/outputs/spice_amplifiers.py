@@ -9,7 +9,7 @@ from opto_ckt.outputs.spice_cards import NOWHERE, Cards, Values, cards, figures_
 from opto_ckt.outputs.spice_jfet import jfet_subcircuit
 from opto_ckt.outputs.spice_noise import noise_pair, noise_pair_gain
 from opto_ckt.outputs.spice_text import card, comment, name, number
-from opto_ckt.topology import BipolarTransistor, Comparator, FixedTia, Jfet, OpAmp, Switch, Transistor
+from opto_ckt.topology import BipolarTransistor, ClosedSwitch, Comparator, FixedTia, Jfet, OpAmp, Switch, Transistor
 
 
 @cards.register
@@ -176,3 +176,21 @@ def _(element: Switch, values: Values, driven: bool) -> Cards:
         card(f"m{ref}", *nodes, model, "w=1e-4 l=1e-4")
         + card(".model", model, f"{kind}(level=1 vto={threshold} kp=0.1)")
     )
+
+
+@cards.register
+def _(element: ClosedSwitch, values: Values, driven: bool) -> Cards:
+    """On for good: a drop and a resistance at its output, a level and a capacitance at its control."""
+    ref, v = name(element.ref), figures_of(element, values)
+    body = (
+        comment("pins: drain gate source (collector base emitter); put the maker's model here")
+        + comment("this one is on for good: it holds at the current of this deck")
+        + card(".subckt", ref, "d g s")
+        + card("vsat", "d x dc", number(values[f"{element.ref}.drop"]))
+        + card("ron", "x s", number(v["on_resistance"]))
+        + card("vc", "g y dc", number(values[f"{element.ref}.control_level"]))
+        + card("gc", "y s y s", number(v["control_conductance"]))
+        + card("cc", "g s", number(v["control_capacitance"]))
+        + card(".ends", ref)
+    )
+    return Cards(card(f"x{ref}", name(element.drain), name(element.control), name(element.source), ref), body)

@@ -8,7 +8,7 @@ from opto_ckt.constants import BOLTZMANN, ELEMENTARY_CHARGE
 from opto_ckt.outputs.spice_cards import NOWHERE, Cards, Values, cards, figures_of
 from opto_ckt.outputs.spice_noise import shot_noise
 from opto_ckt.outputs.spice_text import card, comment, name, number
-from opto_ckt.topology import LaserDiode, Led, Photodiode
+from opto_ckt.topology import LaserDiode, Led, MonitoredLaser, Photodiode
 
 
 @cards.register
@@ -44,7 +44,31 @@ def _(element: Photodiode, values: Values, driven: bool) -> Cards:
 
 @cards.register
 def _(element: LaserDiode, values: Values, driven: bool) -> Cards:
-    """Turn-on voltage and series resistance, a junction that blocks; optical power in watts as volts on pin three."""
+    """Turn-on voltage and series resistance, a junction that blocks; light in watts as volts on the last pin."""
+    ref, light = name(element.ref), name(f"pw{element.ref}")
+    body = _laser_body(element, values, "anode cathode light", "a k pw", "")
+    call = card(f"x{ref}", name(element.anode), name(element.cathode), light, ref)
+    return Cards(call + card(f"r{light[:7]}", light, "0", "1e6"), body)
+
+
+@cards.register
+def _(element: MonitoredLaser, values: Values, driven: bool) -> Cards:
+    """As any laser; its monitor passes a share of what exceeds the threshold, with dark current and shot noise."""
+    ref, light, v = name(element.ref), name(f"pw{element.ref}"), figures_of(element, values)
+    monitor = (
+        card("fmo", "mk ma", "vp", number(v["monitor_gain"]))
+        + card("imd", "mk ma dc", number(values[f"{element.ref}.monitor_dark"]))
+        + card("cmo", "mk ma", number(v["monitor_capacitance"]))
+        + shot_noise("sm", v["monitor_shot"], values["temperature"], "mk ma")
+    )
+    pins = "anode cathode, monitor's cathode anode, light"
+    body = _laser_body(element, values, pins, "a k mk ma pw", monitor)
+    call = card(f"x{ref}", *(name(node) for node in element.nodes.values()), light, ref)
+    return Cards(call + card(f"r{light[:7]}", light, "0", "1e6"), body)
+
+
+def _laser_body(element: LaserDiode, values: Values, said: str, pins: str, more: str) -> str:
+    """Turn-on voltage, series resistance, blocking junction, light; then ``more`` cards."""
     ref, v = name(element.ref), figures_of(element, values)
     current = max(values[f"{element.ref}.current"], 1e-9)
     thermal = BOLTZMANN * values["temperature"] / ELEMENTARY_CHARGE
@@ -53,10 +77,10 @@ def _(element: LaserDiode, values: Values, driven: bool) -> Cards:
     saturation = current / (2.718281828459045**10 - 1)
     resistance = v["series_resistance"] - emission * thermal / current
     turn_on = values[f"{element.ref}.turn_on_voltage"] + v["series_resistance"] * current - drop - resistance * current
-    body = (
-        comment("pins: anode cathode light; put the maker's model here, light in watts as volts")
+    return (
+        comment(f"pins: {said}; put the maker's model here, light in watts as volts")
         + comment("forward voltage and slope hold at the operating current and temperature of this deck")
-        + card(".subckt", ref, "a k pw")
+        + card(".subckt", ref, pins)
         + card("vs", "a a1 dc", "0")
         + card("vto", "a1 a2 dc", number(turn_on))
         + card("grs", "a2 a3 a2 a3", number(1 / resistance))
@@ -71,11 +95,9 @@ def _(element: LaserDiode, values: Values, driven: bool) -> Cards:
         + card("dn", "0 x", "dsp")
         + card(".model dsp", "d(is=1e-14 n=1)")
         + card("h1", "pw 0 vp", number(values[f"{element.ref}.slope_efficiency"]))
+        + more
         + card(".ends", ref)
     )
-    light = name(f"pw{element.ref}")
-    load = card(f"r{light[:7]}", light, "0", "1e6")
-    return Cards(card(f"x{ref}", name(element.anode), name(element.cathode), light, ref) + load, body)
 
 
 @cards.register

@@ -16,6 +16,7 @@ from opto_ckt.topology import (
     Resistor,
     Supply,
     Terminal,
+    Trimmer,
 )
 
 
@@ -110,3 +111,8 @@ def _(element: LogicOutput, values: Values, driven: bool) -> Cards:
         + card(".ends", ref)
     )
     return Cards(card(f"x{ref}", name(element.out), ref), body)
+
+
+@cards.register
+def _(element: Trimmer, values: Values, driven: bool) -> Cards:
+    return Cards(card(name(element.ref), name(element.a), name(element.b), number(values[f"{element.ref}.setting"])))

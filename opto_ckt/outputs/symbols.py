@@ -10,6 +10,7 @@ from math import cos, hypot, pi, sin
 from opto_ckt.topology import (
     AnalogSwitch,
     Capacitor,
+    ClosedSwitch,
     Diode,
     Element,
     FixedTia,
@@ -18,6 +19,7 @@ from opto_ckt.topology import (
     LaserDiode,
     Led,
     LogicOutput,
+    MonitoredLaser,
     OpAmp,
     Photodiode,
     Point,
@@ -27,6 +29,7 @@ from opto_ckt.topology import (
     Switch,
     Terminal,
     Transistor,
+    Trimmer,
 )
 
 Segment = tuple[Point, Point]
@@ -189,6 +192,23 @@ def _(element: Element) -> tuple[Shape, ...]:
 
 
 @outline.register
+def _(element: MonitoredLaser) -> tuple[Shape, ...]:
+    """Laser and monitor side by side in one package, light going from the one to the other."""
+    laser = Shape(((-0.22, 1.18), (0.22, 1.18), (0, 0.82)), closed=True)
+    monitor = Shape(((1.28, 0.82), (1.72, 0.82), (1.5, 1.18)), closed=True)
+    bars = (line((-0.22, 0.82), (0.22, 0.82)), line((1.28, 1.18), (1.72, 1.18)))
+    leads = tuple(line((x, y), (x, middle)) for x in (0, 1.5) for y, middle in ((2, 1.18), (0, 0.82)))
+    light = (*arrow((0.4, 1.12), (0.98, 1.12)), *arrow((0.4, 0.88), (0.98, 0.88)))
+    return (laser, monitor, *bars, *leads, *light, _box(-0.5, 0.55, 2.0, 1.45))
+
+
+@outline.register
+def _(element: Trimmer) -> tuple[Shape, ...]:
+    """A resistor with an arrow through it."""
+    return (_box(-0.45, -0.18, 0.45, 0.18), *arrow((-0.42, -0.4), (0.42, 0.4)))
+
+
+@outline.register
 def _(element: Reference) -> tuple[Shape, ...]:
     return _triangle(-1), line((-0.28, -0.3), (-0.18, -0.22), (-0.18, 0.22), (-0.08, 0.3))
 
@@ -278,6 +298,11 @@ def _(element: PulseSwitch) -> tuple[Shape, ...]:
 @outline.register
 def _(element: Switch) -> tuple[Shape, ...]:
     return _field_effect(element.polarity)
+
+
+@outline.register
+def _(element: ClosedSwitch) -> tuple[Shape, ...]:
+    return _bipolar(element.polarity) if element.bipolar else _field_effect(element.polarity)
 
 
 @outline.register

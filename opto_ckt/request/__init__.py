@@ -9,8 +9,10 @@ from opto_ckt.request.request import Request
 
 if TYPE_CHECKING:
     from opto_ckt.request.driver import LaserDriverRequest, LaserRequest
+    from opto_ckt.request.laser_power import LaserPowerRequest
     from opto_ckt.request.laser_pulse import LaserPulseRequest
     from opto_ckt.request.led import LedDriverRequest
+    from opto_ckt.request.led_switch import LedSwitchRequest
     from opto_ckt.request.receiver import (
         BootstrapRequest,
         CascodeRequest,
@@ -28,9 +30,11 @@ __all__ = [
     "DiscreteRequest",
     "FixedTiaRequest",
     "LaserDriverRequest",
+    "LaserPowerRequest",
     "LaserPulseRequest",
     "LaserRequest",
     "LedDriverRequest",
+    "LedSwitchRequest",
     "LoadResistorRequest",
     "OpAmpReceiverRequest",
     "ReceiverRequest",
@@ -48,9 +52,11 @@ LOADED_ON_USE = {
     "ReceiverRequest": "receiver",
     "SwitchedRequest": "receiver",
     "LaserDriverRequest": "driver",
+    "LaserPowerRequest": "laser_power",
     "LaserPulseRequest": "laser_pulse",
     "LaserRequest": "driver",
     "LedDriverRequest": "led",
+    "LedSwitchRequest": "led_switch",
 }
 
 

@@ -3,11 +3,12 @@
 from __future__ import annotations
 
 from collections.abc import Iterator
-from typing import Annotated, Literal
+from typing import Annotated, ClassVar, Literal
 
 from pydantic import Field
 
 from opto_ckt.parts.diode import DiodeData
+from opto_ckt.parts.fibre import FibreData
 from opto_ckt.parts.laser import LaserData
 from opto_ckt.parts.opamp import OpAmpData
 from opto_ckt.parts.record import Check, Choice, Finding, Spread, Table, Unit, Whole
@@ -105,6 +106,7 @@ class LaserRequest(Request):
 
     source: LaserData
     diode: DiodeData | None = None  #: across the source, against reverse voltage
+    fibre: FibreData | None = None  #: that the light leaves by
     signal: DriveSignal
     conditions: DriverConditions
 
@@ -116,7 +118,7 @@ class LaserDriverRequest(LaserRequest):
     amplifier: OpAmpData
     reference: ReferenceData
 
-    checks = (
+    checks: ClassVar[tuple[Check, ...]] = (
         Check(("source", "signal", "conditions"), _in_reach),
         Check(("source", "signal"), _within_source),
         Check(("amplifier", "conditions"), amplifier_supplied),

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Iterator
-from typing import Annotated, Literal
+from typing import Annotated, ClassVar, Literal
 
 from pydantic import Field
 
@@ -66,7 +66,7 @@ class LedDriverRequest(Request):
     signal: LedSignal
     conditions: DriverConditions
 
-    checks = (
+    checks: ClassVar[tuple[Check, ...]] = (
         Check(("source", "signal", "conditions", "logic_output"), _in_reach),
         Check(("source", "signal"), _within_source),
     )

@@ -22,6 +22,7 @@ from opto_ckt.topology.elements import (
     AnalogSwitch,
     BipolarTransistor,
     Capacitor,
+    ClosedSwitch,
     Comparator,
     Diode,
     FixedTia,
@@ -32,6 +33,7 @@ from opto_ckt.topology.elements import (
     LaserDiode,
     Led,
     LogicOutput,
+    MonitoredLaser,
     OpAmp,
     Photodiode,
     PulseSwitch,
@@ -41,6 +43,7 @@ from opto_ckt.topology.elements import (
     Switch,
     Terminal,
     Transistor,
+    Trimmer,
     TwoTerminal,
 )
 from opto_ckt.topology.structure import (
@@ -58,6 +61,7 @@ __all__ = [
     "AnalogSwitch",
     "BipolarTransistor",
     "Capacitor",
+    "ClosedSwitch",
     "Comparator",
     "Diode",
     "Element",
@@ -69,6 +73,7 @@ __all__ = [
     "LaserDiode",
     "Led",
     "LogicOutput",
+    "MonitoredLaser",
     "OpAmp",
     "Photodiode",
     "Point",
@@ -80,6 +85,7 @@ __all__ = [
     "Terminal",
     "Topology",
     "Transistor",
+    "Trimmer",
     "TwoTerminal",
     "renamed",
 ]

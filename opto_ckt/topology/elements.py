@@ -26,6 +26,17 @@ class Resistor(TwoTerminal):
     faults: ClassVar[Mapping[str, Mapping[str, float]]] = {"open": {"": OPEN}, "short": {"": SHORT}}
 
 
+class Trimmer(TwoTerminal):
+    """A trimming resistor wired as a rheostat, wiper to one end, so that an open wiper leaves its whole track.
+
+    Its track [Ω] is named like itself; what it is set to is its ``setting``.
+    """
+
+    kind: ClassVar[str] = "trimmer"
+    stocked: ClassVar[str] = "trimmers"
+    figures: ClassVar[tuple[str, ...]] = ("setting",)
+
+
 class Capacitor(TwoTerminal):
     """A capacitor; its value [F] is named like itself."""
 
@@ -216,12 +227,38 @@ class HeldCurrent(TwoTerminal):
     kind: ClassVar[str] = "held current"
 
 
+@dataclass(frozen=True)
+class ClosedSwitch(Switch):
+    """A transistor that is fully on: a resistance, of a bipolar one a drop besides; its control passes no signal."""
+
+    bipolar: bool = False  #: drawn as npn or pnp
+    figures: ClassVar[tuple[str, ...]] = ("on_resistance", "control_capacitance", "control_conductance")
+
+
 class LaserDiode(Junction):
     """A laser diode by its series resistance and capacitance at the bias point."""
 
     kind: ClassVar[str] = "laser"
     figures: ClassVar[tuple[str, ...]] = ("series_resistance", "capacitance")
     absent: ClassVar[Mapping[str, float]] = {"capacitance": 1e-15}
+
+
+@dataclass(frozen=True)
+class MonitoredLaser(LaserDiode):
+    """A laser diode with its monitor diode in one package: above threshold a share of its current comes back.
+
+    ``monitor_gain`` is the monitor's current over that of the laser, ``monitor_shot`` the current that makes its noise.
+    """
+
+    monitor_cathode: str
+    monitor_anode: str
+    pins: ClassVar[tuple[str, ...]] = ("anode", "cathode", "monitor_cathode", "monitor_anode")
+    pin_places: ClassVar[Mapping[str, Point]] = {
+        "anode": (0, 2), "cathode": (0, 0), "monitor_cathode": (1.5, 2), "monitor_anode": (1.5, 0),
+    }  # fmt: skip
+    figures: ClassVar[tuple[str, ...]] = (
+        "series_resistance", "capacitance", "monitor_gain", "monitor_capacitance", "monitor_shot",
+    )  # fmt: skip
 
 
 @dataclass(frozen=True)

@@ -17,7 +17,7 @@ class Topology:
     elements: tuple[Element, ...]
     input: str  #: element that the signal enters through
     output: tuple[str, str]  #: nodes between which the answer is taken
-    loop: str = ""  #: op amp or transistor at which the loop is opened
+    loop: str = ""  #: op amp, transistor or monitored laser at which the loop is opened
     trigger: str = ""  #: logic output that starts a pulse of the current through the input
     rival: str = ""  #: another element that a signal may enter through, to compare its answer with
     wires: tuple[tuple[Point, Point], ...] = ()  #: straight lines of the drawing

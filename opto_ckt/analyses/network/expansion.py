@@ -5,7 +5,7 @@ from __future__ import annotations
 from opto_ckt.analyses.network import amplifier_models, optical_models, pulse_models, simple_models
 from opto_ckt.analyses.network.element_model import model_of, signal_of
 from opto_ckt.analyses.network.primitives import Expansion, NoiseGenerator, Primitive
-from opto_ckt.topology import GROUND, Element, Supply, Topology, Transistor, renamed
+from opto_ckt.topology import GROUND, Element, MonitoredLaser, Supply, Topology, Transistor, renamed
 
 MODELS = (amplifier_models, optical_models, pulse_models, simple_models)
 """Each registers the elements that it knows with `model_of`."""
@@ -34,5 +34,7 @@ def expand(topology: Topology) -> Expansion:
 
 
 def _opened(element: Element) -> str:
-    """Primitive at which a loop through an element is opened: first stage of an op amp, channel of a transistor."""
+    """Primitive at which a loop is opened: an op amp's first stage, a transistor's channel, a laser's monitor."""
+    if isinstance(element, MonitoredLaser):
+        return f"{element.ref}.monitor"
     return f"{element.ref}.{'channel' if isinstance(element, Transistor) else 'stage1'}"

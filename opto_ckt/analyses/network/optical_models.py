@@ -7,7 +7,7 @@ from math import pi
 from opto_ckt.analyses.network.element_model import Parts, model_of, named, one, own, shot, signal_of, thermal
 from opto_ckt.analyses.network.primitives import NoiseGenerator, Primitive, Value
 from opto_ckt.constants import ELEMENTARY_CHARGE
-from opto_ckt.topology import GROUND, LaserDiode, Led, Photodiode
+from opto_ckt.topology import GROUND, LaserDiode, Led, MonitoredLaser, Photodiode
 
 
 @model_of.register
@@ -81,4 +81,21 @@ def _(element: Led) -> Parts:
                 None,
             ),
         ),
+    )
+
+
+@model_of.register
+def _(element: MonitoredLaser) -> Parts:
+    """As any laser; current through its junction, not through its capacitance, comes back from the monitor."""
+    ref, ends = element.ref, (element.anode, element.cathode)
+    monitor = (element.monitor_cathode, element.monitor_anode)
+    gain, resistance = named(f"{ref}.monitor_gain"), named(f"{ref}.series_resistance")
+    primitives, generators = model_of.dispatch(LaserDiode)(element)
+    return (
+        (
+            *primitives,
+            Primitive("G", f"{ref}.monitor", (*monitor, *ends), lambda v: gain(v) / resistance(v)),
+            own("C", element, "monitor_capacitance", monitor),
+        ),
+        (*generators, shot(f"{ref} monitor shot", monitor, named(f"{ref}.monitor_shot"))),
     )

@@ -8,6 +8,7 @@ from opto_ckt.topology import (
     GROUND,
     AnalogSwitch,
     Capacitor,
+    ClosedSwitch,
     Diode,
     Element,
     Inductor,
@@ -17,6 +18,7 @@ from opto_ckt.topology import (
     Supply,
     Switch,
     Terminal,
+    Trimmer,
 )
 
 
@@ -104,3 +106,27 @@ def _(element: LogicOutput) -> Parts:
     """The resistance of the transistor that conducts; what noise it makes no sheet says."""
     resistance, ends = named(element.value_name("resistance")), (element.out, GROUND)
     return (Primitive("G", f"{element.ref}.output", (*ends, *ends), lambda v: 1 / resistance(v)),), ()
+
+
+@model_of.register
+def _(element: Trimmer) -> Parts:
+    ends = (element.a, element.b)
+    return (
+        (own("R", element, "setting", ends),),
+        (thermal(element.ref, ends, named(element.value_name("setting"))),),
+    )
+
+
+@model_of.register
+def _(element: ClosedSwitch) -> Parts:
+    """Resistance of the channel, or of the saturated collector; the control holds its level."""
+    ends, control = (element.drain, element.source), (element.control, element.source)
+    conductance = named(element.value_name("control_conductance"))
+    return (
+        (
+            own("R", element, "on_resistance", ends),
+            own("C", element, "control_capacitance", control),
+            Primitive("G", element.value_name("control_conductance"), (*control, *control), conductance),
+        ),
+        (thermal(f"{element.ref} on", ends, named(element.value_name("on_resistance"))),),
+    )

@@ -17,6 +17,8 @@ across it and C3 filter the supply; Q2 shorts the set voltage unless the disable
 from __future__ import annotations
 
 from opto_ckt.circuit import Circuit
+from opto_ckt.circuits.drivers import warmth
+from opto_ckt.circuits.drivers.eye_safety import advice
 from opto_ckt.circuits.drivers.laser_current import (
     faults,
     figures,
@@ -42,7 +44,7 @@ CIRCUIT = Circuit(
     figures=figures.figures,
     implied=figures.implied,
     stresses=loads.stresses,
-    heat=loads.heat,
+    heat=warmth.heat,
     faults=faults.faults,
     outcome=faults.outcome,
     levers=(
@@ -55,6 +57,7 @@ CIRCUIT = Circuit(
         "C1",
     ),
     remarks=remarks.remarks,
+    eye_safety=advice,
     noise_frequency=figures.noise_frequency,
     noise_band=figures.noise_band,
     not_checked=(

@@ -6,14 +6,12 @@ import numpy as np
 
 from opto_ckt.circuit import Fault, FaultOutcome
 from opto_ckt.circuits.drivers.laser import over_temperature
-from opto_ckt.circuits.drivers.laser_current.loads import transistor_temperature
-from opto_ckt.limits import Lanes, Values
+from opto_ckt.circuits.drivers.mishaps import DARK, SWEEP, amount, beyond
+from opto_ckt.circuits.drivers.warmth import transistor_temperature
+from opto_ckt.limits import Values
 from opto_ckt.request import LaserDriverRequest
 from opto_ckt.topology import OPEN, SHORT
 from opto_ckt.units import write
-
-SWEEP = 41  #: supplies tried between none and the highest
-DARK = 1e-6  #: currents below are none [A]
 
 EXPLAINED = {
     "load reconnected after wind-up": "for {recovery} until the loop has recovered",
@@ -61,8 +59,8 @@ def outcome(fault: Fault, values: Values, request: LaserDriverRequest) -> FaultO
     )
     current, power, case, dissipated, junction = lanes
     worst = int(np.argmax(current))
-    beyond = _beyond(current, power, case, junction, request)
-    text = f"{_amount(float(current[worst]))}"
+    passed = beyond(current, power, case, junction, request)
+    text = f"{amount(float(current[worst]))}"
     if float(np.max(power)) > 0 and float(current[worst]) > DARK:
         text += f", {write(float(np.max(power)), 'W')} of light"
     held = _held(fault, values, worst)
@@ -71,28 +69,9 @@ def outcome(fault: Fault, values: Values, request: LaserDriverRequest) -> FaultO
         text += " " + EXPLAINED[fault.case].format(recovery=write(_recovery(values, worst), "s"))
     if fault.case == "load short":
         text += f"; Q1 takes {write(float(np.max(dissipated)), 'W')}, {write(float(np.max(junction)), '°C')} inside"
-    if beyond:
-        text += ": " + "; ".join(beyond)
-    return FaultOutcome(text, not beyond)
-
-
-def _amount(current: float) -> str:
-    return "no current through the laser" if current <= DARK else f"laser current {write(current, 'A')}"
-
-
-def _beyond(current: Lanes, power: Lanes, case: Lanes, junction: Lanes, request: LaserDriverRequest) -> list[str]:
-    """Every part that passes its limit, with the figures."""
-    data, found = request.source, []
-    for name, reached, limit, unit in (
-        ("current_max of the laser", current, data.current_max, "A"),
-        ("power_max of the laser", power, data.power_max, "W"),
-        ("case_max of the laser", case, data.case_max, "°C"),
-        ("junction_max of the transistor", junction, request.transistor.junction_max, "°C"),
-    ):
-        most = float(np.max(reached))
-        if most > limit * (1 + 1e-9):
-            found.append(f"{write(most, unit)} is above {name}, {write(limit, unit)}")
-    return found
+    if passed:
+        text += ": " + "; ".join(passed)
+    return FaultOutcome(text, not passed, power)
 
 
 def _held(fault: Fault, values: Values, worst: int) -> str:

@@ -1,12 +1,13 @@
-"""What the parts of the constant-current laser driver must stand, and how warm they get"""
+"""What the parts of the constant-current laser driver must stand."""
 
 from __future__ import annotations
 
 import numpy as np
 
-from opto_ckt.circuit import Heat, Stress
+from opto_ckt.circuit import Stress
 from opto_ckt.circuits.drivers.side import side_of
-from opto_ckt.limits import Lanes, Values
+from opto_ckt.circuits.drivers.warmth import resistor_load, supply_drop
+from opto_ckt.limits import Values
 from opto_ckt.request import LaserDriverRequest
 
 
@@ -19,10 +20,10 @@ def stresses(values: Values, request: LaserDriverRequest) -> tuple[Stress, ...]:
     divider = reference / (values["R2"] + values["R3"])
     feed = values["node.rail"] - reference
     found = [
-        _resistor("R1", sensed, values),
-        _resistor("R7", current, values),
-        _resistor("R2", divider, values),
-        _resistor("R3", divider, values),
+        resistor_load("R1", sensed, values),
+        resistor_load("R7", current, values),
+        resistor_load("R2", divider, values),
+        resistor_load("R3", divider, values),
         Stress("R6", power=feed**2 / values["R6"], voltage=feed, current=feed / values["R6"]),
         Stress("R8", power=supply_drop(values) ** 2 / values["R8"], voltage=supply_drop(values)),
         Stress("R5", voltage=supply, power=values["Q1.control_current"] ** 2 * values["R5"]),
@@ -40,31 +41,3 @@ def stresses(values: Values, request: LaserDriverRequest) -> tuple[Stress, ...]:
         Stress("D2", voltage=supply),
     ]
     return tuple(stress for stress in found if stress.ref[0] not in "RC" or stress.ref in values)
-
-
-def _resistor(ref: str, current: float | Lanes, values: Values) -> Stress:
-    return Stress(ref, power=current**2 * values[ref], voltage=current * values[ref], current=current)
-
-
-def supply_drop(values: Values) -> float | Lanes:
-    """Over the filter, steady. [V]"""
-    return values["supply.positive"] - values["node.rail"]
-
-
-def heat(values: Values, request: LaserDriverRequest) -> tuple[Heat, ...]:
-    """The laser's case, the junction of the pass transistor, that of the op amp where its sheet has one."""
-    found = [
-        Heat("D1", values["D1.heat"], values["D1.case_temperature"], request.source.case_max),
-        Heat("Q1", values["Q1.power"], transistor_temperature(values), request.transistor.junction_max),
-    ]
-    amplifier = request.amplifier
-    if amplifier.junction_to_ambient is not None:
-        warm = values["temperature"] + values["U1.power"] * amplifier.junction_to_ambient.high
-        found.append(Heat("U1", values["U1.power"], warm, amplifier.junction_max))
-    return tuple(found)
-
-
-def transistor_temperature(values: Values) -> float | Lanes:
-    """Junction of the pass transistor: to the air, else to a case at the temperature. [K]"""
-    name = "Q1.junction_to_ambient" if "Q1.junction_to_ambient" in values else "Q1.junction_to_case"
-    return values["temperature"] + values["Q1.power"] * values[name]

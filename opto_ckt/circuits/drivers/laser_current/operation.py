@@ -1,14 +1,7 @@
 """Operating point of the constant-current laser driver: the least of regulation, compliance and drive, lane by lane.
 
-All voltages here are distances from the near rail, on which sense resistor, reference and divider sit; ``placed`` turns
-them into voltages against ground. A fault is told by values that are otherwise absent:
-
-``D1.open``, ``D1.short``, ``Q1.short``, ``U2.open``
-    1 where that part is so
-``U1.stuck``
-    +1 where the op amp drives the transistor as hard as it can, -1 where it shuts it off
-``control.open``
-    1 where nothing drives the disable input
+All voltages here are distances from the near rail, as in `current_source`, which tells most faults too; besides them
+``U2.open`` is 1 where the reference is missing.
 """
 
 from __future__ import annotations
@@ -17,18 +10,25 @@ from typing import NamedTuple
 
 import numpy as np
 
-from opto_ckt.circuits.drivers.laser import Forward, asked_current, forward, lasing
-from opto_ckt.circuits.drivers.pass_transistor import Around, PassTransistor, pass_transistor
-from opto_ckt.circuits.drivers.side import Side, side_of
-from opto_ckt.constants import ROOM_TEMPERATURE
-from opto_ckt.formulas.leakage import dark_current
+from opto_ckt.circuits.drivers.current_source import (
+    PASSES,
+    amplifier_errors,
+    below_ground,
+    disabled,
+    filter_resistance,
+    flowing,
+    laser_line,
+    logic_levels,
+    placed,
+    regulated_current,
+    surroundings,
+)
+from opto_ckt.circuits.drivers.laser import asked_current, lasing
+from opto_ckt.circuits.drivers.pass_transistor import Around, pass_transistor
+from opto_ckt.circuits.drivers.side import side_of
 from opto_ckt.formulas.reference import divided_voltage, parallel_resistance
 from opto_ckt.limits import Lanes, Values
 from opto_ckt.request import LaserDriverRequest
-from opto_ckt.topology import OPEN
-
-LOGIC_LEVEL = 1.0  #: above it the disable input counts as high [V]
-PASSES = 3  #: over terms that are a thousandth of the whole
 
 
 class Levels(NamedTuple):
@@ -47,32 +47,20 @@ def bias(values: Values, request: LaserDriverRequest) -> dict[str, float | Lanes
     side, transistor = side_of(request), pass_transistor(request.transistor)
     supply = wide["supply.positive"]
     asked = asked_current(request)
-    filter_resistance = _filter_resistance(wide)
-    line = _forward(wide, request, asked)
+    filtered = filter_resistance(wide)
+    line = laser_line(wide, request, asked)
     rail, regulated = supply, np.asarray(asked)
     for _ in range(PASSES):
         levels = _levels(wide, request, rail)
         others = levels.bias + wide["U1.quiescent_current"]
-        around = _around(wide, request, transistor, line, supply - filter_resistance * others, rail, side)
-        regulated = _regulated(wide, transistor, levels.plus, rail, around, side)
+        around = surroundings(wide, request, transistor, line, supply - filtered * others, rail, side)
+        regulated = regulated_current(wide, transistor, levels.plus, rail, around, side)
         hard_on = transistor.hard_on(wide, around)
         if request.source.forward is not None:
-            line = _forward(wide, request, np.where(hard_on < regulated, hard_on, regulated))
-        current = _least(wide, request, regulated, hard_on, around)
-        rail = supply - filter_resistance * (others + current)
+            line = laser_line(wide, request, np.where(hard_on < regulated, hard_on, regulated))
+        current = flowing(wide, request, regulated, hard_on, around)
+        rail = supply - filtered * (others + current)
     return _written(values, wide, request, around, levels, regulated, hard_on, current, rail)
-
-
-def _filter_resistance(values: Values) -> Lanes:
-    """Of the supply filter to a steady current: its winding beside its damping. [Ω]"""
-    return np.asarray(parallel_resistance(first=values["L1.resistance"], second=values["R8"]))
-
-
-def _forward(values: Values, request: LaserDriverRequest, current: float | Lanes) -> Forward:
-    line = forward(values, request, current)
-    shorted, opened = (np.asarray(values.get(f"D1.{fault}", 0.0)) for fault in ("short", "open"))
-    turn_on, resistance = (np.where(shorted > 0, 0.0, part) for part in line)
-    return Forward(turn_on, np.where(opened > 0, OPEN, resistance))
 
 
 def _levels(values: Values, request: LaserDriverRequest, rail: Lanes) -> Levels:
@@ -89,67 +77,6 @@ def _levels(values: Values, request: LaserDriverRequest, rail: Lanes) -> Levels:
     tap = tap - drawn * parallel_resistance(first=values["R2"], second=values["R3"])
     level = np.where(disabled(values), 0.0, tap)
     return Levels(reference, level, level - drawn * values["R9"], (rail - reference) / feed)
-
-
-def disabled(values: Values) -> Lanes:
-    """Whether the disable input shorts the set voltage: it is high, or nothing drives it."""
-    if "R11" not in values:
-        return np.asarray(False)
-    level = np.asarray(values["control.disable"])
-    return np.asarray((level > LOGIC_LEVEL) | (np.asarray(values.get("control.open", 0.0)) > 0))
-
-
-def _around(
-    values: Values,
-    request: LaserDriverRequest,
-    transistor: PassTransistor,
-    line: Forward,
-    supply: Lanes,
-    rail: Lanes,
-    side: Side,
-) -> Around:
-    share = transistor.share(values)
-    sense = np.asarray(values["R1"] / share)
-    headroom = values["U1.swing_to_positive"] if side == "low" else values["U1.swing_to_negative"] - _negative(values)
-    return Around(
-        supply=np.asarray(supply - line.turn_on),
-        series=np.asarray(_filter_resistance(values) + line.resistance + values["R7"] + sense),
-        sense=sense,
-        drive=np.maximum(rail - headroom, 0.0),
-        gate=np.asarray(values["R5"]),
-        drive_current=np.asarray(values["U1.output_current_max"]),
-    )
-
-
-def _negative(values: Values) -> float | Lanes:
-    """How far the op amp's negative supply lies below ground. [V]"""
-    return np.abs(values["supply.negative"])
-
-
-def _regulated(
-    values: Values, transistor: PassTransistor, set_voltage: Lanes, rail: Lanes, around: Around, side: Side
-) -> Lanes:
-    """Current at which the sense voltage agrees with the set voltage; offset, bias current, finite gain in it. [A]"""
-    raised = values["U1.offset"] + values["U1.bias_current"] * values["R4"]
-    wanted = set_voltage + (raised if side == "low" else -raised)
-    sense = wanted
-    for _ in range(PASSES):
-        current = np.maximum(sense, 0.0) / around.sense
-        control = transistor.control_voltage(values, current, np.maximum(around.across(current), 0.0))
-        output = np.clip(control + sense, 0.0, rail)
-        output = output if side == "low" else output - rail
-        sense = wanted - output / values["U1.open_loop_gain"]
-    return np.asarray(np.maximum(sense, 0.0) / around.sense)
-
-
-def _least(values: Values, request: LaserDriverRequest, regulated: Lanes, hard_on: Lanes, around: Around) -> Lanes:
-    """The current that flows; an op amp below its least supply is taken to drive as hard as it can."""
-    stuck = np.asarray(values.get("U1.stuck", 0.0))
-    lost = values["supply.positive"] + _negative(values) < request.amplifier.supply_min
-    current = np.where(lost | (stuck > 0), hard_on, np.minimum(regulated, hard_on))
-    current = np.where(stuck < 0, 0.0, current)
-    shorted = np.maximum(around.supply, 0.0) / around.series
-    return np.asarray(np.where(np.asarray(values.get("Q1.short", 0.0)) > 0, shorted, current))
 
 
 def _written(
@@ -170,7 +97,7 @@ def _written(
     bypassed = np.asarray(values.get("D1.short", 0.0)) > 0
     laser = lasing(values, request, np.where(bypassed, 0.0, current))
     sense = current * around.sense
-    span = values["supply.positive"] + _negative(values)
+    span = values["supply.positive"] + below_ground(values)
     output = control + sense + drawn * around.gate
     through = np.where(bypassed, 0.0, laser["D1.forward_voltage"])
     biased: dict[str, float | Lanes] = {
@@ -203,37 +130,4 @@ def _written(
         "drain": rail - through - current * values["R7"],
         "laser": rail - through,
     }
-    return biased | placed(near, rail, request) | _logic(values, rail, request) | {"node.rail": rail}
-
-
-def placed(near: dict[str, Lanes], rail: Lanes, request: LaserDriverRequest) -> dict[str, float | Lanes]:
-    """Node voltages against ground from distances to the near rail."""
-    if side_of(request) == "low":
-        return {f"node.{name}": voltage for name, voltage in near.items()}
-    return {f"node.{name}": rail - voltage for name, voltage in near.items()}
-
-
-def _logic(values: Values, rail: Lanes, request: LaserDriverRequest) -> dict[str, float | Lanes]:
-    """Nodes of the disable input."""
-    found: dict[str, float | Lanes] = {"node.positive": values["supply.positive"]}
-    if "R11" not in values:
-        return found
-    found["node.off"] = np.where(np.asarray(values.get("control.open", 0.0)) > 0, rail, values["control.disable"])
-    if "R12" in values:
-        found["node.shift"] = np.where(disabled(values), 0.0, rail)
-    return found
-
-
-def amplifier_errors(values: Values, request: LaserDriverRequest) -> dict[str, Lanes]:
-    """Offset with its drift, in its own direction, and input bias current at the temperature; of a FET it doubles."""
-    temperature, offset = values["temperature"], values["U1.offset_voltage"]
-    drift = values.get("U1.offset_drift", 0.0) * np.abs(temperature - ROOM_TEMPERATURE)
-    drawn, doubling = values["U1.bias_current"], request.amplifier.bias_current_doubling
-    if doubling is not None:
-        drawn = dark_current(
-            dark_current=drawn,
-            temperature=temperature,
-            reference_temperature=ROOM_TEMPERATURE,
-            doubling=doubling,
-        )
-    return {"U1.offset": np.asarray(offset + np.copysign(drift, offset)), "U1.bias_current": np.asarray(drawn)}
+    return biased | placed(near, rail, request) | logic_levels(values, rail) | {"node.rail": rail}

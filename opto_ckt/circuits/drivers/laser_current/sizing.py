@@ -2,31 +2,25 @@
 
 from __future__ import annotations
 
-from math import inf
-
 from opto_ckt.circuit import Bench, Fitted
-from opto_ckt.circuits.drivers.laser_current.budget import Share, budget
-from opto_ckt.circuits.drivers.laser_current.compensation import compensation
-from opto_ckt.circuits.drivers.laser_current.slack import GATE
-from opto_ckt.circuits.drivers.pass_transistor import pass_transistor
-from opto_ckt.circuits.drivers.side import side_of
+from opto_ckt.circuits.drivers.budget import Share, budget
+from opto_ckt.circuits.drivers.compensation import compensation
+from opto_ckt.circuits.drivers.fitting import (
+    Sizing,
+    capacitor_spread,
+    fit_common,
+    fit_current,
+    fit_filter,
+    refuse_unsuited,
+)
 from opto_ckt.circuits.drivers.spread import resistor_spread
 from opto_ckt.derivation import Derivation
 from opto_ckt.errors import InfeasibleError
 from opto_ckt.formulas import driver, driver_loop, laser, laser_heating, reference, supply_filter, transistor
-from opto_ckt.parts.transistor import MosfetData
-from opto_ckt.preferred import DIELECTRICS
 from opto_ckt.request import LaserDriverRequest
 from opto_ckt.units import write
 
 DIVIDER_CURRENT = 100e-6  #: common practice: far above the input bias current [A]
-SENSE_LEAD = 1e3  #: R4 from the sense node, and R9 like it ahead of the other input; common practice [Ω]
-PULL_UP = 100e3  #: common practice [Ω]
-BYPASS = 100e-9  #: at the op amp's supply pin, common practice [F]
-FILTER_CAPACITANCE, FILTER_INDUCTANCE = 10e-6, 10e-6
-"""Supply filter: its corner of 16 kHz lies below the frequencies of switching converters; common practice [F, H]"""
-
-DAMPING = 0.7  #: least of the supply filter [1]
 SETTLED = 0.95  #: of the current, at the end of the soft start
 NEAR = 1.013  #: a window that holds one or two values of E96
 FORMULAS = (
@@ -57,82 +51,19 @@ def propose(request: LaserDriverRequest, derivation: Derivation, bench: Bench) -
     ------
     InfeasibleError : laser, supply, reference or amplifier leave no values.
     """
-    _refuse_unsuited(request, bench)
+    refuse_unsuited(request, bench)
     share = budget(request, derivation, bench)
-    sizing = _Sizing(request, derivation)
-    _current(sizing, bench, share)
+    sizing = Sizing(request, derivation)
+    fit_current(sizing, bench, share)
     _reference(sizing, bench, share)
-    _common(sizing)
+    fit_common(sizing)
     _slow(sizing, bench)
-    _filter(sizing)
+    fit_filter(sizing)
     others = {ref: part.exact for ref, part in sizing.parts.items()}
     return (*sizing.parts.values(), compensation(request, derivation, bench, others))
 
 
-def _refuse_unsuited(request: LaserDriverRequest, bench: Bench) -> None:
-    """Refuse an op amp that needs gain, and a transistor that the supply would break."""
-    gain, supply, data = bench.nominal("U1.minimum_stable_gain"), bench.high("supply.positive"), request.transistor
-    if gain > 1:
-        raise InfeasibleError(
-            f"the noise gain falls to 1 through C1, U1 is stable from {gain:g} on",
-            ["an amplifier that is stable at a gain of 1"],
-        )
-    span = supply - bench.low("supply.negative")
-    limits = {"voltage_max": (data.voltage_max, supply)}
-    if isinstance(data, MosfetData):
-        limits["gate_voltage_max"] = (data.gate_voltage_max, span)
-    for name, (limit, reached) in limits.items():
-        if reached > limit:
-            raise InfeasibleError(
-                f"a fault puts {write(reached, 'V')} on the transistor, its {name} is {write(limit, 'V')}",
-                [f"transistor.{name} ≥ {write(reached, 'V')}", "a lower conditions.supply"],
-            )
-
-
-class _Sizing:
-    """Parts in the order in which they are sized; what the design file fixes is kept."""
-
-    def __init__(self, request: LaserDriverRequest, derivation: Derivation) -> None:
-        self.request, self.derivation = request, derivation
-        self.parts: dict[str, Fitted] = {}
-
-    def __getitem__(self, ref: str) -> float:
-        return self.parts[ref].exact
-
-    def fit(self, ref: str, exact: float, stock: str, low: float = 0.0, high: float = inf, why: str = "") -> None:
-        """One part; ``why`` for those that no formula gives."""
-        fixed = self.request.fixed.get(ref)
-        if fixed is not None:
-            self.derivation.note(ref, "fixed in the design file")
-        elif why:
-            self.derivation.note(ref, why)
-        series = getattr(self.request.preferred, stock).series
-        value = exact if fixed is None else fixed
-        self.parts[ref] = Fitted(ref, value, series, low=low, high=high, fixed=fixed is not None)
-
-    def known(self, ref: str, otherwise: float) -> float:
-        """The value that the design file fixes, else another."""
-        return self.request.fixed.get(ref, otherwise)
-
-
-def _current(sizing: _Sizing, bench: Bench, share: Share) -> None:
-    """R1 for the sense voltage, R7 in its window."""
-    nominal = {name: bench.nominal(name) for name in bench.limits}
-    alpha = float(pass_transistor(sizing.request.transistor).share(nominal))
-    exact = sizing.derivation.compute(
-        "R1",
-        driver.sense_resistance,
-        reason=f"{write(share.sense, 'V')} / {write(share.asked / alpha, 'A')}; "
-        + sizing.derivation.reasons.get("sense voltage", ""),
-        reference=share.sense,
-        current=share.asked / alpha,
-    )
-    sizing.fit("R1", exact, "resistors", low=0.93 * exact, high=1.07 * exact)
-    least, most = share.series
-    sizing.fit("R7", least, "resistors", low=least, high=most)
-
-
-def _reference(sizing: _Sizing, bench: Bench, share: Share) -> None:
+def _reference(sizing: Sizing, bench: Bench, share: Share) -> None:
     """Divider from the reference to the set voltage; R6 keeps the reference fed at the lowest supply.
 
     Raises
@@ -182,30 +113,13 @@ def _reference(sizing: _Sizing, bench: Bench, share: Share) -> None:
     sizing.fit("R6", feed, "resistors", low=0.95 * feed, high=feed)
 
 
-def _common(sizing: _Sizing) -> None:
-    """Values by common practice."""
-    lead = sizing.known("R4", SENSE_LEAD)
-    sizing.fit("R4", SENSE_LEAD, "resistors", SENSE_LEAD, SENSE_LEAD, "common practice: lets C1 take over the loop")
-    why = "like R4: equal drops of the input bias currents; keeps C2 from feeding U1's input when the supply fails"
-    sizing.fit("R9", lead, "resistors", lead, lead, why)
-    sizing.fit("R5", GATE, "resistors", GATE, GATE, "common practice: parts U1 from the capacitance of Q1")
-    if sizing.request.signal.enable:
-        why = "common practice: an open input keeps the laser off"
-        sizing.fit("R11", PULL_UP, "resistors", PULL_UP, PULL_UP, why)
-        if side_of(sizing.request) == "high":
-            sizing.fit("R12", PULL_UP, "resistors", PULL_UP, PULL_UP, "common practice: Q2 off unless Q3 conducts")
-    sizing.fit("C8", BYPASS, "bypass", BYPASS, BYPASS, "common practice: 100 nF close to the supply pin")
-    if sizing.request.conditions.supply.negative:
-        sizing.fit("C9", BYPASS, "bypass", BYPASS, BYPASS, "common practice: 100 nF close to the supply pin")
-
-
-def _slow(sizing: _Sizing, bench: Bench) -> None:
+def _slow(sizing: Sizing, bench: Bench) -> None:
     """C2: the current rises with the set voltage and is there in the time asked for, C2 and divider at their most."""
     request = sizing.request
     parallel = float(reference.parallel_resistance(first=sizing["R2"], second=sizing["R3"]))
     limits = request.require.get("startup_time")
     duration = request.signal.startup_time if limits is None or limits.max is None else limits.max
-    most = (1 + _capacitor_spread(request)) * (1 + resistor_spread(request))
+    most = (1 + capacitor_spread(request)) * (1 + resistor_spread(request))
     exact = sizing.derivation.compute(
         "C2",
         reference.soft_start_capacitance,
@@ -215,30 +129,3 @@ def _slow(sizing: _Sizing, bench: Bench) -> None:
         fraction=SETTLED,
     )
     sizing.fit("C2", exact, "bypass", low=exact / 10, high=exact)
-
-
-def _capacitor_spread(request: LaserDriverRequest) -> float:
-    """How far a bypass capacitor may lie above its value: tolerance and dielectric. [1]"""
-    stock = request.preferred.bypass
-    return float(stock.tolerance + max(DIELECTRICS[stock.dielectric].change_high, 0.0))
-
-
-def _filter(sizing: _Sizing) -> None:
-    """L1 and C3 by their corner, R8 across L1 for the damping."""
-    request, derivation = sizing.request, sizing.derivation
-    capacitance, inductance = sizing.known("C3", FILTER_CAPACITANCE), sizing.known("L1", FILTER_INDUCTANCE)
-    derivation.compute(
-        "filter corner", supply_filter.filter_corner, inductance=inductance, capacitance=capacitance,
-        reason="below the frequencies of switching converters",
-    )  # fmt: skip
-    why = "common practice: corner at 16 kHz with {}, below switching converters; R7 keeps C3 from the laser"
-    sizing.fit("C3", capacitance, "bypass", capacitance, capacitance, why.format("L1"))
-    sizing.fit("L1", inductance, "inductors", inductance, inductance, why.format("C3"))
-    least = inductance * (1 - request.preferred.inductors.tolerance)
-    most = (capacitance + BYPASS) * (1 + _capacitor_spread(request))
-    exact = derivation.compute(
-        "R8", supply_filter.damping_resistance, reason=f"ζ ≥ {DAMPING} with L1 at its least, C3 and C8 at their most",
-        inductance=least, capacitance=most, damping=DAMPING,
-    )  # fmt: skip
-    exact /= 1 + resistor_spread(request)
-    sizing.fit("R8", exact, "resistors", low=0.9 * exact, high=exact)

@@ -13,6 +13,7 @@ from __future__ import annotations
 
 from opto_ckt.circuit import Circuit
 from opto_ckt.circuits.drivers.laser_pulse import (
+    eyes,
     faults,
     figures,
     given,
@@ -56,5 +57,6 @@ CIRCUIT = Circuit(
     ),
     formulas=sizing.FORMULAS,
     refused=given.refused,
+    eye_safety=eyes.advice,
     starter=starter.STARTER,
 )

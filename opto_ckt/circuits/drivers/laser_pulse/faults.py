@@ -58,11 +58,11 @@ def outcome(fault: Fault, values: Values, request: LaserPulseRequest) -> FaultOu
         told.append(f"no current through the laser, {write(switch, 'A')} in pulses through the switch")
     elif steady > DARK:
         standing = float(np.max(np.atleast_1d(values["D1.steady_power"])))
-        light = f"{write(standing, 'W')} of light while it lasts" if standing > 0 else "no light"
+        light = f"{write(standing, 'W')} of light" if standing > 0 else "no light"
         if "R1" in fault.overrides:
             told.append(
-                f"no pulse but {write(steady, 'A')} and {light} as long as the switch is on, limited by R3 and the"
-                " loop's own resistance"
+                f"no pulse but {write(steady, 'A')} and {light} while the switch is on and the laser lasts, limited"
+                " by R3 and the loop's own resistance"
             )
         else:
             told.append(f"one last pulse of {write(peak, 'A')}, then {write(steady, 'A')} and {light}, limited by R1")
@@ -79,7 +79,9 @@ def outcome(fault: Fault, values: Values, request: LaserPulseRequest) -> FaultOu
         charge = float(np.max(np.asarray(values["supply.positive"])))
         told.append(f"C1 stays charged to {write(charge, 'V')} until the supply is off and R2 has bled it")
     beyond = _beyond(values, request)
-    return FaultOutcome(", ".join(told) + (": " + "; ".join(beyond) if beyond else ""), not beyond)
+    said = ", ".join(told) + (": " + "; ".join(beyond) if beyond else "")
+    average = np.maximum(values["D1.average_power"], values["D1.steady_power"])
+    return FaultOutcome(said, not beyond, light=float(np.max(average)))
 
 
 def _charging(fault: Fault, values: Values) -> list[str]:

@@ -56,6 +56,7 @@ def light(
         "D1.peak_power": flash * share,
         "D1.pulse_energy": energy * share,
         "D1.optical_power": np.where(steady > 0, still.power, rate * energy) * share,
+        "D1.average_power": np.where(steady > 0, still.power, rate * energy),
         "D1.steady_current": steady,
         "D1.steady_power": np.maximum(start[1] * (steady - start[0]), 0.0),
         "D1.junction_temperature": hottest,

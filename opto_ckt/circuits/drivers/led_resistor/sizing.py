@@ -8,7 +8,7 @@ from opto_ckt.circuit import Bench, Fitted
 from opto_ckt.circuits.drivers.led import asked_current, heated, nominal
 from opto_ckt.circuits.drivers.led_resistor.operation import drive
 from opto_ckt.circuits.drivers.led_resistor.structure import feed_of
-from opto_ckt.circuits.drivers.spread import resistor_spread
+from opto_ckt.circuits.drivers.led_sizing import largest_current, least_resistance
 from opto_ckt.derivation import Derivation
 from opto_ckt.errors import InfeasibleError
 from opto_ckt.formulas import diode, driver, led, transit
@@ -77,35 +77,18 @@ def _resistance(request: LedDriverRequest, derivation: Derivation, bench: Bench,
 
 def _most(request: LedDriverRequest) -> float:
     """Largest current allowed: by the design, the LED, the output. [A]"""
-    asked, output = request.signal.current, request.logic_output
-    most = [request.source.current_max]
-    if asked is not None and asked.max is not None:
-        most.append(asked.max)
-    if output is not None and output.current_max is not None:
-        most.append(output.current_max)
-    return min(most)
+    return largest_current(request, None if request.logic_output is None else request.logic_output.current_max)
 
 
 def _least(request: LedDriverRequest, derivation: Derivation, bench: Bench) -> float:
-    """R1 that keeps the largest current where voltage is highest and the LED takes least, its own spread in it. [Ω]"""
+    """R1 that keeps the largest current where voltage is highest and output and LED take least. [Ω]"""
     most = _most(request)
     extreme = {name: bench.high(name) for name in bench.limits}
     extreme |= {name: bench.low(name) for name in ("U1.source_resistance", "U1.sink_resistance") if name in extreme}
     if feed_of(request) == "sink":
         extreme["U1.low"] = bench.low("U1.low")
     feed = drive(extreme, request)
-    ends = request.conditions.temperature
-    forward = min(float(heated(nominal(request, end, forward=-1.0), request, most)[0]) for end in (ends.low, ends.high))
-    least = derivation.compute(
-        "least R1",
-        driver.series_resistance,
-        reason=f"{write(most, 'A')} at the most: highest voltage, lowest forward voltage",
-        supply=float(feed.voltage),
-        switch_drop=most * float(feed.resistance),
-        forward_voltage=forward,
-        current=most,
-    )
-    return max(least, 0.0) / (1 - resistor_spread(request))
+    return least_resistance(request, derivation, most, float(feed.voltage), most * float(feed.resistance))
 
 
 def _higher(request: LedDriverRequest, needed: float) -> str:

@@ -15,6 +15,7 @@ from opto_ckt.errors import InfeasibleError
 from opto_ckt.formulas import driver_loop
 from opto_ckt.limits import Lanes, Limit
 from opto_ckt.request import LaserDriverRequest
+from opto_ckt.request.reading import Limit as AskedLimit
 from opto_ckt.units import write
 
 SCAN = np.geomspace(1 / 100, 30, 29)  #: C1 tried, as multiples of the closed form
@@ -34,9 +35,15 @@ DECIDES = (
 
 
 def compensation(
-    request: LaserDriverRequest, derivation: Derivation, bench: Bench, others: Mapping[str, float]
+    request: LaserDriverRequest,
+    derivation: Derivation,
+    bench: Bench,
+    others: Mapping[str, float],
+    require: Mapping[str, AskedLimit] | None = None,
 ) -> Fitted:
     """C1 at which the least of all margins over the corners is largest: of phase, of peaking, of speed where asked for.
+
+    ``require`` stands for what the design file asks of this loop, where its own names mean another one.
 
     Raises
     ------
@@ -46,7 +53,8 @@ def compensation(
     if "C1" in request.fixed:
         derivation.note("C1", "fixed in the design file")
         return Fitted("C1", request.fixed["C1"], series, fixed=True)
-    required = request.require.get("loop_bandwidth")
+    asked = request.require if require is None else require
+    required = asked.get("loop_bandwidth")
     wanted = (required.min or 0.0) if required is not None else 0.0
     start_bandwidth = wanted or bench.nominal("U1.gain_bandwidth") / 20
     start = driver_loop.compensation_capacitance(compensation_resistance=lead, bandwidth=start_bandwidth)
@@ -56,8 +64,8 @@ def compensation(
         raise InfeasibleError(
             "no C1 makes the loop stable at every corner", ["U1 second pole higher", "Q1 input capacitance lower"]
         )
-    least = _asked(request, "phase_margin", LEAST_MARGIN)
-    spare = np.minimum((margin - least) / MARGIN_STEP, (_allowed(request) - peaking) / PEAKING_STEP)
+    least = _asked(asked, "phase_margin", LEAST_MARGIN)
+    spare = np.minimum((margin - least) / MARGIN_STEP, (_allowed(asked) - peaking) / PEAKING_STEP)
     if wanted:
         spare = np.minimum(spare, np.log(np.maximum(bandwidth, 1e-9) / wanted))
     first, last = _longest_run(spare >= 0)
@@ -92,13 +100,13 @@ def _longest_run(good: NDArray[np.bool_]) -> tuple[int, int]:
     return best
 
 
-def _asked(request: LaserDriverRequest, name: str, otherwise: float) -> float:
-    limit = request.require.get(name)
+def _asked(asked: Mapping[str, AskedLimit], name: str, otherwise: float) -> float:
+    limit = asked.get(name)
     return otherwise if limit is None or limit.min is None else limit.min
 
 
-def _allowed(request: LaserDriverRequest) -> float:
-    limit = request.require.get("peaking")
+def _allowed(asked: Mapping[str, AskedLimit]) -> float:
+    limit = asked.get("peaking")
     return ALLOWED_PEAKING if limit is None or limit.max is None else limit.max
 
 

@@ -9,13 +9,13 @@ import numpy as np
 
 from opto_ckt.circuit import Bench
 from opto_ckt.circuits.drivers.laser import Most, asked_current, safe_current
-from opto_ckt.circuits.drivers.laser_current.slack import (
+from opto_ckt.circuits.drivers.side import side_of
+from opto_ckt.circuits.drivers.slack import (
     STEP,
     Sharing,
     current_spread,
     offset_error,
 )
-from opto_ckt.circuits.drivers.side import side_of
 from opto_ckt.circuits.drivers.spread import resistor_spread
 from opto_ckt.derivation import Derivation
 from opto_ckt.errors import InfeasibleError
@@ -61,8 +61,36 @@ def budget(request: LaserDriverRequest, derivation: Derivation, bench: Bench) ->
                 *(["conditions.temperature.min higher"] if most.by_power else []),
             ],
         )
+    return shared_out(request, derivation, bench, Demand(asked, worst, most, "signal.current", asked, "A"))
+
+
+class Demand(NamedTuple):
+    """Current that the supply is shared out for, and the key of the design file that asks for it."""
+
+    asked: float  #: [A]
+    worst: float  #: [A]
+    most: Most
+    key: str
+    lever: float  #: what `key` asks for, above an offset in the same proportion as the current
+    unit: str
+    offset: float = 0.0  #: current that `key` does not change [A]
+
+    def lowered(self, scale: float) -> str:
+        """What `key` would have to be for a worst current so many times smaller."""
+        left = (self.worst / scale - self.offset) / (self.worst - self.offset)
+        return f"{self.key} ≤ {write(max(left, 0.0) * self.lever, self.unit)}"
+
+
+def shared_out(request: LaserDriverRequest, derivation: Derivation, bench: Bench, demand: Demand) -> Share:
+    """Sense voltage and fail-safe resistor for a current.
+
+    Raises
+    ------
+    InfeasibleError : the supply is too low for it.
+    """
+    asked, worst, most = demand.asked, demand.worst, demand.most
     share = Sharing(request, bench, most)
-    _refuse_low_supply(share, asked, worst)
+    _refuse_low_supply(share, demand)
     least = share.least_series(1.0)
     sense = _sense_voltage(share, derivation, asked, worst)
     note_series(share, derivation)
@@ -71,7 +99,8 @@ def budget(request: LaserDriverRequest, derivation: Derivation, bench: Bench) ->
     return Share(asked, worst, most, sense, (least, max(high, least * STEP)))
 
 
-def _refuse_low_supply(share: Sharing, asked: float, worst: float) -> None:
+def _refuse_low_supply(share: Sharing, demand: Demand) -> None:
+    worst = demand.worst
     slack = share.slack(worst, SENSE_LEAST)
     short = min(slack)
     if short >= 0:
@@ -91,11 +120,12 @@ def _refuse_low_supply(share: Sharing, asked: float, worst: float) -> None:
         reason = (
             f"the op amp, at the lowest supply of {lowest}, is {write(-short, 'V')} short of driving the transistor"
         )
-    raise InfeasibleError(reason, _remedies(share, asked, worst))
+    raise InfeasibleError(reason, _remedies(share, demand))
 
 
-def _remedies(share: Sharing, asked: float, worst: float) -> list[str]:
+def _remedies(share: Sharing, demand: Demand) -> list[str]:
     """A supply that would do, a current that would do, and how much longer the laser would have to stand."""
+    worst = demand.worst
     supply = _first(lambda scale: min(share.slack(worst, SENSE_LEAST, scale)) >= 0)
     found = []
     if supply is not None:
@@ -107,7 +137,7 @@ def _remedies(share: Sharing, asked: float, worst: float) -> list[str]:
         )
     current = _first(lambda scale: min(share.slack(worst / scale, SENSE_LEAST)) >= 0)
     if current is not None:
-        found.append(f"signal.current ≤ {write(asked / current, 'A')}")
+        found.append(demand.lowered(current))
 
     def stands(scale: float) -> bool:
         hardier = Sharing(share.request, share.bench, share.most._replace(current=share.most.current * scale))
