@@ -144,13 +144,12 @@ _ALL = (
         "current, or power where it is controlled, over set voltage, loop closed, -3 dB",
         1.0,
     ),
-    Figure("peak_current", "A", "peak current", "largest through the source, first instant of a step included", 1e-6),
+    Figure("peak_current", "A", "peak current", "largest through the source, of a pulse or in the first instant of a step", 1e-6),
     Figure("overdrive", "1", "overdrive", "base drive over what saturates, gate voltage over that of the sheet", 0.5),
     Figure(
         "turn_off_time", "s", "turn-off time", "drive gone to light gone: storage, then sweep-out or 90-10 %", 1e-12
     ),
     Figure("startup_time", "s", "start-up time", "supply or enable there to 95 % of the current", 1e-6),
-    Figure("peak_current", "A", "peak current", "of a pulse through the source", 1e-6),
     Figure("pulse_width", "s", "pulse width", "of the current, at half of its peak", 1e-12),
     Figure("peak_power", "W", "peak power", "of the light of a pulse, at the stated plane", 1e-9, 10.0),
     Figure("pulse_energy", "J", "pulse energy", "of the light of one pulse, at the stated plane", 1e-15),
