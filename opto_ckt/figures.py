@@ -144,7 +144,13 @@ _ALL = (
         "current, or power where it is controlled, over set voltage, loop closed, -3 dB",
         1.0,
     ),
-    Figure("peak_current", "A", "peak current", "largest through the source, of a pulse or in the first instant of a step", 1e-6),
+    Figure(
+        "peak_current",
+        "A",
+        "peak current",
+        "largest through the source, of a pulse or in the first instant of a step",
+        1e-6,
+    ),
     Figure("overdrive", "1", "overdrive", "base drive over what saturates, gate voltage over that of the sheet", 0.5),
     Figure(
         "turn_off_time", "s", "turn-off time", "drive gone to light gone: storage, then sweep-out or 90-10 %", 1e-12
