@@ -22,6 +22,7 @@ CIRCUITS: dict[str, str] = {
     "led-switch": "opto_ckt.circuits.drivers.led_switch",
     "led-linear": "opto_ckt.circuits.drivers.led_linear",
     "laser-current": "opto_ckt.circuits.drivers.laser_current",
+    "laser-pulse": "opto_ckt.circuits.drivers.laser_pulse",
     "laser-power": "opto_ckt.circuits.drivers.laser_power",
 }
 """Name -> module whose ``CIRCUIT`` it is."""
