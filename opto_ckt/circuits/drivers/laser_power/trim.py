@@ -91,7 +91,7 @@ def fit_trimmer(sizing: Sizing[LaserPowerRequest], bench: Bench) -> Range:
     return found
 
 
-def _fit_off_bias(sizing: Sizing, bench: Bench, found: Range) -> None:
+def _fit_off_bias(sizing: Sizing[LaserPowerRequest], bench: Bench, found: Range) -> None:
     """R16 from the reference: with the set level at nothing the integrator sees too much light, its offset in it."""
     voltage = bench.nominal("U2.voltage")
     held = min(OFF * offset_error(sizing.request, bench), 0.2 * voltage)
