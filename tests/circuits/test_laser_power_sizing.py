@@ -63,7 +63,9 @@ def test_the_current_needed_by_hand() -> None:
     """Aged laser, 60 °C, 0.4 mW with 0.5 dB and the drifts on top: the junction by plain iteration."""
     found = model("laser-power")
     bench, data = found.bench(), found.request.source
-    power = 0.4e-3 * 10**0.05 * (1 + 50e-6 * 45 + 100e-6 * 45 + 0.02)
+    reach = needed_range(found.request, bench)
+    setting = 0.002 * 2.2 * (reach.most / reach.least - 1) / 0.9
+    power = 0.4e-3 * 10**0.05 * (1 + 50e-6 * 45 + 100e-6 * 45 + setting)
     assert most_power(found.request, bench) == near(power, rel=1e-9)
     junction = 333.15
     for _ in range(100):
@@ -222,6 +224,25 @@ def test_a_monitor_spread_beyond_one_trimmer_is_refused_with_the_spread_that_is_
 def test_a_drawer_without_a_long_enough_trimmer_is_refused() -> None:
     refused = refusal(("", '[preferred]\ntrimmers = { series = ["1 kΩ", "10 kΩ"] }'))
     assert "no trimmer of [preferred]" in refused.reason
+
+
+@pytest.mark.parametrize(
+    ("fixed", "said"), [('R14 = "6.8 kΩ"', "brightest monitor below"), ('RV1 = "10 kΩ"', "faintest monitor above")]
+)
+def test_fixed_resistors_that_do_not_reach_are_refused(fixed: str, said: str) -> None:
+    assert said in refusal(("", f"[fixed]\n{fixed}")).reason
+
+
+def test_a_monitor_that_does_not_stand_the_supply_is_refused() -> None:
+    refused = refusal(("monitor_reverse_max", 'monitor_reverse_max = "5 V"'))
+    assert "lies across the monitor" in refused.reason
+    assert allowed(refused.remedies, "conditions.supply.positive") == "4.76 V"
+
+
+def test_light_too_faint_for_any_trimmer_names_the_least_that_does() -> None:
+    refused = refusal(("power  ", 'power = "1 µW"'))
+    assert "no trimmer of [preferred]" in refused.reason
+    assert any(remedy.startswith("signal.power ≥ ") for remedy in refused.remedies)
 
 
 def test_a_start_too_short_for_the_data_is_refused() -> None:

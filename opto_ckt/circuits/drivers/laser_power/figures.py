@@ -15,7 +15,7 @@ from opto_ckt.circuits.drivers.laser_power import inner
 from opto_ckt.circuits.drivers.laser_power.monitor import beside
 from opto_ckt.circuits.drivers.pass_transistor import pass_transistor
 from opto_ckt.constants import ROOM_TEMPERATURE
-from opto_ckt.formulas import power_loop
+from opto_ckt.formulas import laser_modulation, power_loop
 from opto_ckt.formulas.reference import divided_voltage
 from opto_ckt.limits import Figures, Lanes, Requirement, Values
 from opto_ckt.request import LaserPowerRequest
@@ -87,7 +87,7 @@ class LaserPowerFigures:
         slope = data.slope_at(ROOM_TEMPERATURE, values["D1.slope_efficiency.room"]) * coupling(values, request)
         return (
             np.asarray(
-                power_loop.modulation_for_extinction(
+                laser_modulation.modulation_for_extinction(
                     power=signal.power.nominal,
                     extinction_ratio=signal.extinction_ratio,
                     mark_density=signal.mark_density,
@@ -104,7 +104,7 @@ class LaserPowerFigures:
         slope, current = self._values["D1.slope_efficiency"], self.modulation_current
         most = (1 - LEAST_ZERO) * power / (density * slope)
         return np.asarray(
-            power_loop.extinction_ratio(
+            laser_modulation.extinction_ratio(
                 power=power, modulation_current=np.minimum(current, most), mark_density=density, slope=slope
             )
         )
@@ -167,7 +167,7 @@ class LaserPowerFigures:
         signal = self._request.signal
         if signal.bit_rate is None:
             return np.full_like(self.current, np.nan)
-        run = power_loop.run_duration(run_length=signal.run_length, bit_rate=signal.bit_rate)
+        run = laser_modulation.run_duration(run_length=signal.run_length, bit_rate=signal.bit_rate)
         crossover = stability.crossover_frequency(self._evaluation)
         return np.asarray(power_loop.loop_droop(bandwidth=crossover, duration=run))
 
