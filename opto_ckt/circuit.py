@@ -114,6 +114,7 @@ class FaultOutcome:
 
     result: str  #: one sentence with the worst figures reached and what limits them
     ok: bool  #: no part beyond its limit
+    light: Lanes | float = 0.0  #: that the source gives, at the plane of its sheet [W]
 
 
 @dataclass(frozen=True)
@@ -146,6 +147,8 @@ class Circuit:
     starter: str  #: values of a design file to start from, as TOML
     refused: Callable[[Any], tuple[Refusal, ...]] = lambda request: ()  #: what it was asked for and does not do
     input_capacitance: Callable[[Any, Bench], Mapping[str, float]] | None = None  #: itemised, of a summing node [F]
+    eye_safety: Callable[[Values, Any, float], tuple[str, ...]] = lambda values, request, fault: ()
+    """Advice on the light of a source, given the greatest that a fault leads to [W]."""
     settled: Callable[[Any, Callable[[Any], Figures]], Any] = lambda request, figures: request
     """The request with what it leaves to be found by trial, given the nominal figures of any request sized."""
 

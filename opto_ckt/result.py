@@ -107,6 +107,7 @@ class FoundFault:
     case: str
     result: str
     ok: bool
+    light: float = 0.0  #: greatest that the source gives, at the plane of its sheet [W]
 
 
 @dataclass(frozen=True)

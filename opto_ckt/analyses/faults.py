@@ -25,5 +25,5 @@ def run_faults(circuit: Circuit, values: Values, request: Any) -> tuple[FoundFau
         overrides = {name: np.broadcast_to(value, (rows, lanes)).ravel() for name, value in fault.overrides.items()}
         biased = circuit.bias({**swept, **overrides}, request)
         outcome = circuit.outcome(fault, {**biased, **overrides}, request)
-        found.append(FoundFault(fault.case, outcome.result, outcome.ok))
+        found.append(FoundFault(fault.case, outcome.result, outcome.ok, float(np.max(outcome.light))))
     return tuple(found)

@@ -14,7 +14,7 @@ from opto_ckt.design.model import Model
 from opto_ckt.design.partslist import too_small
 from opto_ckt.design.reading import ReadDesign
 from opto_ckt.limits import Limit, Limits, Values
-from opto_ckt.result import DesignHead, FoundHeat, FoundNoise, FoundPart
+from opto_ckt.result import DesignHead, FoundFault, FoundHeat, FoundNoise, FoundPart
 from opto_ckt.units import percent, write
 
 NEGLIGIBLE = 1e-4  #: share of the noise power below which a generator is left out
@@ -60,6 +60,7 @@ def cautions(
     parts: Sequence[FoundPart],
     heat: Sequence[FoundHeat],
     choice: Choice,
+    faults: Sequence[FoundFault],
 ) -> tuple[str, ...]:
     """Advice of the circuit, parts too hot or too small, and what the chooser could not do."""
     hot = tuple(
@@ -68,4 +69,6 @@ def cautions(
         if not row.ok
     )
     remarks: Any = model.circuit.remarks(biased, limits, model.request)
-    return (*hot, *too_small(parts, model), *choice.notes, *remarks)
+    worst = max((fault.light for fault in faults), default=0.0)
+    advice = model.circuit.eye_safety(biased, model.request, worst)
+    return (*hot, *too_small(parts, model), *choice.notes, *advice, *remarks)

@@ -78,6 +78,7 @@ def size(read: ReadDesign, circuit: Circuit) -> Result:
     scenes = _scenes(sized, rows, found)
     heat = worst_heat(circuit, biased, request, corners)
     parts = parts_list(sized.model, sized.fitted, sized.choice, sized.derivation, sized.limits, biased)
+    faults = run_faults(circuit, lanes, request)
     return Result(
         head=head(read, circuit),
         topology=model.topology,
@@ -86,10 +87,10 @@ def size(read: ReadDesign, circuit: Circuit) -> Result:
         parts=parts,
         noise=noise_table(model, scenes[0].values),
         heat=heat,
-        faults=run_faults(circuit, lanes, request),
+        faults=faults,
         roundings=_roundings(sized),
         assumed=assumed_spreads(sized.limits),
-        cautions=cautions(model, biased, sized.limits, parts, heat, sized.choice),
+        cautions=cautions(model, biased, sized.limits, parts, heat, sized.choice, faults),
         not_checked=circuit.not_checked,
         derivation=sized.derivation,
         scenes=scenes,

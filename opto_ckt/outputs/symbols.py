@@ -10,16 +10,20 @@ from math import cos, hypot, pi, sin
 from opto_ckt.topology import (
     AnalogSwitch,
     Capacitor,
+    ClosedSwitch,
     Diode,
     Element,
     FixedTia,
     Inductor,
     Jfet,
     LaserDiode,
+    Led,
+    LogicOutput,
     MonitoredLaser,
     OpAmp,
     Photodiode,
     Point,
+    PulseSwitch,
     Reference,
     Supply,
     Switch,
@@ -91,8 +95,8 @@ def symbol(element: Element, touched: frozenset[Point]) -> tuple[Shape, ...]:
 
 
 def drawn(element: Element) -> bool:
-    """Whether an element has a place on the drawing: fitted, and no rail, which is shown by marks."""
-    return element.fitted and not isinstance(element, Supply)
+    """Whether an element has a place on the drawing: fitted, or a stray with two ends; a rail is shown by marks."""
+    return (element.fitted or element.to is not None) and not isinstance(element, Supply)
 
 
 def optional_pins(element: Element) -> frozenset[str]:
@@ -124,7 +128,7 @@ def half_length(element: Element) -> float:
 
 _HALF_LENGTHS: tuple[tuple[type[Element], float], ...] = (
     (Capacitor, 0.08), (AnalogSwitch, 0.4), (Inductor, 0.52), (Diode, 0.18), (Photodiode, 0.18), (LaserDiode, 0.18),
-    (Reference, 0.18),
+    (Led, 0.18), (Reference, 0.18),
 )  # fmt: skip
 
 
@@ -180,8 +184,9 @@ def _(element: Photodiode) -> tuple[Shape, ...]:
     return (_triangle(1), line((0.18, -0.22), (0.18, 0.22)), *light)
 
 
-@outline.register
-def _(element: LaserDiode) -> tuple[Shape, ...]:
+@outline.register(Led)
+@outline.register(LaserDiode)
+def _(element: Element) -> tuple[Shape, ...]:
     light = (*arrow((-0.1, 0.34), (0.12, 0.72)), *arrow((0.16, 0.34), (0.38, 0.72)))
     return (_triangle(1), line((0.18, -0.22), (0.18, 0.22)), *light)
 
@@ -221,6 +226,12 @@ def _(element: OpAmp) -> tuple[Shape, ...]:
         line((0.34, -0.5), (0.54, -0.5)),
         line((0.44, -0.6), (0.44, -0.4)),
     )
+
+
+@outline.register
+def _(element: LogicOutput) -> tuple[Shape, ...]:
+    """A buffer; what drives it is not drawn."""
+    return Shape(((0.5, 0.6), (0.5, -0.6), (1.5, 0)), closed=True), line((0, 0), (0.5, 0)), line((1.5, 0), (2, 0))
 
 
 @outline.register
@@ -280,8 +291,18 @@ def _(element: Jfet) -> tuple[Shape, ...]:
 
 
 @outline.register
+def _(element: PulseSwitch) -> tuple[Shape, ...]:
+    return _field_effect(1)
+
+
+@outline.register
 def _(element: Switch) -> tuple[Shape, ...]:
     return _field_effect(element.polarity)
+
+
+@outline.register
+def _(element: ClosedSwitch) -> tuple[Shape, ...]:
+    return _bipolar(element.polarity) if element.bipolar else _field_effect(element.polarity)
 
 
 @outline.register

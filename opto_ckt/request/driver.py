@@ -8,6 +8,7 @@ from typing import Annotated, ClassVar, Literal
 from pydantic import Field
 
 from opto_ckt.parts.diode import DiodeData
+from opto_ckt.parts.fibre import FibreData
 from opto_ckt.parts.laser import LaserData
 from opto_ckt.parts.opamp import OpAmpData
 from opto_ckt.parts.record import Check, Choice, Finding, Spread, Table, Unit, Whole
@@ -100,16 +101,22 @@ def _within_source(source: LaserData, signal: DriveSignal) -> Iterator[Finding]:
         yield Finding(("signal", "power"), f"{write(signal.power.high, 'W')} is above power_max {limit} of the source")
 
 
-class LaserDriverRequest(Request):
-    """A design file of a laser driver."""
+class LaserRequest(Request):
+    """What every design file of a laser driver has."""
 
     source: LaserData
+    diode: DiodeData | None = None  #: across the source, against reverse voltage
+    fibre: FibreData | None = None  #: that the light leaves by
+    signal: DriveSignal
+    conditions: DriverConditions
+
+
+class LaserDriverRequest(LaserRequest):
+    """A design file of a driver of a steady laser current."""
+
     transistor: Annotated[BipolarData | MosfetData, Field(discriminator="kind")]
     amplifier: OpAmpData
     reference: ReferenceData
-    diode: DiodeData | None = None  #: across the source, against reverse voltage
-    signal: DriveSignal
-    conditions: DriverConditions
 
     checks: ClassVar[tuple[Check, ...]] = (
         Check(("source", "signal", "conditions"), _in_reach),

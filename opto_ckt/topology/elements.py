@@ -205,6 +205,36 @@ class Switch(Element):
     pin_places: ClassVar[Mapping[str, Point]] = {"control": (0, 0), "drain": (1, 1), "source": (1, -1)}
 
 
+@dataclass(frozen=True)
+class PulseSwitch(Element):
+    """A MOSFET that is fully on, by its resistance and capacitances; its gate starts a pulse."""
+
+    drain: str
+    control: str
+    source: str
+    kind: ClassVar[str] = "transistor"
+    pins: ClassVar[tuple[str, ...]] = ("drain", "control", "source")
+    pin_places: ClassVar[Mapping[str, Point]] = {"control": (0, 0), "drain": (1, 1), "source": (1, -1)}
+    figures: ClassVar[tuple[str, ...]] = (
+        "resistance", "input_capacitance", "reverse_capacitance", "output_capacitance",
+    )  # fmt: skip
+    absent: ClassVar[Mapping[str, float]] = {"output_capacitance": 1e-12}
+
+
+class HeldCurrent(TwoTerminal):
+    """What a capacitor gives at the instant at which small signals are looked at, from ``a`` to ``b``; no part."""
+
+    kind: ClassVar[str] = "held current"
+
+
+@dataclass(frozen=True)
+class ClosedSwitch(Switch):
+    """A transistor that is fully on: a resistance, of a bipolar one a drop besides; its control passes no signal."""
+
+    bipolar: bool = False  #: drawn as npn or pnp
+    figures: ClassVar[tuple[str, ...]] = ("on_resistance", "control_capacitance", "control_conductance")
+
+
 class LaserDiode(Junction):
     """A laser diode by its series resistance and capacitance at the bias point."""
 
@@ -229,6 +259,31 @@ class MonitoredLaser(LaserDiode):
     figures: ClassVar[tuple[str, ...]] = (
         "series_resistance", "capacitance", "monitor_gain", "monitor_capacitance", "monitor_shot",
     )  # fmt: skip
+
+
+@dataclass(frozen=True)
+class Led(Junction):
+    """A light-emitting diode at its bias point: junction behind its series resistance, light behind its lifetime.
+
+    The light is the voltage of a node of its own, a volt a watt.
+    """
+
+    light: str = "light"  #: node that carries the light
+    kind: ClassVar[str] = "LED"
+    figures: ClassVar[tuple[str, ...]] = (
+        "series_resistance", "junction_resistance", "capacitance", "lifetime", "slope_efficiency", "current",
+    )  # fmt: skip
+
+
+@dataclass(frozen=True)
+class LogicOutput(Element):
+    """A logic output at one of its levels, behind the resistance that it has there."""
+
+    out: str
+    kind: ClassVar[str] = "logic output"
+    pins: ClassVar[tuple[str, ...]] = ("out",)
+    pin_places: ClassVar[Mapping[str, Point]] = {"out": (2, 0)}
+    figures: ClassVar[tuple[str, ...]] = ("resistance",)
 
 
 @dataclass(frozen=True)

@@ -54,12 +54,15 @@ BY_UNIT = {
     "m": 1e-6,
     "m²": 1e-6,
     "J": 1.8e-19,
+    "C": 2e-9,
     "F/m": 1e-10,
     "1/m³": 5e21,
     "m/s": 1e5,
     "m²/s": 1e-3,
     "1/m": 1e5,
     "1/s": 8e9,
+    "m³/s": 8e-17,
+    "W/m²": 3e5,
     "1/Hz": 1e-15,
     "1/K": -4e-3,
     "1/K²": 1e-4,
@@ -78,12 +81,16 @@ BY_NAME = {  # where an equation holds only for figures that suit one another
     "gain_bandwidth": 1e9,
     "high": 1e7,
     "high_current": 30e-3,
+    "larger_current": 20e-3,
+    "larger_power": 1.8e-3,
     "high_gain": 500.0,
     "junction_limit": 400.0,
     "junction_to_case": 1.0,
     "low": 10.0,
     "low_current": 1e-3,
     "safe": 0.4,
+    "plateau": 0.4,
+    "safe_voltage": 0.4,
     "second_slope": 0.25,
     "second_threshold": 12e-3,
     "stated_current": 20e-3,
@@ -156,8 +163,8 @@ def test_arrays_give_what_numbers_give(function):
 
 @pytest.mark.parametrize("function", FORMULAS, ids=named)
 def test_symbols_give_what_numbers_give(function):
-    """The body is arithmetic, four functions and constants: what is printed is what is computed."""
-    names = {"sqrt": sympy.sqrt, "exp": sympy.exp, "log": sympy.log, "pi": sympy.pi}
+    """The body is arithmetic, five functions and constants: what is printed is what is computed."""
+    names = {"sqrt": sympy.sqrt, "exp": sympy.exp, "log": sympy.log, "arctan": sympy.atan, "pi": sympy.pi}
     used = set(function.__code__.co_names)
     constants = {name: value for name, value in function.__globals__.items() if name.isupper() and name in used}
     assert used <= names.keys() | constants.keys()

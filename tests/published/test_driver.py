@@ -16,6 +16,15 @@ from opto_ckt.formulas.driver_loop import (
     phase_margin,
 )
 from opto_ckt.formulas.reference import soft_start_time
+from opto_ckt.formulas.switching import (
+    gate_network_resistance,
+    generous_speed_up,
+    lean_speed_up,
+    peaked_share,
+    peaking_capacitance,
+    recovery_frequency,
+    settled_frequency,
+)
 from tests.near import near
 from tests.published.printed import printed
 
@@ -102,3 +111,44 @@ def test_soft_start_rule():
     """Common practice: 95 % after three time constants; exactly 2.9957."""
     assert soft_start_time(resistance=1.0, capacitance=1.0, fraction=0.95) == printed("3.0")
     assert soft_start_time(resistance=1.0, capacitance=1.0, fraction=0.95) == printed("2.9957")
+
+
+def test_bell_speed_up_capacitors():
+    """D. A. Bell: Solid State Pulse Circuits, Ex. 4.4 (p. 120), and Electronic Devices and Circuits, Ex. 8.8 (p. 326).
+
+    Two rules for one part, ten times apart.
+    """
+    generous = generous_speed_up(turn_on=70e-9, source_resistance=600.0)
+    assert generous == printed("1.167e-9")
+    assert recovery_frequency(base_resistance=5.6e3, capacitance=generous) == printed("33.3e3")
+    lean = lean_speed_up(turn_on=100e-9, source_resistance=600.0)
+    assert lean == near(166e-12, rel=0.006)  # printed cut, not rounded
+    settled = settled_frequency(source_resistance=600.0, base_resistance=4.7e3, capacitance=160e-12)
+    assert settled == near(235850.0, rel=1e-5)
+
+
+def test_kolimbiris_6_5():
+    """H. Kolimbiris, Fiber Optics Communications, Ex. 6.5 (p. 150): 120 mA from 5 V."""
+    whole = gate_network_resistance(supply=5.0, forward_voltage=2.0, current=120e-3)
+    assert whole == printed("67.67")
+    first = (whole - 32) / 3.2
+    assert first == printed("11.15")
+    half = (first + 10) / 2
+    assert half == printed("10.57")
+    assert half - 10 == printed("0.57")
+    assert 2e-9 / half == printed("189.2e-12")
+
+
+def test_peaking_by_a_sweep():
+    """Derived: 15 Ω and 30 Ω with 5 ns: 166.7 pF, 95.5 MHz, three times the bandwidth and the first current."""
+    bypassed = peaked_share(resistance=45.0, gain=3.0)
+    assert bypassed == near(30.0)
+    capacitance = peaking_capacitance(lifetime=5e-9, bypassed=bypassed)
+    assert capacitance == printed("166.7e-12")
+
+    def response(frequency):
+        s = 2j * np.pi * frequency
+        admittance = 1 / (15.0 + 30.0 / (1 + s * 30.0 * capacitance))
+        return abs(45.0 * admittance / (1 + 5e-9 * s))
+
+    assert brentq(lambda f: response(f) - 0.5**0.5, 1e6, 1e9) == near(95.493e6, rel=1e-5)

@@ -19,6 +19,7 @@ QUICK, FAINT = 1e-3, 1e-5
 
 TOGETHER = 256  #: lanes looked at together
 
+
 def shape(modes: Modes, reference: Array | None = None) -> tuple[Array, Array]:
     """Rise time and overshoot of each lane.
 

@@ -15,8 +15,8 @@ from opto_ckt.circuits.drivers.slack import (
     Sharing,
     current_spread,
     offset_error,
-    resistor_spread,
 )
+from opto_ckt.circuits.drivers.spread import resistor_spread
 from opto_ckt.derivation import Derivation
 from opto_ckt.errors import InfeasibleError
 from opto_ckt.formulas import driver

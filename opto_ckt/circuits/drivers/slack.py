@@ -10,6 +10,7 @@ from opto_ckt.circuit import Bench
 from opto_ckt.circuits.drivers.laser import Most, forward
 from opto_ckt.circuits.drivers.pass_transistor import pass_transistor
 from opto_ckt.circuits.drivers.side import side_of
+from opto_ckt.circuits.drivers.spread import resistor_spread
 from opto_ckt.constants import ROOM_TEMPERATURE
 from opto_ckt.formulas import driver
 from opto_ckt.limits import Limit
@@ -25,13 +26,6 @@ class Slack(NamedTuple):
 
     path: float
     drive: float
-
-
-def resistor_spread(request: LaserDriverRequest) -> float:
-    """Tolerance and temperature of one resistor, relative."""
-    resistors, temperature = request.preferred.resistors, request.conditions.temperature
-    farthest = max(abs(end - ROOM_TEMPERATURE) for end in (temperature.low, temperature.high))
-    return resistors.tolerance + resistors.temperature_coefficient * farthest
 
 
 def current_spread(request: LaserDriverRequest, bench: Bench) -> float:

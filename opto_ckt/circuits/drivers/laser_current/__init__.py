@@ -18,6 +18,7 @@ from __future__ import annotations
 
 from opto_ckt.circuit import Circuit
 from opto_ckt.circuits.drivers import warmth
+from opto_ckt.circuits.drivers.eye_safety import advice
 from opto_ckt.circuits.drivers.laser_current import (
     faults,
     figures,
@@ -56,6 +57,7 @@ CIRCUIT = Circuit(
         "C1",
     ),
     remarks=remarks.remarks,
+    eye_safety=advice,
     noise_frequency=figures.noise_frequency,
     noise_band=figures.noise_band,
     not_checked=(

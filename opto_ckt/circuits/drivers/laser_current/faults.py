@@ -71,7 +71,7 @@ def outcome(fault: Fault, values: Values, request: LaserDriverRequest) -> FaultO
         text += f"; Q1 takes {write(float(np.max(dissipated)), 'W')}, {write(float(np.max(junction)), '°C')} inside"
     if passed:
         text += ": " + "; ".join(passed)
-    return FaultOutcome(text, not passed)
+    return FaultOutcome(text, not passed, power)
 
 
 def _held(fault: Fault, values: Values, worst: int) -> str:

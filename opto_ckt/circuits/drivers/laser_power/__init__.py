@@ -21,6 +21,7 @@ R16 keeps the integrator, and so the laser, off while the level is shorted.
 from __future__ import annotations
 
 from opto_ckt.circuit import Circuit
+from opto_ckt.circuits.drivers.eye_safety import advice
 from opto_ckt.circuits.drivers.laser_power import (
     faults,
     figures,
@@ -59,6 +60,7 @@ CIRCUIT = Circuit(
         "C4",
     ),
     remarks=remarks.remarks,
+    eye_safety=advice,
     noise_frequency=figures.noise_frequency,
     noise_band=figures.noise_band,
     not_checked=(

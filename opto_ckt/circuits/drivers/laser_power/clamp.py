@@ -13,7 +13,8 @@ from opto_ckt.circuits.drivers.laser_power.given import tracking_error
 from opto_ckt.circuits.drivers.laser_power.monitor import sheet_share, wanted_point
 from opto_ckt.circuits.drivers.laser_power.trim import coarseness
 from opto_ckt.circuits.drivers.side import side_of
-from opto_ckt.circuits.drivers.slack import offset_error, resistor_spread
+from opto_ckt.circuits.drivers.slack import offset_error
+from opto_ckt.circuits.drivers.spread import resistor_spread
 from opto_ckt.derivation import Derivation
 from opto_ckt.errors import InfeasibleError
 from opto_ckt.formulas import laser

@@ -78,7 +78,7 @@ def outcome(fault: Fault, values: Values, request: LaserPowerRequest) -> FaultOu
     passed = beyond(current, power, case, junction, request)
     if passed:
         text += ": " + "; ".join(passed)
-    return FaultOutcome(text, not passed)
+    return FaultOutcome(text, not passed, power)
 
 
 def _held(fault: Fault, values: Values, worst: int, request: LaserPowerRequest) -> str:

@@ -8,7 +8,8 @@ from opto_ckt.circuit import Bench
 from opto_ckt.circuits.drivers.fitting import Sizing
 from opto_ckt.circuits.drivers.laser_power.given import SETTING
 from opto_ckt.circuits.drivers.laser_power.monitor import sheet_share
-from opto_ckt.circuits.drivers.slack import offset_error, resistor_spread
+from opto_ckt.circuits.drivers.slack import offset_error
+from opto_ckt.circuits.drivers.spread import resistor_spread
 from opto_ckt.errors import InfeasibleError
 from opto_ckt.formulas import power_loop, reference
 from opto_ckt.preferred import neighbours
@@ -56,14 +57,14 @@ def coarseness(request: LaserPowerRequest, bench: Bench) -> float:
     return min(SETTING * NEXT * track / found.least, COARSEST)
 
 
-def fit_trimmer(sizing: Sizing, bench: Bench) -> Range:
+def fit_trimmer(sizing: Sizing[LaserPowerRequest], bench: Bench) -> Range:
     """R14 and RV1.
 
     Raises
     ------
     InfeasibleError : one trimmer does not reach over the span, or is too coarse at its short end.
     """
-    request: LaserPowerRequest = sizing.request  # type: ignore[assignment]  # its own request, of its own kind
+    request: LaserPowerRequest = sizing.request
     found, spread, track = needed_range(request, bench), resistor_spread(request), request.preferred.trimmers
     fixed = sizing.derivation.compute(
         "R14", power_loop.set_resistance,
@@ -99,7 +100,7 @@ def fit_trimmer(sizing: Sizing, bench: Bench) -> Range:
     return found
 
 
-def _refuse_short(sizing: Sizing, found: Range, spread: float) -> None:
+def _refuse_short(sizing: Sizing[LaserPowerRequest], found: Range, spread: float) -> None:
     """Refuse what the design file fixes where it does not reach over the span.
 
     Raises
@@ -123,7 +124,7 @@ def _refuse_short(sizing: Sizing, found: Range, spread: float) -> None:
         )
 
 
-def _fit_off_bias(sizing: Sizing, bench: Bench, found: Range) -> None:
+def _fit_off_bias(sizing: Sizing[LaserPowerRequest], bench: Bench, found: Range) -> None:
     """R16 from the reference: with the set level at nothing the integrator sees too much light, its offset in it."""
     voltage = bench.nominal("U2.voltage")
     held = min(OFF * offset_error(sizing.request, bench), 0.2 * voltage)
