@@ -114,6 +114,17 @@ def test_the_clamp_lies_between_the_aged_and_the_cold_laser() -> None:
     assert figures["clamp_power"].high <= 5e-3
 
 
+def test_where_the_current_is_the_limit_the_clamp_keeps_below_it() -> None:
+    """A laser that stands more light than it ever gives, but 47 mA: the clamp, 21 % wide, fits."""
+    sturdy = (("power_max {18}=", 'power_max = "60 mW"'), ("current_max {16}=", 'current_max = "47 mA"'))
+    weak = (("power  ", 'power = "0.3 mW"'), ("optical_power", ""))
+    figures = {figure.name: figure for figure in sized("laser-power", *sturdy, *weak).figures}
+    assert figures["clamp_current"].high <= 47e-3
+    assert figures["clamp_margin"].low >= 0.02
+    refused = refusal(*sturdy, ("power  ", 'power = "0.5 mW"'))
+    assert "current_max of the laser" in refused.reason
+
+
 def test_the_integrator_s_window_holds_at_every_corner() -> None:
     result = sized("laser-power", DATA, SLOW, LATE)
     figures = {figure.name: figure for figure in result.figures}

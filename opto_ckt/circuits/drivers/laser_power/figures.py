@@ -110,6 +110,11 @@ class LaserPowerFigures:
         )
 
     @cached_property
+    def clamp_current(self) -> Lanes:
+        """The most that the integrator's swing lets flow. [A]"""
+        return np.asarray(self._values["clamp_current"])
+
+    @cached_property
     def clamp_margin(self) -> Lanes:
         """What the clamp leaves beyond the current needed, aged laser and heat in it. [1]"""
         needed = np.asarray(self._values["needed_current"])
@@ -212,6 +217,7 @@ def implied(request: LaserPowerRequest) -> tuple[Requirement, ...]:
     bounds = [
         Requirement("compliance_margin", "min", 0.0, 0.1),
         Requirement("clamp_margin", "min", 0.0, 0.05),
+        Requirement("clamp_current", "max", data.current_max, data.current_max),
         Requirement("clamp_power", "max", data.power_max, data.power_max),
         Requirement("current", "max", data.current_max, data.current_max),
         Requirement("junction_temperature", "max", junction_limit(request), 10.0),
