@@ -19,7 +19,7 @@ from opto_ckt.topology import SHORT
 from opto_ckt.units import write
 
 READ = frozenset(
-    {"slope_efficiency", "turn_on_voltage", "series_resistance", "capacitance", "junction_to_case", "coupling"}
+    {"slope_efficiency", "turn_on_voltage", "series_resistance", "capacitance", "junction_to_case", "coupling", "rin"}
 )
 """Figures of the laser's sheet that a steady current depends on; the others are held at nominal."""
 
@@ -64,6 +64,9 @@ def laser_limits(request: LaserDriverRequest) -> dict[str, Limit]:
     found["D1.slope_efficiency"] = Limit(slope.nominal, slope.low * (1 + ageing.slope), slope.high, slope.assumed)
     if data.forward is not None:
         found["D1.forward_position"] = Limit(0.0, -1.0, 1.0)
+    air = request.conditions.air
+    if air is not None:
+        found["temperature.air"] = Limit(air.nominal, air.low, air.high)
     return found
 
 
