@@ -101,17 +101,19 @@ def _in_reach(source: LaserData, signal: DriveSignal, conditions: DriverConditio
         )
 
 
-def _within_source(source: LaserData, signal: DriveSignal) -> Iterator[Finding]:
+def _within_source(source: LaserData, signal: DriveSignal, fibre: FibreData | None) -> Iterator[Finding]:
     if signal.current is not None and signal.current.high > source.current_max:
         limit = write(source.current_max, "A")
         yield Finding(
             ("signal", "current"), f"{write(signal.current.high, 'A')} is above current_max {limit} of the source"
         )
     plane = signal.plane or source.plane
-    if plane != source.plane and source.coupling is None:
+    launched = plane == "fibre" and fibre is not None and source.divergence_parallel is not None
+    if plane != source.plane and source.coupling is None and not launched:
+        instead = ", or [fibre] and the divergence of its beam" if plane == "fibre" else ""
         yield Finding(
             ("signal", "plane"),
-            f"the source states its power at the {source.plane}; its coupling is needed for the {plane}",
+            f"the source states its power at the {source.plane}; its coupling is needed for the {plane}{instead}",
         )
     if signal.power is not None and plane == source.plane and signal.power.high > source.power_max:
         limit = write(source.power_max, "W")
@@ -132,6 +134,6 @@ class LaserDriverRequest(Request):
 
     checks: ClassVar[tuple[Check, ...]] = (
         Check(("source", "signal", "conditions"), _in_reach),
-        Check(("source", "signal"), _within_source),
+        Check(("source", "signal", "fibre"), _within_source),
         Check(("amplifier", "conditions"), amplifier_supplied),
     )
