@@ -115,6 +115,7 @@ _ALL = (
         1e-9,
         10.0,
     ),
+    Figure("optical_index", "1", "optical modulation index", "peak over standing light", 0.05),
     Figure(
         "extinction_ratio", "W/W", "extinction ratio", "one level over zero level, as a ratio; 10 log in dB", 1.0, 10.0
     ),
@@ -172,12 +173,27 @@ _ALL = (
         "current, or power where it is controlled, over set voltage, loop closed, -3 dB",
         1.0,
     ),
-    Figure("peak_current", "A", "peak current", "largest through the source, first instant of a step included", 1e-6),
+    Figure(
+        "peak_current",
+        "A",
+        "peak current",
+        "largest through the source, of a pulse or in the first instant of a step",
+        1e-6,
+    ),
     Figure("overdrive", "1", "overdrive", "base drive over what saturates, gate voltage over that of the sheet", 0.5),
     Figure(
         "turn_off_time", "s", "turn-off time", "drive gone to light gone: storage, then sweep-out or 90-10 %", 1e-12
     ),
     Figure("startup_time", "s", "start-up time", "supply or enable there to 95 % of the current", 1e-6),
+    Figure("pulse_width", "s", "pulse width", "of the current, at half of its peak", 1e-12),
+    Figure("peak_power", "W", "peak power", "of the light of a pulse, at the stated plane", 1e-9, 10.0),
+    Figure("pulse_energy", "J", "pulse energy", "of the light of one pulse, at the stated plane", 1e-15),
+    Figure("duty", "1", "duty", "pulse width over the time between pulses", 1e-6),
+    Figure("repetition_limit", "Hz", "repetition limit", "rate with five time constants of charging in a period", 1.0),
+    Figure("stored_energy", "J", "stored energy", "in the storage capacitor before a pulse", 1e-12),
+    Figure("discharge_time", "s", "discharge time", "after power-off, till the capacitors are safe to touch", 1e-3),
+    Figure("turn_on_time", "s", "turn-on time", "in which the gate driver charges the gate of the switch", 1e-12),
+    Figure("reverse_voltage", "V", "reverse voltage", "at the source after a pulse", 0.1),
     Figure("harmonic_2", "dB", "second harmonic", "re the fundamental, electrical: 20 log of the photocurrents", 1.0),
     Figure("harmonic_3", "dB", "third harmonic", "re the fundamental, electrical: 20 log of the photocurrents", 1.0),
     Figure("dissipation", "W", "dissipation", "total taken from the supplies", 1e-3),

@@ -9,7 +9,7 @@ from opto_ckt.cli import options, streams
 
 @click.command("netlist")
 @options.design
-@click.option("--analysis", metavar="NAME", help="Print this deck alone: ac, noise, step or loop.")
+@click.option("--analysis", metavar="NAME", help="Print this deck alone: ac, noise, step, loop or pulse.")
 @options.out("each deck as a file")
 @options.force
 @options.quiet

@@ -17,6 +17,7 @@ from opto_ckt.preferred import (
     CLASS_1_VOLTAGE_FACTOR,
     CLASS_2_VOLTAGE_FACTOR,
     DIELECTRICS,
+    chip_for,
     derated_power,
     voltage_rating_above,
 )
@@ -106,14 +107,11 @@ def _rating(
     """Rating that the part must have, and the smallest size, from the preferred one up, that has it."""
     size = str(getattr(stock, "size", ""))
     if isinstance(element, Resistor):
-        sizes = list(CHIP_RESISTORS)
-        for name in sizes[sizes.index(size) :]:
-            chip = CHIP_RESISTORS[name]
-            share = derated_power(1.0, hottest, chip.knee_temperature, chip.zero_power_temperature)
-            power = HALF_RATING * stress.get("power", 0.0) / max(share, 1e-9)
-            if power <= chip.power and stress.get("voltage", 0.0) <= chip.voltage:
-                return {"power": power, "voltage": stress.get("voltage", 0.0)}, name
-        return {"power": power, "voltage": stress.get("voltage", 0.0)}, "larger than 2512"
+        power, voltage = stress.get("power", 0.0), stress.get("voltage", 0.0)
+        name = chip_for(power, voltage, hottest, size)
+        chip = CHIP_RESISTORS[name or list(CHIP_RESISTORS)[-1]]
+        share = derated_power(1.0, hottest, chip.knee_temperature, chip.zero_power_temperature)
+        return {"power": HALF_RATING * power / max(share, 1e-9), "voltage": voltage}, name or "larger than 2512"
     if isinstance(element, Capacitor):
         factor = CLASS_1_VOLTAGE_FACTOR
         if DIELECTRICS[str(getattr(stock, "dielectric", "C0G"))].class_number == 2:

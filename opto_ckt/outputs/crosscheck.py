@@ -11,7 +11,8 @@ import numpy as np
 from opto_ckt.analyses import noise, response, stability
 from opto_ckt.analyses.network import Evaluation, Network
 from opto_ckt.analyses.network.expansion import expand
-from opto_ckt.outputs.readings import falls_to, integrated, phase_margin_of, rise_time_of, rises_to
+from opto_ckt.outputs.pulse_deck import READ_OUT
+from opto_ckt.outputs.readings import falls_to, integrated, phase_margin_of, pulse_of, rise_time_of, rises_to
 from opto_ckt.outputs.simulators import Vectors, run
 from opto_ckt.outputs.spice import deck_of, is_linear, kinds, levels, output_node, step_height, step_times
 from opto_ckt.result import Result, Scene
@@ -37,6 +38,7 @@ class Bounds:
 
 LINEAR = Bounds(1e-4, 1e-4, 1e-3, 1e-3, 0.05, 5e-3, 1e-2)  #: decks of linear elements
 DEVICES = Bounds(1e-2, 5e-3, 5e-3, 5e-3, 0.05, 5e-3, 1e-2)  #: decks with device models
+PULSE = 1e-2  #: peak and width of a pulse: as rise times
 
 
 @dataclass(frozen=True)
@@ -76,6 +78,7 @@ def crosscheck(result: Result, engine: str) -> list[Row]:
         rows += _noise(result, scene, evaluation, runs["noise"]["noise"], bounds)
         rows += _loop(scene, evaluation, runs["loop"]["ac"], bounds) if "loop" in runs else ()
         rows += _step(result, scene, evaluation, runs["step"]["tran"], bounds)
+        rows += _pulse(scene, runs["pulse"]["tran"]) if "pulse" in runs else ()
     return rows
 
 
@@ -164,6 +167,12 @@ def _step(result: Result, scene: Scene, evaluation: Evaluation, plot: Vectors, b
         height = None if reference is None else reference * step_height(result.topology, scene)
         simulated = rise_time_of(plot["time"], plot[f"v({output_node(result.topology)})"], height)
         yield _share(scene, "rise time", predicted, simulated, "s", bounds.rise_time)
+
+
+def _pulse(scene: Scene, plot: Vectors) -> Iterator[Row]:
+    found, expected = pulse_of(plot["time"], plot[f"v({READ_OUT})"]), scene.expected
+    yield _share(scene, "peak of the pulse", expected["peak_current"], found.peak, "A", PULSE)
+    yield _share(scene, "width of the pulse", expected["pulse_width"], found.width, "s", PULSE)
 
 
 def _share(scene: Scene, quantity: str, predicted: float, simulated: float, unit: str, bound: float) -> Row:

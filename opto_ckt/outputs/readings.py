@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from typing import Any
+from typing import Any, NamedTuple
 
 import numpy as np
 from numpy.typing import NDArray
@@ -56,6 +56,30 @@ def rise_time_of(time: Curve, answer: Curve, height: float | None = None) -> flo
     far = answer[np.argmax(np.abs(answer - answer[0]))] - answer[0]
     share = (answer - answer[0]) / (answer[-1] - answer[0] if height is None else np.copysign(height, far))
     return _first_time(time, share, 0.9) - _first_time(time, share, 0.1)
+
+
+class Pulse(NamedTuple):
+    """What is read off one pulse."""
+
+    peak: float  #: in the unit of the answer
+    width: float  #: at half of the peak [s]
+    rise_time: float  #: 10-90 % of the peak [s]
+
+
+def pulse_of(time: Curve, answer: Curve) -> Pulse:
+    """The first pulse of an answer that rests at zero; its peak by a parabola through the highest points."""
+    top = int(np.argmax(answer))
+    curve = np.polyfit(time[top - 2 : top + 3] - time[top], answer[top - 2 : top + 3], 2)
+    peak = float(curve[2] - curve[1] ** 2 / (4 * curve[0]))
+    rising = {share: _last_rise(time[: top + 1], answer[: top + 1] / peak, share) for share in (0.1, 0.5, 0.9)}
+    after = answer[top:] / peak
+    falling = float(_crossing(time[top:], after, 0.5, int(np.argmax(after < 0.5)) - 1))
+    return Pulse(peak, falling - rising[0.5], rising[0.9] - rising[0.1])
+
+
+def _last_rise(time: Curve, share: Curve, level: float) -> float:
+    """When a curve that ends above a level last rises through it."""
+    return float(_crossing(time, share, level, int(np.flatnonzero(share < level)[-1])))
 
 
 def _first_time(time: Curve, share: Curve, level: float) -> float:

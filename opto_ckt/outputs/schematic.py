@@ -11,7 +11,7 @@ from xml.etree import ElementTree
 from opto_ckt.outputs.lettering import ASCENT, SIZE, Frame, text_width
 from opto_ckt.outputs.sheet import Labels, Sheet, lay_out
 from opto_ckt.result import FoundPart, Result
-from opto_ckt.topology import Supply, Topology
+from opto_ckt.topology import Inductor, Supply, Topology
 from opto_ckt.units import write
 
 GRID = 36.0  #: one step of the grid [pt]
@@ -29,6 +29,8 @@ def schematic(result: Result) -> str:
     labels = {part.ref: _part_lines(part) for part in result.parts}
     values = result.scenes[0].values if result.scenes else {}
     for element in result.topology:
+        if isinstance(element, Inductor) and not element.fitted and element.ref in values:
+            labels[element.ref] = (element.ref, write(values[element.ref], "H", 6, trim=True))
         if isinstance(element, Supply) and element.value in values:
             labels[element.node] = (element.node, write(values[element.value], "V", 6, trim=True))
     revision = f", rev {head.revision}" if head.revision else ""

@@ -9,10 +9,20 @@ import numpy as np
 
 from opto_ckt.constants import ZERO_CELSIUS
 from opto_ckt.outputs.linear_deck import loop_deck
+from opto_ckt.outputs.pulse_deck import READ_OUT, pulse_deck
 from opto_ckt.outputs.spice_models import cards
-from opto_ckt.outputs.spice_text import LONGEST, card, comment, deck, number, title
+from opto_ckt.outputs.spice_text import card, comment, deck, fitting, number, title
 from opto_ckt.result import DesignHead, Result, Scene
-from opto_ckt.topology import GROUND, LaserDiode, Led, MonitoredLaser, Photodiode, Topology, Transistor
+from opto_ckt.topology import (
+    GROUND,
+    LaserDiode,
+    Led,
+    MonitoredLaser,
+    Photodiode,
+    PulseSwitch,
+    Topology,
+    Transistor,
+)
 from opto_ckt.units import write
 
 POINTS_AC = 50  #: a decade
@@ -31,14 +41,18 @@ def decks(result: Result) -> dict[str, str]:
 
 
 def kinds(topology: Topology) -> tuple[str, ...]:
-    """Which decks there are; no loop deck of a circuit without a loop of its own."""
-    return ("ac", "noise", "step", "loop") if topology.loop else ("ac", "noise", "step")
+    """Which decks there are: a loop deck of a circuit with a loop of its own, a pulse deck of one that gives pulses."""
+    more = {"loop": topology.loop, "pulse": topology.trigger}
+    return ("ac", "noise", "step", *(kind for kind, there in more.items() if there))
 
 
 def deck_of(result: Result, scene: Scene, kind: str) -> str:
-    """One deck: ``ac`` (operating point and frequency response), ``noise``, ``step`` or ``loop``."""
+    """One deck: ``ac`` (operating point and frequency response), ``noise``, ``step``, ``loop`` or ``pulse``."""
     if kind == "loop":
         return loop_deck(result, scene, head(result.head, scene, kind) + _expected(result, scene, kind), ac_span(scene))
+    if kind == "pulse":
+        lines = head(result.head, scene, kind) + _expected(result, scene, kind)
+        return pulse_deck(result, scene, lines, _temperature(scene))
     circuit = _circuit(result.topology, scene.values, _pulse(result.topology, scene) if kind == "step" else "")
     observed = output_node(result.topology)
     analysis = {
@@ -64,7 +78,7 @@ def head(design: DesignHead, scene: Scene, kind: str) -> list[str]:
 
 def is_linear(topology: Topology) -> bool:
     """Whether no element is modelled by its large-signal law."""
-    return not any(isinstance(element, Transistor | LaserDiode | Led) for element in topology)
+    return not any(isinstance(element, Transistor | LaserDiode | Led | PulseSwitch) for element in topology)
 
 
 def source(topology: Topology) -> str:
@@ -85,7 +99,8 @@ def output_node(topology: Topology) -> str:
 
 def ac_span(scene: Scene) -> tuple[float, float]:
     """Whole decades from far below to far beyond the bandwidth."""
-    middle = scene.expected.get("bandwidth") or scene.expected.get("loop_bandwidth") or 1e6
+    widths = [1 / (3 * width) for width in (scene.expected.get("pulse_width"),) if width]
+    middle = scene.expected.get("bandwidth") or scene.expected.get("loop_bandwidth") or next(iter(widths), 1e6)
     decade = floor(log10(middle)) if np.isfinite(middle) and middle > 0 else 6
     low = scene.expected.get("low_cutoff", np.nan)
     first = floor(log10(low)) - 1 if np.isfinite(low) and low > 0 else decade
@@ -117,8 +132,7 @@ def _circuit(topology: Topology, values: Mapping[str, float], pulse: str) -> str
     if negative != GROUND:
         text += comment("read-out of the answer against ground")
         text += card("eobs", "obs 0", positive, negative, "1") + card("robs", "obs 0", "1e6")
-    driven = text.replace(" @pulse@", f" {pulse}" if pulse else "")
-    return "".join(line if len(line) <= LONGEST else card(*line.split()) for line in driven.splitlines(keepends=True))
+    return fitting(text.replace(" @pulse@", f" {pulse}" if pulse else ""))
 
 
 def _pulse(topology: Topology, scene: Scene) -> str:
@@ -177,7 +191,7 @@ def _expected(result: Result, scene: Scene, kind: str) -> list[str]:
         ],
         "step": [
             comment(f"step of {number(100 * step_share(result.topology))} per cent; answer: v({node})"),
-            figure("rise_time", "rise time, 10-90 per cent"),
+            "" if result.topology.trigger else figure("rise_time", "rise time, 10-90 per cent"),
             figure("overshoot", "overshoot, as a share of the step"),
         ],
         "loop": [
@@ -186,6 +200,13 @@ def _expected(result: Result, scene: Scene, kind: str) -> list[str]:
             figure("phase_margin", "phase margin where |v(ret)| = 1"),
         ],
     }
+    if kind == "pulse":
+        return [
+            comment(f"answer: v({READ_OUT}), the current in amperes as volts, from the rise of the trigger on"),
+            figure("peak_current", "peak"),
+            figure("pulse_width", "width at half of it"),
+            figure("rise_time", "rise time, 10-90 per cent of it"),
+        ]
     at_rest = [comment(f"expect v({node}) at rest: {write(v, 'V', digits=5)}") for node, v in levels(scene, kind)]
     return [*lines[kind], *at_rest]
 

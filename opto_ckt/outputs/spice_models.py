@@ -2,10 +2,10 @@
 
 from __future__ import annotations
 
-from opto_ckt.outputs import spice_amplifiers, spice_optics, spice_simple
+from opto_ckt.outputs import spice_amplifiers, spice_optics, spice_pulse, spice_simple
 from opto_ckt.outputs.spice_cards import cards
 
 __all__ = ["MODELS", "cards"]
 
-MODELS = (spice_amplifiers, spice_optics, spice_simple)
+MODELS = (spice_amplifiers, spice_optics, spice_pulse, spice_simple)
 """Each registers the elements that it knows with `cards`."""

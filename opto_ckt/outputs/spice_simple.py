@@ -106,7 +106,7 @@ def _(element: LogicOutput, values: Values, driven: bool) -> Cards:
     body = (
         comment("pins: out; the output at rest in one state; put the maker's model here")
         + card(".subckt", ref, "o")
-        + card("ve", "e 0 dc", number(values[f"{element.ref}.level"]))
+        + card("ve", "e 0 dc", number(values[f"{element.ref}.level"]) + (" @pulse@" if driven else ""))
         + card("gro", "e o e o", number(1 / v["resistance"]))
         + card(".ends", ref)
     )

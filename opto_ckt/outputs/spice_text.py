@@ -74,6 +74,11 @@ def card(head: str, *fields: str) -> str:
     return "\n".join([*lines, current]) + "\n"
 
 
+def fitting(cards: str) -> str:
+    """Cards with every line that is too long continued on the next."""
+    return "".join(line if len(line) <= LONGEST else card(*line.split()) for line in cards.splitlines(keepends=True))
+
+
 def title(*parts: str) -> str:
     """First line of a deck: never blank, never a card."""
     text = plain(" ".join(part for part in parts if part.strip())).lower()[:LONGEST].strip()

@@ -23,6 +23,7 @@ from opto_ckt.topology import (
     OpAmp,
     Photodiode,
     Point,
+    PulseSwitch,
     Reference,
     Supply,
     Switch,
@@ -94,8 +95,8 @@ def symbol(element: Element, touched: frozenset[Point]) -> tuple[Shape, ...]:
 
 
 def drawn(element: Element) -> bool:
-    """Whether an element has a place on the drawing: fitted, and no rail, which is shown by marks."""
-    return element.fitted and not isinstance(element, Supply)
+    """Whether an element has a place on the drawing: fitted, or a stray with two ends; a rail is shown by marks."""
+    return (element.fitted or element.to is not None) and not isinstance(element, Supply)
 
 
 def optional_pins(element: Element) -> frozenset[str]:
@@ -287,6 +288,11 @@ def _(element: Jfet) -> tuple[Shape, ...]:
         line((0.54, -0.26), (1, -0.26), (1, -1)),
         *arrow(*tips, size=0.18),
     )
+
+
+@outline.register
+def _(element: PulseSwitch) -> tuple[Shape, ...]:
+    return _field_effect(1)
 
 
 @outline.register

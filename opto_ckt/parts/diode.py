@@ -25,6 +25,7 @@ class DiodeData(Record):
     ] = None
     capacitance: Annotated[Spread, Unit("F", "10 pF"), Assumed(0.2, 0.2), Sheet("diode capacitance, Cd, CT")]
     current_max: Annotated[float | None, Unit("A", "200 mA"), Sheet("absolute maximum forward current, IF")] = None
+    pulse_current_max: Annotated[float | None, Unit("A", "2 A"), Sheet("peak forward current, IFRM, IFSM")] = None
 
     def forward_voltage_at(self, current: Real, temperature: Real = ROOM_TEMPERATURE, position: Real = 0.0) -> Any:
         """Forward voltage [V] at a current [A] and junction temperature [K]; `position` -1 (least) … 1 (greatest)."""

@@ -92,6 +92,11 @@ class LaserData(Record):
     lifetime: Annotated[Spread | None, Unit("s", "2 ns"), Sheet("carrier lifetime, τ")] = None
     rin: Annotated[Spread | None, Unit("dB/Hz", "-140 dB/Hz", "any"), Sheet("relative intensity noise, RIN")] = None
     current_max: Annotated[float, Unit("A", "60 mA"), Sheet("absolute maximum forward current")]
+    pulse_current_max: Annotated[
+        float | None, Unit("A", "40 A"), Sheet("absolute maximum pulsed forward current, peak")
+    ] = None
+    pulse_width_max: Annotated[float | None, Unit("s", "100 ns"), Sheet("pulse width, most, of that current")] = None
+    duty_max: Annotated[float | None, Unit("1", "0.1 %"), Sheet("duty factor, most")] = None
     power_max: Annotated[float, Unit("W", "5 mW"), Sheet("absolute maximum optical output power")]
     reverse_voltage_max: Annotated[float, Unit("V", "2 V"), Sheet("absolute maximum reverse voltage of the laser")]
     junction_to_case: Annotated[Spread, Unit("K/W", "60 K/W"), Sheet("thermal resistance, junction to case")]

@@ -68,6 +68,8 @@ class MosfetData(TransistorData):
     ] = None
     gate_charge: Annotated[Spread, Unit("C", "1 nC"), Assumed(0.3, 0.3), Sheet("total gate charge, Qg")]
     gate_voltage_max: Annotated[float, Unit("V", "20 V"), Sheet("absolute maximum gate-source voltage")]
+    pulse_current_max: Annotated[float | None, Unit("A", "10 A"), Sheet("pulsed drain current, most, IDM")] = None
+    inductance: Annotated[Spread | None, Unit("H", "1 nH"), Sheet("package inductance, drain to source")] = None
 
 
 class JfetData(TransistorData):

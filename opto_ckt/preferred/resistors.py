@@ -96,6 +96,23 @@ def power_rating_above(stress: float, factor: float = 2.0) -> float | None:
     return next((rating for rating in POWER_RATINGS if rating >= factor * stress * (1 - 1e-12)), None)
 
 
+def chip_for(power: float, voltage: float, ambient: float, smallest: str) -> str | None:
+    """The smallest size, from a given one up, loaded to half of what it bears at an ambient; None where none does.
+
+    Power in W, voltage in V, temperature in K; loading to half of the rating is common practice.
+
+    >>> chip_for(0.06, 75.0, 298.15, "0603"), chip_for(0.06, 75.0, 358.15, "0603"), chip_for(3.0, 5.0, 298.15, "0603")
+    ('1206', '1210', None)
+    """
+    sizes = list(CHIP_RESISTORS)
+    for name in sizes[sizes.index(smallest) :]:
+        chip = CHIP_RESISTORS[name]
+        borne = derated_power(chip.power, ambient, chip.knee_temperature, chip.zero_power_temperature)
+        if 2 * power <= borne and voltage <= chip.voltage:
+            return name
+    return None
+
+
 def excess_noise_index(resistance: float) -> float | None:
     """Largest 1/f noise of a thick-film chip, in dB above 1 µV per volt and frequency decade. [Ω] -> [dB]
 

@@ -8,9 +8,11 @@ from typing import TYPE_CHECKING, Any
 from opto_ckt.request.request import Request
 
 if TYPE_CHECKING:
-    from opto_ckt.request.driver import LaserDriverRequest
+    from opto_ckt.request.driver import LaserDriverRequest, LaserRequest
     from opto_ckt.request.laser_power import LaserPowerRequest
+    from opto_ckt.request.laser_pulse import LaserPulseRequest
     from opto_ckt.request.led import LedDriverRequest
+    from opto_ckt.request.led_linear import LedLinearRequest
     from opto_ckt.request.led_switch import LedSwitchRequest
     from opto_ckt.request.receiver import (
         BootstrapRequest,
@@ -30,7 +32,10 @@ __all__ = [
     "FixedTiaRequest",
     "LaserDriverRequest",
     "LaserPowerRequest",
+    "LaserPulseRequest",
+    "LaserRequest",
     "LedDriverRequest",
+    "LedLinearRequest",
     "LedSwitchRequest",
     "LoadResistorRequest",
     "OpAmpReceiverRequest",
@@ -50,7 +55,10 @@ LOADED_ON_USE = {
     "SwitchedRequest": "receiver",
     "LaserDriverRequest": "driver",
     "LaserPowerRequest": "laser_power",
+    "LaserPulseRequest": "laser_pulse",
+    "LaserRequest": "driver",
     "LedDriverRequest": "led",
+    "LedLinearRequest": "led_linear",
     "LedSwitchRequest": "led_switch",
 }
 

@@ -120,17 +120,22 @@ def _within_source(source: LaserData, signal: DriveSignal, fibre: FibreData | No
         yield Finding(("signal", "power"), f"{write(signal.power.high, 'W')} is above power_max {limit} of the source")
 
 
-class LaserDriverRequest(Request):
-    """A design file of a laser driver."""
+class LaserRequest(Request):
+    """What every design file of a laser driver has."""
 
     source: LaserData
-    transistor: Annotated[BipolarData | MosfetData, Field(discriminator="kind")]
-    amplifier: OpAmpData
-    reference: ReferenceData
     diode: DiodeData | None = None  #: across the source, against reverse voltage
     fibre: FibreData | None = None  #: that the light leaves by
     signal: DriveSignal
     conditions: LaserConditions
+
+
+class LaserDriverRequest(LaserRequest):
+    """A design file of a driver of a steady laser current."""
+
+    transistor: Annotated[BipolarData | MosfetData, Field(discriminator="kind")]
+    amplifier: OpAmpData
+    reference: ReferenceData
 
     checks: ClassVar[tuple[Check, ...]] = (
         Check(("source", "signal", "conditions"), _in_reach),

@@ -19,7 +19,7 @@ class Placed:
     """What every element carries beside its nodes."""
 
     role: str = ""  #: what it is there for, in a word or two
-    fitted: bool = True  #: False: a property of board or part, drawn in no schematic and on no bill of materials
+    fitted: bool = True  #: False: a property of board or part, on no bill of materials, drawn where it has two ends
     table: str = ""  #: table of the design file that holds its data sheet
     stock: str = ""  #: what it is chosen from: a key of the design file's [preferred]; by class where empty
     at: Point = (0, 0)

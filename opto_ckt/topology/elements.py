@@ -206,6 +206,28 @@ class Switch(Element):
 
 
 @dataclass(frozen=True)
+class PulseSwitch(Element):
+    """A MOSFET that is fully on, by its resistance and capacitances; its gate starts a pulse."""
+
+    drain: str
+    control: str
+    source: str
+    kind: ClassVar[str] = "transistor"
+    pins: ClassVar[tuple[str, ...]] = ("drain", "control", "source")
+    pin_places: ClassVar[Mapping[str, Point]] = {"control": (0, 0), "drain": (1, 1), "source": (1, -1)}
+    figures: ClassVar[tuple[str, ...]] = (
+        "resistance", "input_capacitance", "reverse_capacitance", "output_capacitance",
+    )  # fmt: skip
+    absent: ClassVar[Mapping[str, float]] = {"output_capacitance": 1e-12}
+
+
+class HeldCurrent(TwoTerminal):
+    """What a capacitor gives at the instant at which small signals are looked at, from ``a`` to ``b``; no part."""
+
+    kind: ClassVar[str] = "held current"
+
+
+@dataclass(frozen=True)
 class ClosedSwitch(Switch):
     """A transistor that is fully on: a resistance, of a bipolar one a drop besides; its control passes no signal."""
 

@@ -18,6 +18,7 @@ class Topology:
     input: str  #: element that the signal enters through
     output: tuple[str, str]  #: nodes between which the answer is taken
     loop: str = ""  #: op amp, transistor or monitored laser at which the loop is opened
+    trigger: str = ""  #: logic output that starts a pulse of the current through the input
     rival: str = ""  #: another element that a signal may enter through, to compare its answer with
     wires: tuple[tuple[Point, Point], ...] = ()  #: straight lines of the drawing
     marks: tuple[tuple[Point, str], ...] = ()  #: points that carry a node's symbol: ground, rail or name

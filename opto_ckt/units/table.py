@@ -119,6 +119,7 @@ UNITS: Mapping[str, Unit] = {
     "1/K": Unit("1/K", "100 ppm/K", _over(PER, KELVINS), (Step("ppm/K", -6, 0.0), Step("%/K", -2, 1e-3))),
     "1/K²": Unit("1/K²", "80 ppm/K²", _over(PER, KELVINS_SQUARED), (Step("ppm/K²", -6, 0.0), Step("%/K²", -2, 1e-3))),
     "C": Unit("C", "2 nC", _simple("C", of="fpnuµm"), engineering("C", largest="")),
+    "J": Unit("J", "20 µJ", _simple("J"), engineering("J")),
     "bit/s": Unit("bit/s", "10 Mbit/s", _simple("bit/s", "b/s", "bps", of="kMGT"), engineering("bit/s", "")),
     "V/V": Unit("1", "10 V/V or 20 dB", _gains, single("V/V"), bare=True, curves={"dB": _amplitude_ratio}),
     "W/W": Unit("1", "10 or 10 dB", _power_ratios, single(""), bare=True, curves={"dB": _power_ratio}),

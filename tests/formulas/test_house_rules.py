@@ -57,6 +57,7 @@ BY_UNIT = {
     "m/K": 4e-10,
     "V²/Hz": 1e-16,
     "J": 1.8e-19,
+    "C": 2e-9,
     "F/m": 1e-10,
     "1/m³": 5e21,
     "m/s": 1e5,
@@ -91,6 +92,8 @@ BY_NAME = {  # where an equation holds only for figures that suit one another
     "low": 10.0,
     "low_current": 1e-3,
     "safe": 0.4,
+    "plateau": 0.4,
+    "safe_voltage": 0.4,
     "second_slope": 0.25,
     "second_threshold": 12e-3,
     "stated_current": 20e-3,
@@ -163,8 +166,8 @@ def test_arrays_give_what_numbers_give(function):
 
 @pytest.mark.parametrize("function", FORMULAS, ids=named)
 def test_symbols_give_what_numbers_give(function):
-    """The body is arithmetic, four functions and constants: what is printed is what is computed."""
-    names = {"sqrt": sympy.sqrt, "exp": sympy.exp, "log": sympy.log, "pi": sympy.pi}
+    """The body is arithmetic, five functions and constants: what is printed is what is computed."""
+    names = {"sqrt": sympy.sqrt, "exp": sympy.exp, "log": sympy.log, "arctan": sympy.atan, "pi": sympy.pi}
     used = set(function.__code__.co_names)
     constants = {name: value for name, value in function.__globals__.items() if name.isupper() and name in used}
     assert used <= names.keys() | constants.keys()

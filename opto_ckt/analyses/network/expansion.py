@@ -2,12 +2,12 @@
 
 from __future__ import annotations
 
-from opto_ckt.analyses.network import amplifier_models, optical_models, simple_models
+from opto_ckt.analyses.network import amplifier_models, optical_models, pulse_models, simple_models
 from opto_ckt.analyses.network.element_model import model_of, signal_of
 from opto_ckt.analyses.network.primitives import Expansion, NoiseGenerator, Primitive
 from opto_ckt.topology import GROUND, Element, MonitoredLaser, Supply, Topology, Transistor, renamed
 
-MODELS = (amplifier_models, optical_models, simple_models)
+MODELS = (amplifier_models, optical_models, pulse_models, simple_models)
 """Each registers the elements that it knows with `model_of`."""
 
 

@@ -9,7 +9,7 @@ from typing import Any
 
 import sympy
 
-REBOUND = {"sqrt": sympy.sqrt, "log": sympy.log, "exp": sympy.exp, "pi": sympy.pi}
+REBOUND = {"sqrt": sympy.sqrt, "log": sympy.log, "exp": sympy.exp, "arctan": sympy.atan, "pi": sympy.pi}
 
 CONSTANTS = {
     "ELEMENTARY_CHARGE": sympy.Symbol("q", positive=True),

@@ -21,7 +21,7 @@ from opto_ckt.formulas.eye_safety import (
 )
 from opto_ckt.limits import Values
 from opto_ckt.parts.fibre import FibreData
-from opto_ckt.request import LaserDriverRequest
+from opto_ckt.request import LaserRequest
 from opto_ckt.units import percent, write
 
 STANDARD = "IEC 60825-1"
@@ -35,7 +35,7 @@ class Seen(NamedTuple):
     assumed: str
 
 
-def advice(values: Values, request: LaserDriverRequest, fault: float) -> tuple[str, ...]:
+def advice(values: Values, request: LaserRequest, fault: float) -> tuple[str, ...]:
     """What may reach an eye in normal running and in the worst fault, beside the limit of Class 1.
 
     Parameters
@@ -60,7 +60,7 @@ def advice(values: Values, request: LaserDriverRequest, fault: float) -> tuple[s
     )
 
 
-def _carried(request: LaserDriverRequest) -> float:
+def _carried(request: LaserRequest) -> float:
     """Power where the light leaves the equipment over that at the plane of the sheet; from a facet all of it. [1]"""
     ends_in_fibre = request.fibre is not None or request.signal.plane == "fibre"
     if request.source.plane == "fibre" or not ends_in_fibre:
@@ -71,7 +71,7 @@ def _carried(request: LaserDriverRequest) -> float:
     return 1.0 if launched is None else launched.high
 
 
-def _seen(request: LaserDriverRequest, wavelength: float) -> Seen:
+def _seen(request: LaserRequest, wavelength: float) -> Seen:
     """Share of the light that enters the aperture of the standard behind a magnifier; all of it without [fibre]."""
     fibre = request.fibre
     if fibre is None:

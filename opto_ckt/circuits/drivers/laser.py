@@ -15,7 +15,7 @@ from opto_ckt.formulas.laser_heating import OperatingPoint, settle_at_current, s
 from opto_ckt.limits import Lanes, Limit, Values
 from opto_ckt.parts.laser import LaserData
 from opto_ckt.parts.record import facts
-from opto_ckt.request import LaserDriverRequest
+from opto_ckt.request import LaserDriverRequest, LaserRequest
 from opto_ckt.topology import SHORT
 from opto_ckt.units import write
 
@@ -41,7 +41,7 @@ class Forward(NamedTuple):
         return laser.forward_voltage(turn_on_voltage=self.turn_on, current=current, series_resistance=self.resistance)
 
 
-def laser_limits(request: LaserDriverRequest) -> dict[str, Limit]:
+def laser_limits(request: LaserRequest) -> dict[str, Limit]:
     """Limits of what the sheet states as a curve, ageing in them; the rest held still."""
     data, ageing = request.source, request.conditions.ageing
     found = {
@@ -74,7 +74,7 @@ def laser_limits(request: LaserDriverRequest) -> dict[str, Limit]:
     return found
 
 
-def forward(values: Values, request: LaserDriverRequest, current: Real) -> Forward:
+def forward(values: Values, request: LaserRequest, current: Real) -> Forward:
     """Straight line through the laser's voltage at a current: its own law, or the tangent of listed points."""
     data = request.source
     if data.forward is None:
@@ -86,7 +86,7 @@ def forward(values: Values, request: LaserDriverRequest, current: Real) -> Forwa
     return Forward(at - current * resistance, resistance)
 
 
-def coupling(values: Values, request: LaserDriverRequest) -> Real:
+def coupling(values: Values, request: LaserRequest) -> Real:
     """Power at the plane asked for over power at the plane of the sheet. [1]"""
     plane = request.signal.plane or request.source.plane
     if plane == request.source.plane:
@@ -95,13 +95,13 @@ def coupling(values: Values, request: LaserDriverRequest) -> Real:
     return share if plane == "fibre" else 1 / share
 
 
-def thermal_resistance(values: Values, request: LaserDriverRequest) -> Real:
+def thermal_resistance(values: Values, request: LaserRequest) -> Real:
     """Junction to the place that the temperature of the design is of. [K/W]"""
     sink = request.conditions.sink_resistance if request.conditions.temperature_of == "air" else 0.0
     return values["D1.junction_to_case"] + sink
 
 
-def settle(values: Values, request: LaserDriverRequest, current: Real) -> OperatingPoint:
+def settle(values: Values, request: LaserRequest, current: Real) -> OperatingPoint:
     """Where the laser settles at a current; the power is that at the plane of its sheet."""
     data = request.source
     line = forward(values, request, current)
@@ -116,7 +116,7 @@ def settle(values: Values, request: LaserDriverRequest, current: Real) -> Operat
     )
 
 
-def lasing(values: Values, request: LaserDriverRequest, current: Real) -> dict[str, float | Lanes]:
+def lasing(values: Values, request: LaserRequest, current: Real) -> dict[str, float | Lanes]:
     """What the laser is at a current: voltage, light, junction; threshold and slope at that junction."""
     data = request.source
     line, point = forward(values, request, current), settle(values, request, current)
@@ -219,14 +219,14 @@ def safe_current(request: LaserDriverRequest, bench: Bench, derivation: Derivati
     return Most(min(current, data.current_max), reason, by_power=True)
 
 
-def junction_limit(request: LaserDriverRequest) -> float:
+def junction_limit(request: LaserRequest) -> float:
     """Junction of a laser at its hottest case and largest current: beyond it the sheet says nothing. [K]"""
     data = request.source
     heat = data.current_max * float(data.forward_voltage_at(data.current_max))
     return data.case_max + data.junction_to_case.high * heat
 
 
-def safety(request: LaserDriverRequest, brightest: float) -> tuple[str, ...]:
+def safety(request: LaserRequest, brightest: float) -> tuple[str, ...]:
     """Cautions to people and to the laser; advisory, local rules and a competent person come first."""
     wavelength = request.source.wavelength.nominal
     where = "fibre" if (request.signal.plane or request.source.plane) == "fibre" else "beam"
@@ -239,6 +239,6 @@ def safety(request: LaserDriverRequest, brightest: float) -> tuple[str, ...]:
     )
 
 
-def over_temperature(request: LaserDriverRequest) -> float:
+def over_temperature(request: LaserRequest) -> float:
     """A temperature 25 K beyond the hottest asked for. [K]"""
     return request.conditions.temperature.high + 25.0
