@@ -133,6 +133,34 @@ _ALL = (
         0.5,
     ),
     Figure(
+        "runaway_margin",
+        "K",
+        "runaway margin",
+        "rise of the surroundings till no current holds the light there is; looked for to 300 °C inside",
+        10.0,
+    ),
+    Figure("wavelength_shift", "m", "wavelength shift", "of the light, from that at a junction of 25 °C", 1e-10),
+    Figure(
+        "cooler_load", "W", "cooler load", "heat to move out of the laser's case, negative where it is warmed", 1e-3
+    ),
+    Figure(
+        "driver_intensity_noise",
+        "dB/Hz",
+        "driver intensity noise",
+        "of the light by the noise of the current, at noise_frequency, re the average, 10 log",
+        1.0,
+    ),
+    Figure(
+        "laser_intensity_noise", "dB/Hz", "laser intensity noise", "as the laser's sheet states it, re the average", 1.0
+    ),
+    Figure(
+        "shot_intensity_noise",
+        "dB/Hz",
+        "shot intensity noise",
+        "what an ideal detector sees of all the light at the plane: 2hν/P, 10 log",
+        1.0,
+    ),
+    Figure(
         "inner_phase_margin",
         "°",
         "inner phase margin",
