@@ -115,6 +115,7 @@ _ALL = (
         1e-9,
         10.0,
     ),
+    Figure("optical_index", "1", "optical modulation index", "peak over standing light", 0.05),
     Figure(
         "extinction_ratio", "W/W", "extinction ratio", "one level over zero level, as a ratio; 10 log in dB", 1.0, 10.0
     ),

@@ -20,6 +20,7 @@ CIRCUITS: dict[str, str] = {
     "tia-fixed": "opto_ckt.circuits.receivers.tia_fixed",
     "led-resistor": "opto_ckt.circuits.drivers.led_resistor",
     "led-switch": "opto_ckt.circuits.drivers.led_switch",
+    "led-linear": "opto_ckt.circuits.drivers.led_linear",
     "laser-current": "opto_ckt.circuits.drivers.laser_current",
     "laser-pulse": "opto_ckt.circuits.drivers.laser_pulse",
     "laser-power": "opto_ckt.circuits.drivers.laser_power",

@@ -59,3 +59,30 @@ def droop_penalty(*, droop: Real) -> Real:
     """
     decibels: Real = -10 / log(10.0) * log(1 - droop)
     return decibels
+
+
+@source("one pole")
+def coupling_capacitance(*, resistance: Real, cutoff: Real) -> Real:
+    r"""Capacitor that couples a signal down to a frequency.
+
+    .. math:: C = \frac{1}{2\pi R f}
+
+    Parameters
+    ----------
+    resistance : R, all that is in series with it. [Ω]
+    cutoff : f at which half the power is lost. [Hz]
+
+    Returns
+    -------
+    C. [F]
+
+    Notes
+    -----
+    One coupling alone; several add their losses.
+
+    Examples
+    --------
+    >>> print(f"{coupling_capacitance(resistance=1e3, cutoff=15.9155) * 1e6:.2f} µF")
+    10.00 µF
+    """
+    return 1 / (2 * pi * resistance * cutoff)

@@ -261,11 +261,12 @@ def saturation_current(*, current: Real, power: Real, larger_current: Real, larg
     return (larger_current - current * ratio) / (ratio - 1)
 
 
-@source("derived: Taylor expansion of P = η I/(1 + I/I_s) about the bias; checked by a Fourier transform")
+@source("derived: Fourier series of P = η I/(1 + I/I_s) under a cosine, exact; a numerical transform agrees")
 def second_harmonic(*, amplitude: Real, bias_current: Real, saturation_current: Real) -> Real:
     r"""Second harmonic of the light over its fundamental.
 
-    .. math:: HD_2 = \frac{\Delta I}{2 I_s (1 + I_Q/I_s)}
+    .. math:: HD_2 = \frac{a - \sqrt{a^2 - \Delta I^2}}{\Delta I} \approx \frac{\Delta I}{2 a},
+        \quad a = I_s + I_Q
 
     Parameters
     ----------
@@ -279,11 +280,43 @@ def second_harmonic(*, amplitude: Real, bias_current: Real, saturation_current: 
 
     Notes
     -----
-    Static, small ΔI; the third harmonic is its square.
+    Static; the third harmonic is its square, each further one smaller by the same factor.
 
     Examples
     --------
     >>> print(f"{second_harmonic(amplitude=20e-3, bias_current=50e-3, saturation_current=0.5):.5f}")
-    0.01818
+    0.01819
     """
-    return amplitude / (2 * (saturation_current + bias_current))
+    reach = saturation_current + bias_current
+    return (reach - sqrt(reach**2 - amplitude**2)) / amplitude
+
+
+@source("derived: fundamental over mean of the same series, exact")
+def optical_index(*, amplitude: Real, bias_current: Real, saturation_current: Real) -> Real:
+    r"""Peak of the light's fundamental over its mean.
+
+    .. math:: m_o = \frac{2 (a - s)}{m x\,(s - 1)},
+        \quad x = \frac{I_Q}{I_s}, \ m = \frac{\Delta I}{I_Q}, \ a = 1 + x, \ s = \sqrt{a^2 - m^2 x^2}
+
+    Parameters
+    ----------
+    amplitude : ΔI of a cosine. [A]
+    bias_current : I_Q. [A]
+    saturation_current : I_s of the roll-off. [A]
+
+    Returns
+    -------
+    m_o; about m/(1 + x). [1]
+
+    Notes
+    -----
+    Static; without roll-off it is the index of the current.
+
+    Examples
+    --------
+    >>> print(f"{optical_index(amplitude=20e-3, bias_current=50e-3, saturation_current=0.5):.4f}")
+    0.3664
+    """
+    whole, swing = 1 + bias_current / saturation_current, amplitude / saturation_current
+    root = sqrt(whole**2 - swing**2)
+    return 2 * (whole - root) / (swing * (root - 1))

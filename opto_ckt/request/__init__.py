@@ -12,6 +12,7 @@ if TYPE_CHECKING:
     from opto_ckt.request.laser_power import LaserPowerRequest
     from opto_ckt.request.laser_pulse import LaserPulseRequest
     from opto_ckt.request.led import LedDriverRequest
+    from opto_ckt.request.led_linear import LedLinearRequest
     from opto_ckt.request.led_switch import LedSwitchRequest
     from opto_ckt.request.receiver import (
         BootstrapRequest,
@@ -34,6 +35,7 @@ __all__ = [
     "LaserPulseRequest",
     "LaserRequest",
     "LedDriverRequest",
+    "LedLinearRequest",
     "LedSwitchRequest",
     "LoadResistorRequest",
     "OpAmpReceiverRequest",
@@ -56,6 +58,7 @@ LOADED_ON_USE = {
     "LaserPulseRequest": "laser_pulse",
     "LaserRequest": "driver",
     "LedDriverRequest": "led",
+    "LedLinearRequest": "led_linear",
     "LedSwitchRequest": "led_switch",
 }
 

@@ -19,6 +19,8 @@ from opto_ckt.design.model import Model
 from opto_ckt.design.reading import read_request
 from opto_ckt.design.sizing import size
 from opto_ckt.outputs.crosscheck import crosscheck
+from opto_ckt.outputs.simulators import run
+from opto_ckt.outputs.spice import deck_of
 from opto_ckt.outputs.wiring import drawing_faults
 from tests.analyses.direct import Direct, return_ratio
 from tests.circuits.lp import BIPOLAR, CHOSEN, COMPUTED, HIGH
@@ -139,7 +141,7 @@ def test_small_signals_follow_the_operating_point(changes: tuple[tuple[str, str]
     held = Model(found.circuit, found.request.model_copy(update={"conditions": conditions}))
 
     def at(drift: float) -> dict[str, Any]:
-        return biased(held, **{"D1.junction_to_case": 1e-9, "U2.drift": drift})
+        return biased(held, **{"D1.junction_to_case": 1e-9, "U2.drift": drift, "R16": 1e15})
 
     def off_the_rail(values: dict[str, Any], node: str) -> float:
         return float(values[f"node.{node}"]) - (float(values["node.rail"]) if changes == HIGH else 0.0)
@@ -209,6 +211,31 @@ def test_decks_agree_in_ngspice_at_nominal_and_two_corners(changes: tuple[tuple[
 def test_decks_of_the_worked_design_agree(engine: str) -> None:
     read = read_request(str(DESIGN), circuit_of=lambda name: load(name).request, circuits=CIRCUITS)
     assert [row for row in crosscheck(size(read, load("laser-power")), engine) if not row.ok] == []
+
+
+@pytest.mark.parametrize("capacitance", ["220 pF", "1 nF", "10 nF"])
+def test_a_start_from_none_in_ngspice_takes_the_time_told(capacitance: str) -> None:
+    """The whole large-signal circuit: the reference comes up at once, the laser is dark until the integrator is there.
+
+    No dark current, and at first just the voltage that R6 leaves across the reference's own resistance: the op amps of
+    the decks have no rails, and would wind down far below them before the start.
+    """
+    dark = ("monitor_dark_current", 'monitor_dark_current = { min = "0 A", typ = "0 A", max = "50 nA" }')
+    result = sized("laser-power", dark, ("", f'[fixed]\nC4 = "{capacitance}"'))
+    scene = result.scenes[0]
+    told, end = scene.expected["startup_time"], scene.values["U2.voltage"]
+    start = -1.0005 * scene.values["node.rail"] * scene.values["U2.output_resistance"] / scene.values["R6"]
+    lines = {
+        "vr e2": f"vr e2 e1 dc {start:.9g} pulse({start:.9g} {end:.9g} 0 1e-5 1e-5 10 20)",
+        "vsig ": "vsig sig inv dc 0",
+        ".tran": f".tran 1e-5 {5 * told:.6g} 0 1e-5",
+    }
+    deck = deck_of(result, scene, "step").replace("\n+ ", " ").splitlines()
+    found = run("\n".join(lines.get(line[:5], line) for line in deck) + "\n", "ngspice")["tran"]
+    mon = np.asarray(found["v(mon)"])
+    assert mon[-1] == near(float(scene.values["node.mon"]), rel=1e-3)
+    late = found["time"][int(np.argmax(mon >= 0.95 * scene.values["node.mon"]))]
+    assert told == near(float(late), rel=2e-2)
 
 
 @SIDES

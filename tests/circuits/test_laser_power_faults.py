@@ -105,11 +105,22 @@ def test_a_missing_reference_asks_for_more_and_is_regulated_there() -> None:
     assert lost["D1.current"] < lost["clamp_current"]
 
 
-def test_a_disabled_loop_rests_at_the_offset() -> None:
+@pytest.mark.parametrize("name", DESIGNS)
+def test_a_disabled_loop_is_held_off_by_r16(name: str) -> None:
+    """Through R16 the reference lifts the monitor's node past any offset: the integrator rests at its rail."""
+    found, _, values = chosen(name)
+    offsets = {"control.open": 1.0, "U3.offset_voltage": np.array([-1e-3, 0.0, 1e-3]), "D1.monitor_dark_current": 0.0}
+    lanes = found.biased({**found.nominal(), **values, **offsets})
+    assert np.all(lanes["D1.power"] == 0)
+    share = values["R3"] / (values["R2"] + values["R3"])
+    np.testing.assert_allclose(lanes["D1.current"], share * 0.03 / values["R1"], rtol=3e-2)
+
+
+def test_without_r16_a_disabled_loop_would_rest_at_its_offset() -> None:
     """1 mV of offset across the set resistor is 1/1250 of the power; the other way there is none."""
     found, _, values = chosen("low")
     offsets = {"control.open": 1.0, "U3.offset_voltage": np.array([-1e-3, 1e-3]), "D1.monitor_dark_current": 0.0}
-    lanes = found.biased({**found.nominal(), **values, **offsets})
+    lanes = found.biased({**found.nominal(), **values, **offsets, "R16": 1e15})
     assert lanes["D1.power"][0] == 0
     assert lanes["D1.power"][1] == near(0.4e-3 * 1e-3 / 1.25, rel=3e-2)
 

@@ -10,11 +10,11 @@ import numpy as np
 from numpy.typing import NDArray
 
 from opto_ckt.circuit import Bench, Fitted
+from opto_ckt.circuits.drivers.requests import LoopRequest
 from opto_ckt.derivation import Derivation
 from opto_ckt.errors import InfeasibleError
 from opto_ckt.formulas import driver_loop
 from opto_ckt.limits import Lanes, Limit
-from opto_ckt.request import LaserDriverRequest
 from opto_ckt.request.reading import Limit as AskedLimit
 from opto_ckt.units import write
 
@@ -35,7 +35,7 @@ DECIDES = (
 
 
 def compensation(
-    request: LaserDriverRequest,
+    request: LoopRequest,
     derivation: Derivation,
     bench: Bench,
     others: Mapping[str, float],

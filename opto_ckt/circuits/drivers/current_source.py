@@ -17,6 +17,7 @@ import numpy as np
 
 from opto_ckt.circuits.drivers.laser import Forward, forward
 from opto_ckt.circuits.drivers.pass_transistor import Around, PassTransistor
+from opto_ckt.circuits.drivers.requests import LoopRequest
 from opto_ckt.circuits.drivers.side import Side, side_of
 from opto_ckt.constants import ROOM_TEMPERATURE
 from opto_ckt.formulas.leakage import dark_current
@@ -96,7 +97,7 @@ def regulated_current(
     return np.asarray(np.maximum(sense, 0.0) / around.sense)
 
 
-def flowing(values: Values, request: LaserDriverRequest, regulated: Lanes, hard_on: Lanes, around: Around) -> Lanes:
+def flowing(values: Values, request: LoopRequest, regulated: Lanes, hard_on: Lanes, around: Around) -> Lanes:
     """The current that flows; an op amp below its least supply is taken to drive as hard as it can."""
     stuck = np.asarray(values.get("U1.stuck", 0.0))
     lost = values["supply.positive"] + below_ground(values) < request.amplifier.supply_min
@@ -113,7 +114,7 @@ def placed(near: dict[str, Lanes], rail: Lanes, request: LaserDriverRequest) -> 
     return {f"node.{name}": rail - voltage for name, voltage in near.items()}
 
 
-def amplifier_errors(values: Values, request: LaserDriverRequest, ref: str = "U1") -> dict[str, Lanes]:
+def amplifier_errors(values: Values, request: LoopRequest, ref: str = "U1") -> dict[str, Lanes]:
     """Offset with its drift, in its own direction, and input bias current at the temperature; of a FET it doubles."""
     temperature, offset = values["temperature"], values[f"{ref}.offset_voltage"]
     drift = values.get(f"{ref}.offset_drift", 0.0) * np.abs(temperature - ROOM_TEMPERATURE)

@@ -3,10 +3,12 @@
 from __future__ import annotations
 
 from math import inf
+from typing import Generic, TypeVar
 
 from opto_ckt.circuit import Bench, Fitted
 from opto_ckt.circuits.drivers.budget import Share
 from opto_ckt.circuits.drivers.pass_transistor import pass_transistor
+from opto_ckt.circuits.drivers.requests import LoopRequest
 from opto_ckt.circuits.drivers.side import side_of
 from opto_ckt.circuits.drivers.slack import GATE
 from opto_ckt.circuits.drivers.spread import resistor_spread
@@ -26,8 +28,10 @@ FILTER_CAPACITANCE, FILTER_INDUCTANCE = 10e-6, 10e-6
 
 DAMPING = 0.7  #: least of the supply filter [1]
 
+Asked = TypeVar("Asked", bound=LoopRequest, covariant=True)
 
-def refuse_unsuited(request: LaserDriverRequest, bench: Bench) -> None:
+
+def refuse_unsuited(request: LoopRequest, bench: Bench) -> None:
     """Refuse an op amp that needs gain, and a transistor that the supply would break."""
     gain, supply, data = bench.nominal("U1.minimum_stable_gain"), bench.high("supply.positive"), request.transistor
     if gain > 1:
@@ -47,10 +51,10 @@ def refuse_unsuited(request: LaserDriverRequest, bench: Bench) -> None:
             )
 
 
-class Sizing:
+class Sizing(Generic[Asked]):
     """Parts in the order in which they are sized; what the design file fixes is kept."""
 
-    def __init__(self, request: LaserDriverRequest, derivation: Derivation) -> None:
+    def __init__(self, request: Asked, derivation: Derivation) -> None:
         self.request, self.derivation = request, derivation
         self.parts: dict[str, Fitted] = {}
 
@@ -73,7 +77,7 @@ class Sizing:
         return self.request.fixed.get(ref, otherwise)
 
 
-def fit_current(sizing: Sizing, bench: Bench, share: Share) -> None:
+def fit_current(sizing: Sizing[LaserDriverRequest], bench: Bench, share: Share) -> None:
     """R1 for the sense voltage, R7 in its window."""
     nominal = {name: bench.nominal(name) for name in bench.limits}
     alpha = float(pass_transistor(sizing.request.transistor).share(nominal))
@@ -90,7 +94,7 @@ def fit_current(sizing: Sizing, bench: Bench, share: Share) -> None:
     sizing.fit("R7", least, "resistors", low=least, high=most)
 
 
-def fit_common(sizing: Sizing) -> None:
+def fit_common(sizing: Sizing[LaserDriverRequest]) -> None:
     """Values by common practice."""
     lead = sizing.known("R4", SENSE_LEAD)
     sizing.fit("R4", SENSE_LEAD, "resistors", SENSE_LEAD, SENSE_LEAD, "common practice: lets C1 take over the loop")
@@ -107,7 +111,7 @@ def fit_common(sizing: Sizing) -> None:
         sizing.fit("C9", BYPASS, "bypass", BYPASS, BYPASS, "common practice: 100 nF close to the supply pin")
 
 
-def fit_filter(sizing: Sizing) -> None:
+def fit_filter(sizing: Sizing[LaserDriverRequest]) -> None:
     """L1 and C3 by their corner, R8 across L1 for the damping."""
     request, derivation = sizing.request, sizing.derivation
     capacitance, inductance = sizing.known("C3", FILTER_CAPACITANCE), sizing.known("L1", FILTER_INDUCTANCE)
@@ -128,7 +132,7 @@ def fit_filter(sizing: Sizing) -> None:
     sizing.fit("R8", exact, "resistors", low=0.9 * exact, high=exact)
 
 
-def capacitor_spread(request: LaserDriverRequest) -> float:
+def capacitor_spread(request: LoopRequest) -> float:
     """How far a bypass capacitor may lie above its value: tolerance and dielectric. [1]"""
     stock = request.preferred.bypass
     return float(stock.tolerance + max(DIELECTRICS[stock.dielectric].change_high, 0.0))

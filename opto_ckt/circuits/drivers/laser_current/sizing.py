@@ -63,7 +63,7 @@ def propose(request: LaserDriverRequest, derivation: Derivation, bench: Bench) -
     return (*sizing.parts.values(), compensation(request, derivation, bench, others))
 
 
-def _reference(sizing: Sizing, bench: Bench, share: Share) -> None:
+def _reference(sizing: Sizing[LaserDriverRequest], bench: Bench, share: Share) -> None:
     """Divider from the reference to the set voltage; R6 keeps the reference fed at the lowest supply.
 
     Raises
@@ -113,7 +113,7 @@ def _reference(sizing: Sizing, bench: Bench, share: Share) -> None:
     sizing.fit("R6", feed, "resistors", low=0.95 * feed, high=feed)
 
 
-def _slow(sizing: Sizing, bench: Bench) -> None:
+def _slow(sizing: Sizing[LaserDriverRequest], bench: Bench) -> None:
     """C2: the current rises with the set voltage and is there in the time asked for, C2 and divider at their most."""
     request = sizing.request
     parallel = float(reference.parallel_resistance(first=sizing["R2"], second=sizing["R3"]))

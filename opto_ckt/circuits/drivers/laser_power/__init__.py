@@ -9,11 +9,12 @@ r"""Laser driver that holds the average power: an integrator watches the monitor
                              +---C4----+     near    +-- Q1 +
                              R10                     |
                               |        set --R9-- + U1       sense --R1-- near
-              near --RV1--R14-+-- mon
+              near --RV1--R14-+-- mon --R16-- ref
 
 The current source is that of the constant-current driver: R1, U1, Q1, with C1 and R4. The integrator's swing through R2
 and R3 is the clamp: whatever the monitor says, no more than the whole swing's share flows; R7 stays below it where Q1
 is hard on. More resistance in R14 and RV1 is less light; RV1 is a rheostat, so that an open wiper lowers the power.
+R16 keeps the integrator, and so the laser, off while the level is shorted.
 ``near`` is ground on the low side, the rail on the high side, where all is upside down.
 """
 

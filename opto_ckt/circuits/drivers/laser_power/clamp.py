@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from typing import NamedTuple
 
 import numpy as np
@@ -22,7 +23,7 @@ from opto_ckt.units import percent, write
 
 TEMPERATURES = 9  #: tried between the ends of the range
 SPARE = 0.03  #: of the clamp beyond the current needed where no clamp_margin is asked for; common practice
-HALVINGS = 50
+SCANS, STEPS = 3, 101  #: of a range of powers or temperatures
 
 
 class Need(NamedTuple):
@@ -63,7 +64,7 @@ def _worn(request: LaserPowerRequest, bench: Bench, temperature: Lanes | float) 
     return {**values, "D1.slope_efficiency": bench.low("D1.slope_efficiency"), "temperature": temperature}
 
 
-def _point(request: LaserPowerRequest, bench: Bench, temperature: Lanes, power: float) -> tuple[Lanes, Lanes]:
+def _point(request: LaserPowerRequest, bench: Bench, temperature: Lanes, power: float | Lanes) -> tuple[Lanes, Lanes]:
     """Current [A], nan where the laser runs away, and junction [K]."""
     values, current = _worn(request, bench, temperature), np.full_like(temperature, 20e-3)
     for _ in range(4):
@@ -98,23 +99,30 @@ def needed(request: LaserPowerRequest, bench: Bench, derivation: Derivation) -> 
     return Need(float(found), threshold, float(temperatures[worst]))
 
 
+def most_settled(request: LaserPowerRequest, bench: Bench, temperature: float, ceiling: float) -> float:
+    """The most power, up to a ceiling, at which the aged laser settles at a temperature; beyond, it runs away. [W]"""
+    return _last(lambda power: _point(request, bench, np.full_like(power, temperature), power)[0], 0.0, ceiling)
+
+
+def _last(settled: Callable[[Lanes], Lanes], low: float, high: float) -> float:
+    """The last of a range that is still settled, nan being what is not; by ever finer scans."""
+    for _ in range(SCANS):
+        tried = np.linspace(low, high, STEPS)
+        good = np.isfinite(settled(tried))
+        if good.all():
+            return high
+        last = max(int(np.argmin(good)) - 1, 0)
+        low, high = float(tried[last]), float(tried[last + 1])
+    return low
+
+
 def _runs_away(
     request: LaserPowerRequest, bench: Bench, temperatures: Lanes, power: float, current: Lanes
 ) -> InfeasibleError:
     """Says so, with the largest power and the hottest place at which it does not."""
-    where = float(temperatures[np.isnan(current)][0])
-
-    def settles(watts: float, kelvin: float) -> bool:
-        return bool(np.isfinite(_point(request, bench, np.array([kelvin]), watts)[0][0]))
-
-    hottest = float(temperatures[-1])
-    least, most = 0.0, power
-    coldest, hot = float(temperatures[0]) - 100.0, where
-    for _ in range(HALVINGS):
-        middle = (least + most) / 2
-        least, most = (middle, most) if settles(middle, hottest) else (least, middle)
-        middle = (coldest + hot) / 2
-        coldest, hot = (middle, hot) if settles(power, middle) else (coldest, middle)
+    where, hottest = float(temperatures[np.isnan(current)][0]), float(temperatures[-1])
+    least = most_settled(request, bench, hottest, power)
+    coldest = _last(lambda at: _point(request, bench, at, power)[0], where - 150.0, where)
     asked = request.signal.power
     nominal = 0.0 if asked is None else asked.nominal
     remedies = [

@@ -12,9 +12,11 @@ from opto_ckt.circuit import OnDemand
 from opto_ckt.circuits.drivers.laser import coupling, forward, junction_limit, settle, thermal_resistance
 from opto_ckt.circuits.drivers.laser_current import figures as current_figures
 from opto_ckt.circuits.drivers.laser_power import inner
+from opto_ckt.circuits.drivers.laser_power.monitor import beside
 from opto_ckt.circuits.drivers.pass_transistor import pass_transistor
 from opto_ckt.constants import ROOM_TEMPERATURE
 from opto_ckt.formulas import power_loop
+from opto_ckt.formulas.reference import divided_voltage
 from opto_ckt.limits import Figures, Lanes, Requirement, Values
 from opto_ckt.request import LaserPowerRequest
 
@@ -32,7 +34,8 @@ def loop_gain(values: Values, request: LaserPowerRequest) -> Lanes:
     """What a slow change of the integrator's output comes back as from the monitor. [1]"""
     share = pass_transistor(request.transistor).share(values)
     transfer = values["R3"] / (values["R2"] + values["R3"]) * share / values["R1"]
-    return np.asarray(values["D1.monitor_gain"] * (values["R14"] + values["RV1.setting"]) * transfer)
+    total = beside(values, np.asarray(values["R14"] + values["RV1.setting"]))
+    return np.asarray(values["D1.monitor_gain"] * total * transfer)
 
 
 def runaway(values: Values, request: LaserPowerRequest) -> Lanes:
@@ -170,12 +173,14 @@ class LaserPowerFigures:
 
     @cached_property
     def startup_time(self) -> Lanes:
-        """To 95 % of the power: soft start, dark slewing of the integrator, then its loop. [s]"""
+        """To 95 % of the power: level past what R16 holds, integrator slewing in the dark, its loop. [s]"""
         values, request = self._values, self._request
         share = pass_transistor(request.transistor).share(values)
         onset = values["D1.threshold_current"] * values["R1"] / share * (values["R2"] + values["R3"]) / values["R3"]
-        return power_loop.startup(
-            soft_start=np.asarray(values["R13"] * values["C2"]),
+        soft_start, total = np.asarray(values["R13"] * values["C2"]), np.asarray(values["R14"] + values["RV1.setting"])
+        held = divided_voltage(voltage=1.0, upper=values["R16"], lower=total)
+        return -soft_start * np.log(1 - held) + power_loop.startup(
+            soft_start=soft_start,
             integration=np.asarray(values["R10"] * values["C4"]),
             gain=np.maximum(loop_gain(values, request), 1e-6),
             threshold=np.asarray(onset / np.maximum(values["set_voltage"], 1e-3)),

@@ -25,14 +25,16 @@ SHARE = 0.4  #: of the start-up time for the integrator, the soft start having m
 DECIDES = ("D1.slope_efficiency", "D1.threshold_current", "D1.monitor_responsivity", "D1.tracking_error", "temperature")
 
 
-def fit_integrator(sizing: Sizing, bench: Bench, current_loop: Bench, others: Mapping[str, float]) -> None:
+def fit_integrator(
+    sizing: Sizing[LaserPowerRequest], bench: Bench, current_loop: Bench, others: Mapping[str, float]
+) -> None:
     """C4 between what the loop must not be faster than and what it must not be slower than.
 
     Raises
     ------
     InfeasibleError : there is nothing between.
     """
-    request: LaserPowerRequest = sizing.request  # type: ignore[assignment]  # its own request, of its own kind
+    request: LaserPowerRequest = sizing.request
     lead = sizing.known("R10", sizing.known("R15", INTEGRATOR))
     sizing.fit("R10", lead, "resistors", lead, lead, "common practice: far above the set resistor, which it loads")
     sizing.fit("R15", lead, "resistors", lead, lead, "like R10: equal drops of the input bias currents; keeps C2 from"

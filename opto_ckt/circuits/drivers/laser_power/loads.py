@@ -29,6 +29,7 @@ def stresses(values: Values, request: LaserPowerRequest) -> tuple[Stress, ...]:
         Stress("R8", power=supply_drop(values) ** 2 / values["R8"], voltage=supply_drop(values)),
         Stress("R5", voltage=supply, power=values["Q1.control_current"] ** 2 * values["R5"]),
         Stress("R14", power=rail**2 / least, voltage=rail, current=rail / least),
+        Stress("R16", power=rail**2 / values["R16"], voltage=rail),
         Stress("RV1", power=watched**2 / (values["R14"] + values["RV1.setting"]), voltage=watched,
                current=watched / (values["R14"] + values["RV1.setting"])),
         *(Stress(ref, voltage=rail + 0.0 * supply) for ref in ("R4", "R9", "R10", "R13", "R15")),

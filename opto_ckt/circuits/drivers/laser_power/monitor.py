@@ -12,6 +12,7 @@ from opto_ckt.circuits.drivers.side import side_of
 from opto_ckt.constants import ROOM_TEMPERATURE
 from opto_ckt.formulas.laser_heating import OperatingPoint, settle_at_power
 from opto_ckt.formulas.leakage import dark_current
+from opto_ckt.formulas.reference import parallel_resistance
 from opto_ckt.limits import Lanes, Values
 from opto_ckt.request import LaserPowerRequest
 from opto_ckt.topology import OPEN, SHORT
@@ -93,7 +94,7 @@ def set_resistance(values: Values, request: LaserPowerRequest) -> Lanes:
     quiet = levels(sound, request, np.asarray(request.conditions.supply.positive))
     voltage = quiet.plus + quiet.offset + quiet.drawn * values["R10"]
     current = responsivity(values, request, at) * asked_power(values, request) + leaking(values, at)
-    needed = voltage / (current - quiet.drawn)
+    needed = voltage / (current - quiet.drawn + (quiet.reference - voltage) / values["R16"])
     fixed, track = np.asarray(values["R14"]), np.asarray(values["RV1"])
     setting = np.clip(needed - fixed + track * values["RV1.settability"], 0.0, track)
     setting = np.where(np.asarray(values.get("RV1.open", 0.0)) > 0, track, setting)
@@ -105,7 +106,8 @@ def set_resistance(values: Values, request: LaserPowerRequest) -> Lanes:
 def wanted_power(values: Values, request: LaserPowerRequest, quiet: Levels, total: Lanes, output: Lanes) -> Lanes:
     """Power at the plane of the sheet at which the integrator rests; not above zero where it wants no light. [W]"""
     raised = quiet.offset + quiet.drawn * values["R10"] - output / values["U3.open_loop_gain"]
-    current = (quiet.plus + raised) / total + quiet.drawn
+    voltage = quiet.plus + raised
+    current = voltage / total + quiet.drawn - (quiet.reference - voltage) / values["R16"]
     light = current - leaking(values, np.asarray(values["temperature"]))
     wanted = light / responsivity(values, request, np.asarray(values["temperature"]))
     blind = np.asarray(values.get("D1.monitor_open", 0.0)) > 0
@@ -125,3 +127,8 @@ def wanted_point(values: Values, request: LaserPowerRequest, line: Forward, powe
         threshold=lambda at: data.threshold_at(at, values["D1.threshold_current"]),
         slope=lambda at: data.slope_at(at, values["D1.slope_efficiency"]),
     )
+
+
+def beside(values: Values, total: Lanes) -> Lanes:
+    """The set resistance with R16 beside it, which comes from the reference and holds the integrator off. [Ω]"""
+    return np.asarray(parallel_resistance(first=total, second=values["R16"]))

@@ -149,7 +149,8 @@ def _written(given: Values, values: Values, request: LaserPowerRequest, found: F
     through = np.where(bypassed, 0.0, laser["D1.forward_voltage"])
     watched = _monitored(values, request, laser)
     fixed = np.asarray(values["R14"])
-    set_total = np.asarray(watched["D1.monitor_current"] - quiet.drawn) * found.total
+    bled = quiet.reference / values["R16"]
+    mon = np.asarray(watched["D1.monitor_current"] - quiet.drawn + bled) * monitor.beside(values, found.total)
     others = quiet.bias + values["U1.quiescent_current"] + values["U3.quiescent_current"]
     tap = divided_voltage(voltage=found.output, upper=values["R2"], lower=values["R3"])
     parallel = parallel_resistance(first=values["R2"], second=values["R3"])
@@ -185,9 +186,9 @@ def _written(given: Values, values: Values, request: LaserPowerRequest, found: F
         "ref": quiet.reference,
         "level": quiet.level,
         "plus3": quiet.plus,
-        "mon": set_total,
-        "inv": set_total - quiet.drawn * values["R10"],
-        "trim": set_total * np.asarray(biased["RV1.setting"]) / (np.asarray(biased["RV1.setting"]) + fixed),
+        "mon": mon,
+        "inv": mon - quiet.drawn * values["R10"],
+        "trim": mon * np.asarray(biased["RV1.setting"]) / (np.asarray(biased["RV1.setting"]) + fixed),
         "power": found.output,
         "set": level,
         "plus": level - sign * values["U1.bias_current"] * values["R9"],

@@ -54,3 +54,22 @@ def refuse_dark_zero(request: LaserPowerRequest, bench: Bench) -> None:
             "less tracking error",
         ],
     )
+
+
+def refuse_strained_monitor(request: LaserPowerRequest, bench: Bench) -> None:
+    """In the dark the whole supply lies across the monitor.
+
+    Raises
+    ------
+    InfeasibleError : it does not stand that.
+    """
+    limit, supply = request.source.monitor_reverse_max, bench.high("supply.positive")
+    if limit is not None and supply > limit:
+        raise InfeasibleError(
+            f"in the dark the supply of up to {write(supply, 'V')} lies across the monitor, which stands"
+            f" {write(limit, 'V')}",
+            [
+                f"conditions.supply.positive ≤ {write(bench.nominal('supply.positive') * limit / supply, 'V')}",
+                f"a laser with source.monitor_reverse_max ≥ {write(supply, 'V')}",
+            ],
+        )

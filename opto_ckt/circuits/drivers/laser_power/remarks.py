@@ -4,12 +4,16 @@ from __future__ import annotations
 
 import numpy as np
 
+from opto_ckt.circuit import Bench
 from opto_ckt.circuits.drivers.cautions import about_the_driver
+from opto_ckt.circuits.drivers.laser_power.clamp import most_power, most_settled
 from opto_ckt.circuits.drivers.laser_power.figures import clamp_light, runaway
 from opto_ckt.circuits.drivers.laser_power.given import MONITOR
 from opto_ckt.limits import Limits, Values
 from opto_ckt.request import LaserPowerRequest
 from opto_ckt.units import percent, write
+
+FAR = 30.0  #: times the power, up to which the onset of runaway is looked for
 
 
 def remarks(values: Values, limits: Limits, request: LaserPowerRequest) -> tuple[str, ...]:
@@ -23,8 +27,7 @@ def remarks(values: Values, limits: Limits, request: LaserPowerRequest) -> tuple
     )
     found += _trimming(values, limits, request)
     found.append(_untrimmed(limits, request))
-    factor = float(np.max(runaway(values, request)))
-    found.append(f"self-heating at constant power has a loop gain of {factor:.2g} at its worst; from 1 on it runs away")
+    found.append(_distance(values, limits, request))
     source = request.source
     absent = [name.replace("_", " ") for name in MONITOR if getattr(source, name) is None]
     if absent:
@@ -61,3 +64,15 @@ def _untrimmed(limits: Limits, request: LaserPowerRequest) -> str:
     low, typical, high = (float(limit.at(level, 0.0)) for level in ("low", "nominal", "high"))
     spread = f"{percent(typical / high - 1)} to +{percent(typical / low - 1)}"
     return f"untrimmed, set for a typical monitor, the power would lie {spread} off: trim every unit"
+
+
+def _distance(values: Values, limits: Limits, request: LaserPowerRequest) -> str:
+    """How far the aged laser at its hottest is from running away."""
+    factor, bench = float(np.max(runaway(values, request))), Bench(limits, lambda chosen: {})
+    hottest, power = bench.high("temperature"), most_power(request, bench)
+    least = most_settled(request, bench, hottest, FAR * power)
+    how_far = f"at {least / power:.3g} times that" if least < FAR * power else f"beyond {FAR:g} times that"
+    return (
+        f"self-heating at constant power has a loop gain of {factor:.2g} at its worst, from 1 on a laser runs away;"
+        f" at {write(hottest, '°C')} and {write(power, 'W')} the aged one would run away {how_far}"
+    )

@@ -17,7 +17,7 @@ from opto_ckt.circuits.drivers.laser import Most
 from opto_ckt.circuits.drivers.laser_power import inner
 from opto_ckt.circuits.drivers.laser_power.clamp import Need, clamp, needed, shares, swing
 from opto_ckt.circuits.drivers.laser_power.integrator import fit_integrator
-from opto_ckt.circuits.drivers.laser_power.refusals import refuse_dark_zero
+from opto_ckt.circuits.drivers.laser_power.refusals import refuse_dark_zero, refuse_strained_monitor
 from opto_ckt.circuits.drivers.laser_power.trim import fit_trimmer
 from opto_ckt.circuits.drivers.spread import resistor_spread
 from opto_ckt.derivation import Derivation
@@ -80,6 +80,7 @@ def propose(request: LaserPowerRequest, derivation: Derivation, bench: Bench) ->
     """
     refuse_unsuited(request, bench)
     refuse_dark_zero(request, bench)
+    refuse_strained_monitor(request, bench)
     need = needed(request, bench, derivation)
     safe = clamp(request, bench, derivation, need)
     power = request.signal.power
@@ -103,12 +104,12 @@ def propose(request: LaserPowerRequest, derivation: Derivation, bench: Bench) ->
     return (*sizing.parts.values(), loop)
 
 
-def _divider(sizing: Sizing, bench: Bench, need: Need, safe: Most) -> None:
+def _divider(sizing: Sizing[LaserPowerRequest], bench: Bench, need: Need, safe: Most) -> None:
     """R2 and R3: the integrator at its end lets the clamp's current flow, and no more."""
     request, derivation = sizing.request, sizing.derivation
     sense = sizing["R1"]
-    least, most = shares(request, bench, need, safe, sense)  # type: ignore[arg-type]  # its own kind of request
-    low, high = swing(request, bench, need)  # type: ignore[arg-type]
+    least, most = shares(request, bench, need, safe, sense)
+    low, high = swing(request, bench, need)
     share = min(least * 1.01, (least * most) ** 0.5)
     end = (low + high) / 2
     lower = share * end / DIVIDER_CURRENT
@@ -127,7 +128,7 @@ def _divider(sizing: Sizing, bench: Bench, need: Need, safe: Most) -> None:
     sizing.fit("R2", upper, "resistors", low=0.9 * upper, high=1.1 * upper)
 
 
-def _reference(sizing: Sizing, bench: Bench, need: Need) -> None:
+def _reference(sizing: Sizing[LaserPowerRequest], bench: Bench, need: Need) -> None:
     """R6 keeps the reference fed at the lowest supply; R13 and C2 let the set level rise slowly.
 
     Raises
@@ -166,7 +167,7 @@ def _reference(sizing: Sizing, bench: Bench, need: Need) -> None:
     sizing.fit("C2", exact, "bypass", low=exact / 10, high=exact)
 
 
-def _refuse_level(sizing: Sizing, bench: Bench, supply: float, highest: float) -> None:
+def _refuse_level(sizing: Sizing[LaserPowerRequest], bench: Bench, supply: float, highest: float) -> None:
     """The integrator's inputs rest at the reference's voltage from the near rail."""
     amplifier, low = sizing.request.amplifier, inner.on_low_side(sizing.request)
     near = amplifier.common_mode_to_negative if low else amplifier.common_mode_to_positive

@@ -80,6 +80,7 @@ def _power(side: Side) -> Drawing:
         Capacitor("C4", "power", "inv", role="integrator", at=p(14.8, 3.4), to=p(12.8, 3.4)),
         signal,
         Resistor("R14", "mon", "trim", role="power set", at=p(17.6, 1), to=p(17.6, -1)),
+        Resistor("R16", "mon", "ref", role="off bias", at=p(19.6, 1), to=p(19.6, -1)),
         Trimmer("RV1", "trim", near, role="power trim", at=p(17.6, -1.4), to=p(17.6, -3.4)),
     ]  # fmt: skip
     wires = [
@@ -95,7 +96,10 @@ def _power(side: Side) -> Drawing:
         (p(14.8, 6), p(15.2, 6)),
         (p(15.2, 6.5), p(15.2, 3.4)),
         (p(15.2, 3.4), p(14.8, 3.4)),
-        (p(16.6, 1.7), p(18.6, 1.7)),
+        (p(16.6, 1.7), p(20.2, 1.7)),
+        (p(19.6, 1.7), p(19.6, 1)),
+        (p(19.6, -1), p(19.6, -1.6)),
+        (p(1, 6.5), p(0.4, 6.5)),
         (p(17.6, 1.7), p(17.6, 1)),
         (p(17.6, -1), p(17.6, -1.4)),
     ]
@@ -106,7 +110,9 @@ def _power(side: Side) -> Drawing:
         ((13.8, p(0, 6)[1] + 1), "rail"),
         ((13.8, p(0, 6)[1] - 1), GROUND),
         (p(17.6, -3.4), near),
-        (p(18.6, 1.7), "mon"),
+        (p(20.2, 1.7), "mon"),
+        (p(19.6, -1.6), "ref"),
+        (p(0.4, 6.5), "ref"),
     ]
     return elements, wires, marks
 

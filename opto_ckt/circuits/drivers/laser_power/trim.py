@@ -8,15 +8,18 @@ from opto_ckt.circuit import Bench
 from opto_ckt.circuits.drivers.fitting import Sizing
 from opto_ckt.circuits.drivers.laser_power.clamp import sheet_share
 from opto_ckt.circuits.drivers.laser_power.given import SETTING
+from opto_ckt.circuits.drivers.slack import offset_error
 from opto_ckt.circuits.drivers.spread import resistor_spread
 from opto_ckt.errors import InfeasibleError
-from opto_ckt.formulas import power_loop
+from opto_ckt.formulas import power_loop, reference
 from opto_ckt.preferred import neighbours
 from opto_ckt.request import LaserPowerRequest
 from opto_ckt.units import percent, write
 
 COARSEST = 0.05  #: of the power, that a setting may be off where the fixed resistor is all there is; common practice
 LARGEST = 2e6  #: of trimmers to be had; common practice [Ω]
+OFF = 3.0  #: times the largest offset; common practice
+MOST_OFF_BIAS = 2.2e6  #: above it leakage of a board counts; common practice [Ω]
 STEPS = 5.0  #: a track may be so many times what is needed
 
 
@@ -46,14 +49,14 @@ def needed_range(request: LaserPowerRequest, bench: Bench) -> Range:
     return Range(float(least), float(most))
 
 
-def fit_trimmer(sizing: Sizing, bench: Bench) -> Range:
+def fit_trimmer(sizing: Sizing[LaserPowerRequest], bench: Bench) -> Range:
     """R14 and RV1.
 
     Raises
     ------
     InfeasibleError : one trimmer does not reach over the span, or is too coarse at its short end.
     """
-    request: LaserPowerRequest = sizing.request  # type: ignore[assignment]  # its own request, of its own kind
+    request: LaserPowerRequest = sizing.request
     found, spread, track = needed_range(request, bench), resistor_spread(request), request.preferred.trimmers
     fixed = sizing.derivation.compute(
         "R14", power_loop.set_resistance,
@@ -71,7 +74,7 @@ def fit_trimmer(sizing: Sizing, bench: Bench) -> Range:
     if "RV1" not in request.fixed and not values:
         raise InfeasibleError(
             f"{said}: no trimmer of [preferred] has a track from {write(least, 'Ω')} up",
-            [f"preferred.trimmers with {write(least, 'Ω')} or more", *_narrower(request, bench, 0.9 * span)],
+            _longer(request, bench, least, span),
         )
     value = request.fixed.get("RV1", values[0] if values else least)
     coarse = SETTING * value / found.least
@@ -84,7 +87,30 @@ def fit_trimmer(sizing: Sizing, bench: Bench) -> Range:
     sizing.fit("RV1", least, "trimmers", low=least, high=STEPS * least,
                why=f"from R14 at its least to {write(found.most, 'Ω')} for the faintest monitor, track at its least;"
                " a rheostat, so that an open wiper lowers the power")  # fmt: skip
+    _fit_off_bias(sizing, bench, found)
     return found
+
+
+def _fit_off_bias(sizing: Sizing[LaserPowerRequest], bench: Bench, found: Range) -> None:
+    """R16 from the reference: with the set level at nothing the integrator sees too much light, its offset in it."""
+    voltage = bench.nominal("U2.voltage")
+    held = min(OFF * offset_error(sizing.request, bench), 0.2 * voltage)
+    exact = sizing.derivation.compute(
+        "R16", reference.upper_resistance,
+        reason=f"{write(held, 'V')} across the least set resistance, {OFF:g} times the integrator's offset, while the"
+        " level is shorted: the laser is off; in control there is next to nothing across R16",
+        voltage=voltage, tap_voltage=held, lower=found.least,
+    )  # fmt: skip
+    exact = min(exact, MOST_OFF_BIAS)
+    sizing.fit("R16", exact, "resistors", low=0.5 * exact, high=exact)
+
+
+def _longer(request: LaserPowerRequest, bench: Bench, track: float, span: float) -> list[str]:
+    """A trimmer that would do; more light where there is none so long, else a narrower span."""
+    power = request.signal.power
+    if track > LARGEST and power is not None:
+        return [f"signal.power ≥ {write(power.nominal * track / LARGEST, 'W')}", "a lower reference.voltage"]
+    return [f"preferred.trimmers with {write(track, 'Ω')} or more", *_narrower(request, bench, 0.9 * span)]
 
 
 def _narrower(request: LaserPowerRequest, bench: Bench, span: float) -> list[str]:
