@@ -127,7 +127,7 @@ class LaserRequest(Request):
     diode: DiodeData | None = None  #: across the source, against reverse voltage
     fibre: FibreData | None = None  #: that the light leaves by
     signal: DriveSignal
-    conditions: LaserConditions
+    conditions: DriverConditions
 
 
 class LaserDriverRequest(LaserRequest):
@@ -136,6 +136,7 @@ class LaserDriverRequest(LaserRequest):
     transistor: Annotated[BipolarData | MosfetData, Field(discriminator="kind")]
     amplifier: OpAmpData
     reference: ReferenceData
+    conditions: LaserConditions
 
     checks: ClassVar[tuple[Check, ...]] = (
         Check(("source", "signal", "conditions"), _in_reach),

@@ -68,9 +68,6 @@ def laser_limits(request: LaserRequest) -> dict[str, Limit]:
     launched = launch.launched(request)
     if launched is not None:
         found["D1.coupling"] = launched
-    air = request.conditions.air
-    if air is not None:
-        found["temperature.air"] = Limit(air.nominal, air.low, air.high)
     return found
 
 

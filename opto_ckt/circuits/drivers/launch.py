@@ -15,7 +15,7 @@ from opto_ckt.formulas.launch import (
 )
 from opto_ckt.limits import Limit
 from opto_ckt.parts.fibre import FibreData
-from opto_ckt.request import LaserDriverRequest
+from opto_ckt.request import LaserRequest
 from opto_ckt.units import percent
 
 GLASS = 1.46  #: index of a fibre's core, silica; from memory
@@ -23,7 +23,7 @@ ASIDE = 1e-6  #: that a single-mode fibre is fixed off the axis at the worst; fr
 PRACTICE = 0.1  #: that reaches a single-mode fibre butt against a laser; B. Wheeler, Laser Focus World, May 1999
 
 
-def launched(request: LaserDriverRequest) -> Limit | None:
+def launched(request: LaserRequest) -> Limit | None:
     """Share of the facet's light in the fibre, butt against it without a lens; None where it is stated or not asked."""
     data, fibre = request.source, request.fibre
     stated = data.plane == "fibre" or data.coupling is not None
@@ -51,7 +51,7 @@ def launched(request: LaserDriverRequest) -> Limit | None:
     )
 
 
-def advice(request: LaserDriverRequest) -> tuple[str, ...]:
+def advice(request: LaserRequest) -> tuple[str, ...]:
     """What the power in the fibre rests on."""
     limit = launched(request)
     if limit is None or request.signal.plane != "fibre":
