@@ -162,3 +162,19 @@ def safety(request: LedDriverRequest, brightest: float) -> tuple[str, ...]:
         " not look into a bright LED or a fibre end; whether it harms is for a competent person to find by the local"
         " rules",
     )
+
+
+def unstated(request: LedDriverRequest) -> tuple[str, ...]:
+    """What the sheet leaves open and is taken not to change with temperature."""
+    data = request.source
+    open_figures = [
+        name
+        for name, open_ in (
+            ("forward_voltage_temperature", data.forward_voltage_temperature == 0),
+            ("power_temperature", data.power_temperature is None),
+        )
+        if open_
+    ]
+    if not open_figures:
+        return ()
+    return (f"the LED's sheet gives no {' and no '.join(open_figures)}: taken as the same at every temperature",)
