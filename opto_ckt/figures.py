@@ -120,6 +120,7 @@ _ALL = (
         "extinction_ratio", "W/W", "extinction ratio", "one level over zero level, as a ratio; 10 log in dB", 1.0, 10.0
     ),
     Figure("compliance_margin", "V", "compliance margin", "supply left over at the current, at its worst", 0.1),
+    Figure("clamp_current", "A", "clamp current", "the most that the clamp lets flow, whatever the monitor says", 1e-6),
     Figure("clamp_margin", "1", "clamp margin", "current that the clamp lets flow over that needed, less one", 0.05),
     Figure(
         "clamp_power", "W", "clamp power", "light at the clamp's current, at the plane of the laser's sheet", 1e-9, 10.0
@@ -130,6 +131,34 @@ _ALL = (
         "runaway factor",
         "loop gain of self-heating at constant power; from 1 on the laser runs away",
         0.5,
+    ),
+    Figure(
+        "runaway_margin",
+        "K",
+        "runaway margin",
+        "rise of the surroundings till no current holds the light there is; looked for to 300 °C inside",
+        10.0,
+    ),
+    Figure("wavelength_shift", "m", "wavelength shift", "of the light, from that at a junction of 25 °C", 1e-10),
+    Figure(
+        "cooler_load", "W", "cooler load", "heat to move out of the laser's case, negative where it is warmed", 1e-3
+    ),
+    Figure(
+        "driver_intensity_noise",
+        "dB/Hz",
+        "driver intensity noise",
+        "of the light by the noise of the current, at noise_frequency, re the average, 10 log",
+        1.0,
+    ),
+    Figure(
+        "laser_intensity_noise", "dB/Hz", "laser intensity noise", "as the laser's sheet states it, re the average", 1.0
+    ),
+    Figure(
+        "shot_intensity_noise",
+        "dB/Hz",
+        "shot intensity noise",
+        "what an ideal detector sees of all the light at the plane: 2hν/P, 10 log",
+        1.0,
     ),
     Figure(
         "inner_phase_margin",

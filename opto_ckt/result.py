@@ -138,6 +138,7 @@ class Alternative:
     verdict: str  #: in words
     figures: Mapping[str, float] = field(default_factory=dict)  #: a few, at nominal
     parts: int | None = None  #: that an assembler fits
+    faults: tuple[int, int] | None = None  #: how many faults pass a limit, of how many
 
 
 @dataclass(frozen=True)

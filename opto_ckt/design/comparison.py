@@ -5,18 +5,22 @@ from __future__ import annotations
 from collections.abc import Callable, Collection
 from typing import Any
 
+from opto_ckt.analyses.faults import run_faults
 from opto_ckt.circuit import Circuit
 from opto_ckt.design.model import Model
 from opto_ckt.design.sizing import Sized, choose_values, settled
 from opto_ckt.errors import InfeasibleError
 from opto_ckt.figures import FIGURES
-from opto_ckt.limits import Requirement
+from opto_ckt.limits import Requirement, one_at_a_time, values_at
 from opto_ckt.parts.record import facts
 from opto_ckt.request import Request
 from opto_ckt.result import Alternative
 from opto_ckt.units import write
 
-TOLD = ("bandwidth", "sensitivity", "nep_density", "overload")
+TOLD = (
+    "bandwidth", "sensitivity", "nep_density", "overload",
+    "current", "optical_power", "dissipation", "junction_temperature",
+)  # fmt: skip
 """Figures that a line tells at nominal, as far as the circuit has them."""
 
 OUT_OF_REACH = -1e8  #: margins below stand for a figure that does not exist at a corner
@@ -63,7 +67,14 @@ def _line(sized: Sized) -> Alternative:
     needs = list(zip(choice.margins, sized.requirements, strict=True))
     margin, need = min(needs, key=lambda pair: pair[0], default=(0.0, None))
     verdict = "meets all that it offers" if need is None or margin >= 0 else _missed(need, margin)
-    return Alternative(model.circuit.name, verdict, told, len(model.topology.fitted))
+    return Alternative(model.circuit.name, verdict, told, len(model.topology.fitted), _faults(sized))
+
+
+def _faults(sized: Sized) -> tuple[int, int]:
+    """How many faults pass a limit with each limit alone at its ends, of how many."""
+    circuit, request = sized.model.circuit, sized.model.request
+    found = run_faults(circuit, values_at(sized.limits, one_at_a_time(sized.limits), sized.choice.values), request)
+    return sum(not fault.ok for fault in found), len(found)
 
 
 def _missed(need: Requirement, margin: float) -> str:

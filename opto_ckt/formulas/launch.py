@@ -33,6 +33,35 @@ def lambertian_coupling(*, numerical_aperture: Real) -> Real:
     return numerical_aperture**2
 
 
+@source("derived: the square of the local aperture, NA² (1 - (r/a)^α), averaged over the emitter; half for α = 2")
+def graded_coupling(*, numerical_aperture: Real, emitter: Real, core: Real, profile: Real) -> Real:
+    r"""Share of a Lambertian emitter's light that a graded-index fibre takes.
+
+    .. math:: \eta = NA^2 \left(1 - \frac{2}{\alpha + 2} \left(\frac{r_s}{a}\right)^\alpha\right)
+
+    Parameters
+    ----------
+    numerical_aperture : NA on the axis. [1]
+    emitter : r_s, radius or diameter, not above a. [m]
+    core : a, likewise. [m]
+    profile : α of the index; 2 is a parabola, a large one a step. [1]
+
+    Returns
+    -------
+    η. [1]
+
+    Notes
+    -----
+    The emitter against the core and in its middle; reflection apart.
+
+    Examples
+    --------
+    >>> print(f"{graded_coupling(numerical_aperture=0.2, emitter=50e-6, core=50e-6, profile=2.0):.2f}")
+    0.02
+    """
+    return numerical_aperture**2 * (1 - 2 / (profile + 2) * (emitter / core) ** profile)
+
+
 @source("J. M. Senior, Optical Fiber Communications, Ex. 7.4")
 def radiance_coupling(*, radiance: Real, area: Real, numerical_aperture: Real, reflection: Real) -> Real:
     r"""Power in a step-index fibre from a surface of known radiance.
@@ -110,6 +139,78 @@ def fresnel_reflection(*, index: Real, other: Real) -> Real:
     0.174
     """
     return ((index - other) / (index + other)) ** 2
+
+
+@source("derived: overlap of two Gaussian modes in one direction across; the product of two is that of a mode")
+def mismatch_coupling(*, mode_radius: Real, other_radius: Real) -> Real:
+    r"""Share of the light that passes, by one direction across, between modes of unlike width.
+
+    .. math:: \eta = \frac{2 w_1 w_2}{w_1^2 + w_2^2}
+
+    Parameters
+    ----------
+    mode_radius : w_1, to 1/e² of the intensity. [m]
+    other_radius : w_2, likewise. [m]
+
+    Returns
+    -------
+    η; of round modes its square passes, of others the product of both directions. [1]
+
+    Notes
+    -----
+    Flat wavefronts, no gap, offset or tilt.
+
+    Examples
+    --------
+    >>> print(f"{mismatch_coupling(mode_radius=4.6e-6, other_radius=5.2e-6) ** 2:.3f}")
+    0.985
+    """
+    return 2 * mode_radius * other_radius / (mode_radius**2 + other_radius**2)
+
+
+@source("derived: far field of a Gaussian mode")
+def waist_of_divergence(*, wavelength: Real, divergence: Real) -> Real:
+    r"""Radius of a laser's mode at its facet from the width of its far field.
+
+    .. math:: w = \frac{\lambda \sqrt{2 \ln 2}}{\pi \theta}
+
+    Parameters
+    ----------
+    wavelength : λ. [m]
+    divergence : θ in radians, full width at half of the intensity. [1]
+
+    Returns
+    -------
+    w, to 1/e² of the intensity. [m]
+
+    Notes
+    -----
+    Small angles; above some 40° the mode is narrower than this tells.
+    """
+    waist: Real = wavelength * (2 * log(2.0)) ** 0.5 / (pi * divergence)
+    return waist
+
+
+@source("derived: a lobe cos^L integrated over the cone that the fibre accepts")
+def lobe_coupling(*, numerical_aperture: Real, exponent: Real) -> Real:
+    r"""Share of a round lobe's light that lies within a fibre's aperture.
+
+    .. math:: \eta = 1 - (1 - NA^2)^{(L+1)/2}
+
+    Parameters
+    ----------
+    numerical_aperture : NA of a step index. [1]
+    exponent : L of the lobe; 1 is a Lambertian surface. [1]
+
+    Returns
+    -------
+    η; NA² for a Lambertian surface. [1]
+
+    Notes
+    -----
+    The source against the core and within it; reflection apart.
+    """
+    return 1 - (1 - numerical_aperture**2) ** ((exponent + 1) / 2)
 
 
 @source("Gaussian modes; G. Keiser, Optical Fiber Communications, Ex. 5.5")

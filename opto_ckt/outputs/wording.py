@@ -44,6 +44,8 @@ LIGHT: Mapping[tuple[str, Level], str] = {
     ("signal.ambient", "high"): "most ambient light",
     ("temperature", "low"): "coldest",
     ("temperature", "high"): "hottest",
+    ("temperature.air", "low"): "coldest air",
+    ("temperature.air", "high"): "warmest air",
 }
 CONTACTS: Mapping[tuple[str, Level], str] = {("closed", "low"): "open", ("closed", "high"): "closed"}
 SUPPLIES: Mapping[str, str] = {

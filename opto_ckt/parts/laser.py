@@ -42,6 +42,12 @@ class LaserData(Record):
     wavelength_temperature: Annotated[float | None, Unit("m/K", "0.1 nm/K", "any"), Sheet("dλ/dT")] = None
     plane: Annotated[Literal["facet", "fibre"], Sheet("output power from chip or from fibre pigtail")]
     coupling: Annotated[Spread | None, Unit("1", "40 %"), Sheet("coupling efficiency, facet to fibre")] = None
+    divergence_parallel: Annotated[
+        Spread | None, Unit("°", "10°"), Assumed(0.2, 0.2), Sheet("beam divergence, FWHM, parallel, θ∥")
+    ] = None
+    divergence_perpendicular: Annotated[
+        Spread | None, Unit("°", "30°"), Assumed(0.2, 0.2), Sheet("beam divergence, FWHM, perpendicular, θ⊥")
+    ] = None
     threshold_current: Annotated[
         Spread | None, Unit("A", "12 mA"), Assumed(0.3, 0.5), Sheet("threshold current, Ith")
     ] = None
@@ -121,6 +127,7 @@ class LaserData(Record):
             ),
         ),
         Choice("the forward voltage", (("turn_on_voltage", "series_resistance"), ("forward",))),
+        Choice("the divergence", (("divergence_parallel", "divergence_perpendicular"),), needed=False),
         Choice("the relaxation oscillation", (("relaxation_frequency", "relaxation_current"),), needed=False),
         Choice("the tracking error", (("tracking_error", "tracking_error_temperatures"),), needed=False),
     )

@@ -11,12 +11,12 @@ from opto_ckt.parts.diode import DiodeData
 from opto_ckt.parts.fibre import FibreData
 from opto_ckt.parts.laser import LaserData
 from opto_ckt.parts.opamp import OpAmpData
-from opto_ckt.parts.record import Check, Choice, Finding, Spread, Table, Unit, Whole
+from opto_ckt.parts.record import Check, Choice, Finding, ReadBy, Spread, Table, Unit, Whole
 from opto_ckt.parts.reference import ReferenceData
 from opto_ckt.parts.transistor import BipolarData, MosfetData
 from opto_ckt.request.receiver import amplifier_supplied
 from opto_ckt.request.request import Request
-from opto_ckt.request.tables import Conditions
+from opto_ckt.request.tables import Conditions, read_temperature
 from opto_ckt.units import percent, write
 
 
@@ -71,6 +71,23 @@ class DriverConditions(Conditions):
     ageing: Ageing = Field(default_factory=Ageing.model_construct)
 
 
+def _cooled(air: Spread | None, temperature_of: str, sink_resistance: float) -> Iterator[Finding]:
+    if air is None:
+        return
+    if temperature_of != "case":
+        yield Finding(("air",), 'is the air around a case that is held at `temperature`: add temperature_of = "case"')
+    if sink_resistance == 0.0:
+        yield Finding(("air",), "needs sink_resistance, from the case to the air past the cooler, such as '100 K/W'")
+
+
+class LaserConditions(DriverConditions):
+    """Where a laser driver runs; the laser's case may be held at `temperature` by a cooler in air of its own."""
+
+    air: Annotated[Spread | None, ReadBy(read_temperature)] = None  #: around the cooled case, and around the driver
+
+    checks = (Check(("air", "temperature_of", "sink_resistance"), _cooled),)
+
+
 def _in_reach(source: LaserData, signal: DriveSignal, conditions: DriverConditions) -> Iterator[Finding]:
     supply = conditions.supply
     least = supply.positive * (1 - supply.tolerance)
@@ -84,17 +101,19 @@ def _in_reach(source: LaserData, signal: DriveSignal, conditions: DriverConditio
         )
 
 
-def _within_source(source: LaserData, signal: DriveSignal) -> Iterator[Finding]:
+def _within_source(source: LaserData, signal: DriveSignal, fibre: FibreData | None) -> Iterator[Finding]:
     if signal.current is not None and signal.current.high > source.current_max:
         limit = write(source.current_max, "A")
         yield Finding(
             ("signal", "current"), f"{write(signal.current.high, 'A')} is above current_max {limit} of the source"
         )
     plane = signal.plane or source.plane
-    if plane != source.plane and source.coupling is None:
+    launched = plane == "fibre" and fibre is not None and source.divergence_parallel is not None
+    if plane != source.plane and source.coupling is None and not launched:
+        instead = ", or [fibre] and the divergence of its beam" if plane == "fibre" else ""
         yield Finding(
             ("signal", "plane"),
-            f"the source states its power at the {source.plane}; its coupling is needed for the {plane}",
+            f"the source states its power at the {source.plane}; its coupling is needed for the {plane}{instead}",
         )
     if signal.power is not None and plane == source.plane and signal.power.high > source.power_max:
         limit = write(source.power_max, "W")
@@ -117,9 +136,10 @@ class LaserDriverRequest(LaserRequest):
     transistor: Annotated[BipolarData | MosfetData, Field(discriminator="kind")]
     amplifier: OpAmpData
     reference: ReferenceData
+    conditions: LaserConditions
 
     checks: ClassVar[tuple[Check, ...]] = (
         Check(("source", "signal", "conditions"), _in_reach),
-        Check(("source", "signal"), _within_source),
+        Check(("source", "signal", "fibre"), _within_source),
         Check(("amplifier", "conditions"), amplifier_supplied),
     )

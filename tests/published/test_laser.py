@@ -9,6 +9,14 @@ import pytest
 
 from opto_ckt.constants import ZERO_CELSIUS
 from opto_ckt.formulas.laser import current_for_power, optical_power
+from opto_ckt.formulas.laser_cavity import (
+    cavity_threshold,
+    current_for_photons,
+    mirror_loss,
+    mode_spacing,
+    photon_lifetime,
+    threshold_density,
+)
 from opto_ckt.formulas.laser_dynamics import (
     intensity_noise,
     largest_bandwidth,
@@ -111,6 +119,39 @@ def test_harmonic_of_a_curved_characteristic():
     ratio = second_harmonic(curvature=0.005, slope=slope, amplitude=5e-3)
     assert ratio * slope * 5e-3 == printed("3.125e-8")
     assert 10 * log10(ratio) == printed("-35.05")
+
+
+def test_kumar_deen_3_7():
+    """S. Kumar & M. J. Deen, Fiber Optic Communications, Ex. 3.7 (p. 130).
+
+    The currents printed there are wrong; those here are recomputed, the photon lifetime is as printed.
+    """
+    loss = 4600.0 + mirror_loss(length=500e-6, reflection=0.65, other_reflection=0.65)
+    lifetime = photon_lifetime(index=3.5, loss=loss)
+    assert lifetime == printed("2.14e-12")
+    volume = 3e-6 * 0.3e-6 * 500e-6
+    onset = cavity_threshold(volume=volume, density=8e23, lifetime=1e-9)
+    assert onset == printed("0.0577")
+    current = current_for_photons(threshold=onset, volume=volume, photon_density=8.5e21, photon_lifetime=lifetime)
+    assert current == printed("0.3444")
+
+
+def test_kumar_deen_3_11():
+    """Kumar & Deen, Ex. 3.11 (p. 135): gain of 4280 a metre, 5.72e23 carriers a cubic metre."""
+    loss = 1000.0 + mirror_loss(length=320e-6, reflection=0.35, other_reflection=0.35)
+    assert loss == pytest.approx(4280, abs=1)  # 4280.69, printed with the last digit cut off
+    lifetime = photon_lifetime(index=3.3, loss=loss)
+    assert threshold_density(transparency_density=3.47e23, gain_slope=1.73e-12, photon_lifetime=lifetime) == printed(
+        "5.72e23"
+    )
+
+
+def test_neighbouring_modes_hold_one_half_wave_more():
+    """Another road: a cavity of 500 µm counted in half waves about 850 nm."""
+    optical = 2 * 3.7 * 500e-6
+    order = optical / 850e-9
+    apart = optical / (order - 0.5) - optical / (order + 0.5)
+    assert mode_spacing(wavelength=850e-9, index=3.7, length=500e-6) == near(apart, rel=1e-6)
 
 
 LASER = {"thermal_resistance": 100.0, "turn_on_voltage": 0.95, "series_resistance": 6.0}

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from math import cos, log10, pi, radians
 
+import numpy as np
 import pytest
 
 from opto_ckt.formulas.eye_safety import (
@@ -15,14 +16,18 @@ from opto_ckt.formulas.eye_safety import (
 )
 from opto_ckt.formulas.launch import (
     fresnel_reflection,
+    graded_coupling,
     lambertian_coupling,
     launch_ratio,
+    lobe_coupling,
     lobe_exponent,
+    mismatch_coupling,
     mode_radius,
     offset_coupling,
     overfilled_share,
     radiance_coupling,
     tilt_coupling,
+    waist_of_divergence,
 )
 from tests.near import near
 from tests.published.printed import printed
@@ -69,6 +74,61 @@ def test_keiser_5_1():
 
 def test_an_emitter_twice_the_core_gives_a_quarter():
     assert overfilled_share(core=25e-6, emitter=50e-6) == near(0.25)
+
+
+def across(integrand):
+    """Integral over 40 µm either side, by steps."""
+    at = np.linspace(-40e-6, 40e-6, 20_001)
+    return np.trapezoid(integrand(at), at)
+
+
+def mode(radius, offset=0.0):
+    return lambda at: np.exp(-(((at - offset) / radius) ** 2))
+
+
+@pytest.mark.parametrize(("radius", "other"), [(4.6e-6, 5.2e-6), (0.8e-6, 4.6e-6), (4.6e-6, 4.6e-6)])
+def test_mismatch_is_the_overlap_of_two_modes(radius, other):
+    """Another road: the overlap integral of the fields, by steps; so is an offset of equal ones."""
+    first, second = mode(radius), mode(other)
+    overlap = across(lambda at: first(at) * second(at)) ** 2
+    overlap /= across(lambda at: first(at) ** 2) * across(lambda at: second(at) ** 2)
+    assert mismatch_coupling(mode_radius=radius, other_radius=other) == near(overlap)
+    aside = mode(radius, 2e-6)
+    moved = (across(lambda at: first(at) * aside(at)) / across(lambda at: first(at) ** 2)) ** 2
+    assert offset_coupling(offset=2e-6, mode_radius=radius) == near(moved)
+
+
+def test_divergence_is_the_far_field_of_the_waist():
+    """Another road: the Fourier transform of the mode has fallen to half its intensity at half the width."""
+    radius = waist_of_divergence(wavelength=1310e-9, divergence=0.4)
+    field = mode(radius)
+    tilted = across(lambda at: field(at) * np.cos(2 * pi * 0.2 / 1310e-9 * at)) / across(field)
+    assert tilted**2 == near(0.5)
+
+
+@pytest.mark.parametrize("profile", [1.0, 2.0, 8.0])
+@pytest.mark.parametrize("emitter", [20e-6, 50e-6])
+def test_graded_index_takes_the_light_of_its_local_aperture(profile, emitter):
+    """Another road: rings of the emitter, each within the aperture at its radius; reference: half of a step's."""
+    radius = np.linspace(0, emitter / 2, 20_001)
+    local = 0.2**2 * (1 - (radius / 25e-6) ** profile)
+    rings = np.trapezoid(local * radius, radius) / np.trapezoid(radius, radius)
+    found = graded_coupling(numerical_aperture=0.2, emitter=emitter, core=50e-6, profile=profile)
+    assert found == near(rings)
+    assert graded_coupling(numerical_aperture=0.2, emitter=50e-6, core=50e-6, profile=2.0) == near(0.02)
+
+
+@pytest.mark.parametrize("exponent", [1.0, 10.0, 182.0])
+def test_a_lobe_within_the_aperture(exponent):
+    """Another road: the lobe integrated over the cone; a Lambertian one gives the square of the aperture."""
+    angle = np.linspace(0, np.arcsin(0.2), 20_001)
+    everything = np.linspace(0, pi / 2, 200_001)
+
+    def light(at):
+        return np.trapezoid(np.cos(at) ** exponent * np.sin(at), at)
+
+    assert lobe_coupling(numerical_aperture=0.2, exponent=exponent) == near(light(angle) / light(everything))
+    assert lobe_coupling(numerical_aperture=0.2, exponent=1.0) == near(lambertian_coupling(numerical_aperture=0.2))
 
 
 @pytest.mark.parametrize(

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import numpy as np
 
+from opto_ckt.circuits.drivers import launch
 from opto_ckt.circuits.drivers.laser import safety
 from opto_ckt.circuits.drivers.side import SIDES, side_of
 from opto_ckt.circuits.drivers.warmth import heat
@@ -17,7 +18,7 @@ REVERSE_CURRENT = 10e-3  #: through D2 when the laser is probed the wrong way ro
 
 def about_the_driver(values: Values, request: LaserDriverRequest, brightest: float) -> list[str]:
     """Cautions for people and laser, then advice on the pins, the diode and the disable input."""
-    found = [*safety(request, brightest)]
+    found = [*safety(request, brightest), *launch.advice(request)]
     found += _hot(values, request)
     if SIDES[request.source.common] is None:
         found.append("the laser floats: keep its case off ground, or insulate it")

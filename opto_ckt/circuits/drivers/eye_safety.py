@@ -6,6 +6,7 @@ from typing import NamedTuple
 
 import numpy as np
 
+from opto_ckt.circuits.drivers import launch
 from opto_ckt.formulas.eye_safety import (
     INFRARED,
     LONGEST,
@@ -62,9 +63,12 @@ def advice(values: Values, request: LaserRequest, fault: float) -> tuple[str, ..
 def _carried(request: LaserRequest) -> float:
     """Power where the light leaves the equipment over that at the plane of the sheet; from a facet all of it. [1]"""
     ends_in_fibre = request.fibre is not None or request.signal.plane == "fibre"
-    if request.source.plane == "facet" and ends_in_fibre and request.source.coupling is not None:
+    if request.source.plane == "fibre" or not ends_in_fibre:
+        return 1.0
+    if request.source.coupling is not None:
         return request.source.coupling.high
-    return 1.0
+    launched = launch.launched(request)
+    return 1.0 if launched is None else launched.high
 
 
 def _seen(request: LaserRequest, wavelength: float) -> Seen:

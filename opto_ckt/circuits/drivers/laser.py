@@ -7,6 +7,7 @@ from typing import NamedTuple
 import numpy as np
 
 from opto_ckt.circuit import Bench
+from opto_ckt.circuits.drivers import launch
 from opto_ckt.derivation import Derivation
 from opto_ckt.formulas import laser
 from opto_ckt.formulas.formula import Real
@@ -19,7 +20,7 @@ from opto_ckt.topology import SHORT
 from opto_ckt.units import write
 
 READ = frozenset(
-    {"slope_efficiency", "turn_on_voltage", "series_resistance", "capacitance", "junction_to_case", "coupling"}
+    {"slope_efficiency", "turn_on_voltage", "series_resistance", "capacitance", "junction_to_case", "coupling", "rin"}
 )
 """Figures of the laser's sheet that a steady current depends on; the others are held at nominal."""
 
@@ -64,6 +65,9 @@ def laser_limits(request: LaserRequest) -> dict[str, Limit]:
     found["D1.slope_efficiency"] = Limit(slope.nominal, slope.low * (1 + ageing.slope), slope.high, slope.assumed)
     if data.forward is not None:
         found["D1.forward_position"] = Limit(0.0, -1.0, 1.0)
+    launched = launch.launched(request)
+    if launched is not None:
+        found["D1.coupling"] = launched
     return found
 
 
@@ -138,6 +142,9 @@ def asked_current(request: LaserDriverRequest, derivation: Derivation | None = N
     nominal = {name: limit.nominal for name, limit in request.limits("source").items()}
     values = {f"D1.{name}": value for name, value in nominal.items()} | {"D1.forward_position": 0.0}
     values["D1.threshold_current"] = data.threshold_figure.nominal
+    launched = launch.launched(request)
+    if launched is not None:
+        values["D1.coupling"] = launched.nominal
     power = (0.0 if signal.power is None else signal.power.nominal) / float(coupling(values, request))
     current = float(data.threshold_figure.nominal + power / data.slope_efficiency.nominal)
     junction = request.conditions.temperature.nominal

@@ -25,12 +25,17 @@ def heat(values: Values, request: LaserDriverRequest) -> tuple[Heat, ...]:
     ]
     amplifier = request.amplifier
     if amplifier.junction_to_ambient is not None:
-        warm = values["temperature"] + values["U1.power"] * amplifier.junction_to_ambient.high
+        warm = air_temperature(values) + values["U1.power"] * amplifier.junction_to_ambient.high
         found.append(Heat("U1", values["U1.power"], warm, amplifier.junction_max))
     return tuple(found)
 
 
 def transistor_temperature(values: Values) -> float | Lanes:
-    """Junction of the pass transistor: to the air, else to a case at the temperature. [K]"""
+    """Junction of the pass transistor: to the air, else to a case at its temperature. [K]"""
     name = "Q1.junction_to_ambient" if "Q1.junction_to_ambient" in values else "Q1.junction_to_case"
-    return values["temperature"] + values["Q1.power"] * values[name]
+    return air_temperature(values) + values["Q1.power"] * values[name]
+
+
+def air_temperature(values: Values) -> float | Lanes:
+    """Around the driver: that of the design, or where it is of a cooled case, the air's of its own. [K]"""
+    return values.get("temperature.air", values["temperature"])

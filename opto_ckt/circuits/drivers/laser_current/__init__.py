@@ -65,7 +65,7 @@ CIRCUIT = Circuit(
         "electromagnetic compatibility",
         "class of the laser product: for a competent person, by the local rules",
         "inductance of leads and package of the laser",
-        "relaxation oscillation and intensity noise of the laser",
+        "relaxation oscillation of the laser, and noise of its light near it",
         "feedback of light into the laser",
         "temperature of the transistor on its own voltages; base resistance of a bipolar one",
         "saturation of the filter's inductor",

@@ -9,7 +9,10 @@ import numpy as np
 from opto_ckt.analyses import response, stability
 from opto_ckt.analyses.network import Evaluation
 from opto_ckt.circuit import OnDemand
+from opto_ckt.circuits.drivers import intensity, runaway
 from opto_ckt.circuits.drivers.laser import asked_current, junction_limit
+from opto_ckt.circuits.drivers.laser_figures import LaserFigures, offered
+from opto_ckt.circuits.drivers.pass_transistor import pass_transistor
 from opto_ckt.formulas.reference import parallel_resistance, soft_start_time
 from opto_ckt.limits import Figures, Lanes, Requirement, Values
 from opto_ckt.request import LaserDriverRequest
@@ -19,11 +22,8 @@ NOISE_FREQUENCY = 10e3  #: where densities are stated; common practice, above mo
 NOISE_BAND = (10.0, 10e6)  #: over which noise is summed, common practice [Hz]
 
 
-class LaserCurrentFigures:
+class LaserCurrentFigures(LaserFigures):
     """Each figure as a property, computed when it is first asked for."""
-
-    def __init__(self, values: Values, evaluation: Evaluation, request: LaserDriverRequest) -> None:
-        self._values, self._evaluation, self._request = values, evaluation, request
 
     @cached_property
     def current(self) -> Lanes:
@@ -83,6 +83,28 @@ class LaserCurrentFigures:
         )
 
     @cached_property
+    def runaway_factor(self) -> Lanes:
+        """Loop gain of self-heating if the light were held; at constant current 1 is the peak of the light. [1]"""
+        return runaway.factor(self._values, self._request)
+
+    @cached_property
+    def driver_intensity_noise(self) -> Lanes:
+        """By the current's noise, op amp, reference and resistors in it. [dB/Hz]"""
+        share = pass_transistor(self._request.transistor).share(self._values)
+        noisy = intensity.current_noise(self._values, self._evaluation, noise_frequency(self._request), share)
+        return intensity.driver_noise(noisy, self._values)
+
+    @cached_property
+    def laser_intensity_noise(self) -> Lanes:
+        """By the laser's sheet; nan where it states none. [dB/Hz]"""
+        return intensity.laser_noise(self._values)
+
+    @cached_property
+    def shot_intensity_noise(self) -> Lanes:
+        """Of all the light at the plane asked for. [dB/Hz]"""
+        return intensity.shot_floor(self._values, self._request)
+
+    @cached_property
     def dissipation(self) -> Lanes:
         """Total taken from the supply. [W]"""
         return np.asarray(self._values["supply.positive"] * self._values["supply.current"])
@@ -93,7 +115,7 @@ class LaserCurrentFigures:
         return np.asarray(self._values["D1.junction_temperature"])
 
 
-OFFERS = tuple(name for name, entry in vars(LaserCurrentFigures).items() if isinstance(entry, cached_property))
+OFFERS = offered(LaserCurrentFigures)
 
 
 def figures(values: Values, evaluation: Evaluation, request: LaserDriverRequest) -> Figures:

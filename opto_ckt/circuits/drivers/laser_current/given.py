@@ -31,7 +31,9 @@ def given(request: LaserDriverRequest) -> dict[str, Limit]:
         current = 0.0
     sheets = {"U1": request.limits("amplifier"), "Q1": request.limits("transistor")}
     unread = {f"{ref}.{name}": figure.nominal for ref, sheet in sheets.items() for name, figure in sheet.items()}
+    air = request.conditions.air
     return {
+        **({} if air is None else {"temperature.air": Limit(air.nominal, air.low, air.high)}),
         **{name: Limit(unread[name], unread[name], unread[name]) for name in HELD if name in unread},
         **laser_limits(request),
         "U1.offset_voltage": Limit(0.0, -offset, offset),

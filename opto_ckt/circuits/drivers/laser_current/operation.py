@@ -104,6 +104,7 @@ def _written(
         **given,
         "U1.offset": values["U1.offset"],
         "U1.bias_current": values["U1.bias_current"],
+        **{f"{name}.room": values[name] for name in ("D1.threshold_current", "D1.slope_efficiency")},
         **laser,
         **{f"Q1.{name}": value for name, value in transistor.small_signal(values, current, across).items()},
         "Q1.drain_current": current,

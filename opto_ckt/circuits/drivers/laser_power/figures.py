@@ -9,19 +9,20 @@ import numpy as np
 from opto_ckt.analyses import response, stability
 from opto_ckt.analyses.network import Evaluation
 from opto_ckt.circuit import OnDemand
-from opto_ckt.circuits.drivers.laser import coupling, forward, junction_limit, settle, thermal_resistance
+from opto_ckt.circuits.drivers import runaway as self_heating
+from opto_ckt.circuits.drivers.laser import coupling, junction_limit, settle
 from opto_ckt.circuits.drivers.laser_current import figures as current_figures
+from opto_ckt.circuits.drivers.laser_figures import LaserFigures, offered
 from opto_ckt.circuits.drivers.laser_power import inner
 from opto_ckt.circuits.drivers.laser_power.monitor import beside
 from opto_ckt.circuits.drivers.pass_transistor import pass_transistor
 from opto_ckt.constants import ROOM_TEMPERATURE
-from opto_ckt.formulas import power_loop
+from opto_ckt.formulas import laser_modulation, power_loop
 from opto_ckt.formulas.reference import divided_voltage
 from opto_ckt.limits import Figures, Lanes, Requirement, Values
 from opto_ckt.request import LaserPowerRequest
 
 SETTLED = 0.95  #: of the power, at the end of the start
-STEP = 1e-3  #: of the junction temperature, for the slopes of the laser's laws [K]
 COMFORTABLE = 0.5  #: largest runaway factor, the limit being 1; common practice
 STEADY = 30.0  #: least phase margin of either loop; common practice [°]
 LEAST_ZERO = 1e-3  #: zero level, as a share of the average, below which an extinction ratio is not told
@@ -39,20 +40,10 @@ def loop_gain(values: Values, request: LaserPowerRequest) -> Lanes:
 
 
 def runaway(values: Values, request: LaserPowerRequest) -> Lanes:
-    """Loop gain of self-heating at the light that there is, whatever the laser's laws. [1]"""
-    data, junction = request.source, np.asarray(values["D1.junction_temperature"])
-    power, current = np.asarray(values["D1.power"]), np.asarray(values["D1.current"])
-
-    def current_at(temperature: Lanes) -> Lanes:
-        slope = data.slope_at(temperature, values["D1.slope_efficiency.room"])
-        return np.asarray(data.threshold_at(temperature, values["D1.threshold_current.room"]) + power / slope)
-
-    rising = (current_at(junction + STEP) - current_at(junction - STEP)) / (2 * STEP)
-    line = forward(values, request, current)
-    swelling = line.turn_on + 2 * line.resistance * current
-    factor = thermal_resistance(values, request) * swelling * rising
-    lost = np.isinf(values["needed_current"]) & (power > 0)
-    return np.asarray(np.where(lost, np.maximum(factor, 1.0), factor))
+    """Loop gain of self-heating at the light that there is; at least 1 where the laser does not settle. [1]"""
+    found = self_heating.factor(values, request)
+    lost = np.isinf(values["needed_current"]) & (np.asarray(values["D1.power"]) > 0)
+    return np.asarray(np.where(lost, np.maximum(found, 1.0), found))
 
 
 def clamp_light(values: Values, request: LaserPowerRequest) -> Lanes:
@@ -61,11 +52,10 @@ def clamp_light(values: Values, request: LaserPowerRequest) -> Lanes:
     return np.asarray(settle({**values, **room}, request, np.asarray(values["clamp_current"])).power)
 
 
-class LaserPowerFigures:
+class LaserPowerFigures(LaserFigures):
     """Each figure as a property, computed when it is first asked for."""
 
-    def __init__(self, values: Values, evaluation: Evaluation, request: LaserPowerRequest) -> None:
-        self._values, self._evaluation, self._request = values, evaluation, request
+    _request: LaserPowerRequest
 
     @cached_property
     def optical_power(self) -> Lanes:
@@ -87,7 +77,7 @@ class LaserPowerFigures:
         slope = data.slope_at(ROOM_TEMPERATURE, values["D1.slope_efficiency.room"]) * coupling(values, request)
         return (
             np.asarray(
-                power_loop.modulation_for_extinction(
+                laser_modulation.modulation_for_extinction(
                     power=signal.power.nominal,
                     extinction_ratio=signal.extinction_ratio,
                     mark_density=signal.mark_density,
@@ -104,10 +94,15 @@ class LaserPowerFigures:
         slope, current = self._values["D1.slope_efficiency"], self.modulation_current
         most = (1 - LEAST_ZERO) * power / (density * slope)
         return np.asarray(
-            power_loop.extinction_ratio(
+            laser_modulation.extinction_ratio(
                 power=power, modulation_current=np.minimum(current, most), mark_density=density, slope=slope
             )
         )
+
+    @cached_property
+    def clamp_current(self) -> Lanes:
+        """The most that the integrator's swing lets flow. [A]"""
+        return np.asarray(self._values["clamp_current"])
 
     @cached_property
     def clamp_margin(self) -> Lanes:
@@ -167,7 +162,7 @@ class LaserPowerFigures:
         signal = self._request.signal
         if signal.bit_rate is None:
             return np.full_like(self.current, np.nan)
-        run = power_loop.run_duration(run_length=signal.run_length, bit_rate=signal.bit_rate)
+        run = laser_modulation.run_duration(run_length=signal.run_length, bit_rate=signal.bit_rate)
         crossover = stability.crossover_frequency(self._evaluation)
         return np.asarray(power_loop.loop_droop(bandwidth=crossover, duration=run))
 
@@ -198,7 +193,7 @@ class LaserPowerFigures:
         return np.asarray(self._values["D1.junction_temperature"])
 
 
-OFFERS = tuple(name for name, entry in vars(LaserPowerFigures).items() if isinstance(entry, cached_property))
+OFFERS = offered(LaserPowerFigures)
 
 
 def figures(values: Values, evaluation: Evaluation, request: LaserPowerRequest) -> Figures:
@@ -212,6 +207,7 @@ def implied(request: LaserPowerRequest) -> tuple[Requirement, ...]:
     bounds = [
         Requirement("compliance_margin", "min", 0.0, 0.1),
         Requirement("clamp_margin", "min", 0.0, 0.05),
+        Requirement("clamp_current", "max", data.current_max, data.current_max),
         Requirement("clamp_power", "max", data.power_max, data.power_max),
         Requirement("current", "max", data.current_max, data.current_max),
         Requirement("junction_temperature", "max", junction_limit(request), 10.0),
