@@ -31,6 +31,36 @@ def storage_delay(*, time_constant: Real, drive: Real, removal: Real, edge: Real
     return time_constant * log((drive + removal) / (edge + removal))
 
 
+@source("derived: the charge of a capacitance at a steady current")
+def charging_delay(*, capacitance: Real, forward_voltage: Real, resting_voltage: Real, current: Real) -> Real:
+    r"""Time that the drive takes to charge the junction before any light comes; a pre-bias shortens it.
+
+    .. math:: t_d = \frac{C_j (V_F - V_{pre})}{I}
+
+    Parameters
+    ----------
+    capacitance : C_j. [F]
+    forward_voltage : V_F, lit. [V]
+    resting_voltage : V_pre over the LED while off, 0 without a pre-bias. [V]
+    current : I of the drive. [A]
+
+    Returns
+    -------
+    t_d. [s]
+
+    Notes
+    -----
+    Long where the drive falls as the LED's voltage rises: I is that of the lit LED.
+
+    Examples
+    --------
+    >>> delay = charging_delay(capacitance=60e-12, forward_voltage=1.6, resting_voltage=0.0, current=40e-3)
+    >>> print(f"{delay * 1e9:.1f} ns")
+    2.4 ns
+    """
+    return capacitance * (forward_voltage - resting_voltage) / current
+
+
 @source("the charge that the base holds, from memory: C ΔV ≥ I_B τ_s")
 def storage_capacitance(*, base_current: Real, time_constant: Real, swing: Real) -> Real:
     r"""Speed-up capacitor across the base resistor that carries the stored charge away.

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from math import inf
+
 from opto_ckt.figures import FIGURES, Figure
 from opto_ckt.units import dbm, percent, write
 
@@ -25,7 +27,7 @@ def decibel_text(name: str, value: float) -> str:
     ('-30.0 dBm', '10.0 dB', '')
     """
     figure: Figure = FIGURES[name]
-    if figure.decibel is None or not value > 0:
+    if figure.decibel is None or not 0 < value < inf:
         return ""
     if figure.unit == "W":
         return dbm(value)

@@ -2,13 +2,16 @@
 
 from __future__ import annotations
 
+from collections.abc import Iterator
+from itertools import pairwise
 from typing import Annotated, Any
 
 import numpy as np
 
 from opto_ckt.formulas.formula import Real
 from opto_ckt.parts.curve import forward_voltage
-from opto_ckt.parts.record import Spread, Table, Unit
+from opto_ckt.parts.record import Finding, Spread, Table, Unit
+from opto_ckt.units import write
 
 
 class ForwardPoint(Table):
@@ -16,6 +19,18 @@ class ForwardPoint(Table):
 
     current: Annotated[float, Unit("A", "20 mA")]
     voltage: Annotated[Spread, Unit("V", "1.6 V")]
+
+
+def rising(forward: tuple[ForwardPoint, ...]) -> Iterator[Finding]:
+    """What is wrong with points of which a larger current does not take more voltage."""
+    for lower, upper in pairwise(forward):
+        if upper.voltage.nominal <= lower.voltage.nominal:
+            yield Finding(
+                ("forward",),
+                f"{write(upper.voltage.nominal, 'V')} at {write(upper.current, 'A')} is not above"
+                f" {write(lower.voltage.nominal, 'V')} at {write(lower.current, 'A')}: a forward voltage rises with"
+                " the current",
+            )
 
 
 def voltage_through(points: tuple[ForwardPoint, ...], current: Real, position: Real = 0.0) -> Any:

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Mapping
+from collections.abc import Callable, Iterator, Mapping
 from types import MappingProxyType
 from typing import Annotated, Any, ClassVar, Literal
 
@@ -11,8 +11,22 @@ import numpy as np
 from opto_ckt.constants import ROOM_TEMPERATURE
 from opto_ckt.formulas.formula import Real
 from opto_ckt.parts.curve import along
-from opto_ckt.parts.forward import ForwardPoint, voltage_through
-from opto_ckt.parts.record import Assumed, Choice, Coefficient, EitherUnit, Points, Record, Sheet, Spread, Table, Unit
+from opto_ckt.parts.forward import ForwardPoint, rising, voltage_through
+from opto_ckt.parts.record import (
+    Assumed,
+    Check,
+    Choice,
+    Coefficient,
+    EitherUnit,
+    Finding,
+    Points,
+    Record,
+    Sheet,
+    Spread,
+    Table,
+    Unit,
+)
+from opto_ckt.units import write
 
 
 class PowerPoint(Table):
@@ -20,6 +34,17 @@ class PowerPoint(Table):
 
     current: Annotated[float, Unit("A", "60 mA")]
     power: Annotated[Spread, Unit("W", "-15 dBm")]
+
+
+def _less_than_fed(forward: tuple[ForwardPoint, ...], power: tuple[PowerPoint, ...]) -> Iterator[Finding]:
+    for point in power:
+        fed = point.current * float(voltage_through(forward, point.current))
+        if point.power.nominal >= fed:
+            yield Finding(
+                ("power",),
+                f"{write(point.power.nominal, 'W')} of light at {write(point.current, 'A')} is no less than the"
+                f" {write(fed, 'W')} fed into the LED",
+            )
 
 
 class LedData(Record):
@@ -52,6 +77,7 @@ class LedData(Record):
     junction_to_ambient: Annotated[Spread, Unit("K/W", "300 K/W"), Sheet("thermal resistance, junction to ambient")]
     junction_max: Annotated[float, Unit("°C", "110 °C", "any"), Sheet("maximum junction temperature")]
 
+    checks = (Check(("forward",), rising), Check(("forward", "power"), _less_than_fed))
     choices = (Choice("the speed", (("lifetime",), ("optical_rise_time",))),)
 
     def forward_voltage_at(self, current: Real, temperature: Real = ROOM_TEMPERATURE, position: Real = 0.0) -> Any:

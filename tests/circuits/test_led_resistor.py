@@ -190,3 +190,13 @@ def test_the_root_of_a_falling_function_agrees_with_another_road() -> None:
     lit = exact > 1e-6 * voltage / resistance
     assert lit.mean() > 0.9
     np.testing.assert_allclose(found[lit], np.asarray(exact)[lit], rtol=1e-6)
+
+
+@pytest.mark.parametrize(
+    ("name", "pattern"),
+    [("led-resistor", "current = "), ("led-switch", "current   = "), ("led-linear", "current   +=")],
+)
+def test_light_beyond_what_the_led_gives_is_infeasible(name: str, pattern: str) -> None:
+    """36 µW at its current_max of 80 mA with a junction at 25 °C by the sheet; less, being warm."""
+    with pytest.raises(InfeasibleError, match=r"1\.00 mW are asked for: a typical LED gives 3\d\.\d µW at its"):
+        sized(name, (pattern, 'power = "1 mW"'))

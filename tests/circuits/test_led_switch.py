@@ -139,7 +139,12 @@ def test_a_pre_bias_costs_contrast() -> None:
     result = sized(NAME, *HASTENED)
     low, nominal, high = figure(result, "extinction_ratio")
     assert low < nominal < high
-    assert not [found for found in sized(NAME).figures if found.name == "extinction_ratio"]
+
+
+def test_dark_without_a_pre_bias_meets_any_contrast() -> None:
+    result = sized(NAME, ("bandwidth ", 'extinction_ratio = { min = "10" }'))
+    assert figure(result, "extinction_ratio") == (np.inf, np.inf, np.inf)
+    assert result.verdict == "met"
 
 
 def test_faults_say_what_limits_the_current() -> None:

@@ -140,3 +140,15 @@ def test_power_of_a_hot_led(coefficient: str, share: float):
     part = led(power_temperature=coefficient)
     assert part.power_at(50e-3, ROOM_TEMPERATURE + 50) == near(10e-6 * share)
     assert part.power_at(50e-3, ROOM_TEMPERATURE) == near(10e-6)
+
+
+def test_a_forward_voltage_that_falls_with_current_is_refused():
+    """Points are put in order of their currents first."""
+    points = [{"current": "60 mA", "voltage": "1.7 V"}, {"current": "5 mA", "voltage": "1.8 V"}]
+    with pytest.raises(ValueError, match=r"1\.70 V at 60\.0 mA is not above 1\.80 V at 5\.00 mA"):
+        led(forward=points)
+
+
+def test_more_light_than_power_fed_into_the_led_is_refused():
+    with pytest.raises(ValueError, match=r"1\.00 W of light at 50\.0 mA is no less than the 6\d\.\d mW fed"):
+        led(power=[{"current": "50 mA", "power": "1 W"}])

@@ -9,6 +9,7 @@ import numpy as np
 from opto_ckt.circuits.drivers.laser import INVISIBLE_FROM
 from opto_ckt.circuits.drivers.root import falling_root
 from opto_ckt.constants import BOLTZMANN, ELEMENTARY_CHARGE, ROOM_TEMPERATURE
+from opto_ckt.errors import InfeasibleError
 from opto_ckt.formulas.diode import DiodeLaw, fit
 from opto_ckt.formulas.formula import Real
 from opto_ckt.limits import Lanes, Limit, Values
@@ -140,12 +141,24 @@ def nominal(request: LedDriverRequest, temperature: float | None = None, *, forw
 
 
 def asked_current(request: LedDriverRequest) -> float:
-    """Current asked for, or that which gives the power asked for in a typical LED at the typical temperature. [A]"""
+    """Current asked for, or that which gives the power asked for in a typical LED at the typical temperature. [A]
+
+    Raises
+    ------
+    InfeasibleError : no current that the LED bears gives the power.
+    """
     if request.signal.current is not None:
         return request.signal.current.nominal
     wanted = 0.0 if request.signal.power is None else request.signal.power.nominal
     values = nominal(request)
     low, high = 0.0, request.source.current_max
+    most = float(emitted(values, request, high, heated(values, request, high)[1]))
+    if most < wanted:
+        raise InfeasibleError(
+            f"{write(wanted, 'W')} are asked for: a typical LED gives {write(most, 'W')} at its current_max of"
+            f" {write(high, 'A')}",
+            [f"signal.power of at most {write(most, 'W')}", "a brighter LED, or one with a higher current_max"],
+        )
     for _ in range(HALVINGS):
         middle = (low + high) / 2
         _, junction = heated(values, request, middle)
@@ -163,3 +176,19 @@ def safety(request: LedDriverRequest, brightest: float) -> tuple[str, ...]:
         " not look into a bright LED or a fibre end; whether it harms is for a competent person to find by the local"
         " rules",
     )
+
+
+def unstated(request: LedDriverRequest) -> tuple[str, ...]:
+    """What the sheet leaves open and is taken not to change with temperature."""
+    data = request.source
+    open_figures = [
+        name
+        for name, open_ in (
+            ("forward_voltage_temperature", data.forward_voltage_temperature == 0),
+            ("power_temperature", data.power_temperature is None),
+        )
+        if open_
+    ]
+    if not open_figures:
+        return ()
+    return (f"the LED's sheet gives no {' and no '.join(open_figures)}: taken as the same at every temperature",)

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from math import inf
+
 from opto_ckt.circuits.drivers.led import heated, nominal
 from opto_ckt.circuits.drivers.spread import resistor_spread
 from opto_ckt.derivation import Derivation
@@ -18,7 +20,12 @@ def largest_current(request: LedDriverRequest, *others: float | None) -> float:
 
 
 def least_resistance(
-    request: LedDriverRequest, derivation: Derivation, most: float, voltage: float, drop: float
+    request: LedDriverRequest,
+    derivation: Derivation,
+    most: float,
+    voltage: float,
+    drop: float,
+    shunt: float = inf,
 ) -> float:
     """Resistance that keeps the largest current where the LED takes least, the resistor's own spread in it. [Ω]
 
@@ -27,6 +34,7 @@ def least_resistance(
     most : current allowed. [A]
     voltage : highest over switch, resistor and LED. [V]
     drop : least of what else is in the way, at that current. [V]
+    shunt : resistance beside the LED, whose current flows through the resistance too. [Ω]
     """
     ends = request.conditions.temperature
     forward = min(float(heated(nominal(request, end, forward=-1.0), request, most)[0]) for end in (ends.low, ends.high))
@@ -37,6 +45,6 @@ def least_resistance(
         supply=voltage,
         switch_drop=drop,
         forward_voltage=forward,
-        current=most,
+        current=most + forward / (shunt * (1 + resistor_spread(request))),
     )
     return max(least, 0.0) / (1 - resistor_spread(request))

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import numpy as np
 
-from opto_ckt.circuits.drivers.led import asked_current, safety
+from opto_ckt.circuits.drivers.led import asked_current, safety, unstated
 from opto_ckt.circuits.drivers.led_linear.harmonics import roll_off
 from opto_ckt.formulas.driver import output_current_noise
 from opto_ckt.formulas.reference import parallel_resistance
@@ -17,7 +17,7 @@ MISFIT = 0.05  #: of the power, from which on the law of the roll-off is said to
 
 def remarks(values: Values, limits: Limits, request: LedLinearRequest) -> tuple[str, ...]:
     """Cautions for people and LED, then advice that depends on the values."""
-    found = [*safety(request, float(np.max(values["D1.emitted_power"])))]
+    found = [*safety(request, float(np.max(values["D1.emitted_power"]))), *unstated(request)]
     limit = write(request.source.reverse_voltage_max, "V")
     found.append(f"the LED takes {limit} the wrong way round: a supply reversed destroys it")
     swing = asked_current(request) * request.signal.modulation_index * float(np.median(values["R1"]))

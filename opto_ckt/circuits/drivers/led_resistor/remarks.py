@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import numpy as np
 
-from opto_ckt.circuits.drivers.led import law_of, safety
+from opto_ckt.circuits.drivers.led import law_of, safety, unstated
 from opto_ckt.circuits.drivers.led_resistor.structure import feed_of
 from opto_ckt.limits import Limits, Values
 from opto_ckt.request import LedDriverRequest
@@ -16,7 +16,7 @@ MISFIT = 0.02  #: of the forward voltage, from which on the diode law is said to
 
 def remarks(values: Values, limits: Limits, request: LedDriverRequest) -> tuple[str, ...]:
     """Cautions for people and LED, then advice that depends on the values."""
-    found = [*safety(request, float(np.max(values["D1.emitted_power"])))]
+    found = [*safety(request, float(np.max(values["D1.emitted_power"]))), *unstated(request)]
     current = np.asarray(values["D1.current"], dtype=float)
     spread = float(np.max(current) / np.min(current)) - 1
     if spread > LOOSE:

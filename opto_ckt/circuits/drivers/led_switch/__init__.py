@@ -20,6 +20,7 @@ from opto_ckt.circuits.drivers.led_figures import noise_band, noise_frequency
 from opto_ckt.circuits.drivers.led_switch import (
     faults,
     figures,
+    limits,
     loads,
     operation,
     remarks,
@@ -39,6 +40,7 @@ CIRCUIT = Circuit(
     propose=sizing.propose,
     bias=operation.bias,
     figures=figures.figures,
+    refused=limits.refused,
     implied=figures.implied,
     stresses=loads.stresses,
     heat=loads.heat,

@@ -12,6 +12,7 @@ from opto_ckt.circuit import OnDemand
 from opto_ckt.circuits.drivers import led_figures
 from opto_ckt.circuits.drivers.led import RISE
 from opto_ckt.circuits.drivers.led_figures import LedFigures
+from opto_ckt.circuits.drivers.led_switch import limits
 from opto_ckt.formulas.switching import sweep_out_time
 from opto_ckt.limits import Figures, Lanes, Requirement, Values
 from opto_ckt.request import LedSwitchRequest
@@ -22,11 +23,11 @@ class LedSwitchFigures(LedFigures):
 
     @cached_property
     def extinction_ratio(self) -> Lanes:
-        """Light while on over light while off; nan without a pre-bias, which leaves none. [1]"""
+        """Light while on over light while off; infinite without a pre-bias, which leaves none. [1]"""
         lit = np.asarray(self._values["D1.emitted_power"])
-        off = np.asarray(self._values.get("off.power", np.nan))
+        off = np.asarray(self._values.get("off.power", 0.0))
         with np.errstate(divide="ignore", invalid="ignore"):
-            return np.where(off > 0, lit / off, np.nan)
+            return np.where(off > 0, lit / off, np.inf)
 
     @cached_property
     def peaking(self) -> Lanes:
@@ -76,11 +77,5 @@ def figures(values: Values, evaluation: Evaluation, request: LedSwitchRequest) -
 
 
 def implied(request: LedSwitchRequest) -> tuple[Requirement, ...]:
-    """What every LED needs; the switch is driven well; the first current of a step is one that the LED bears."""
-    data = request.source
-    most = data.pulse_current_max or data.current_max
-    return (
-        *led_figures.implied(request),
-        Requirement("overdrive", "min", 1.0, 0.5),
-        Requirement("peak_current", "max", most, most),
-    )
+    """What every LED needs, and what LED and switch bear."""
+    return (*led_figures.implied(request), *limits.bounds(request))

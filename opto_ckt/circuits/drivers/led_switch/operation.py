@@ -111,7 +111,11 @@ def _peak(values: Values, request: LedSwitchRequest, voltage: Lanes, switch: Lan
 def _off(values: Values, request: LedSwitchRequest, supply: Lanes, series: Lanes) -> dict[str, float | Lanes]:
     """Current and light while the switch is open: what the pre-bias resistor lets through."""
     if "R6" not in values:
-        return {}
+        return {"off.voltage": 0.0}
     current, _ = _through(values, request, supply, series, np.asarray(values["R6"], dtype=float))
-    _, junction = heated(values, request, current)
-    return {"off.current": current, "off.power": emitted(values, request, current, junction)}
+    voltage, junction = heated(values, request, current)
+    return {
+        "off.current": current,
+        "off.power": emitted(values, request, current, junction),
+        "off.voltage": voltage,
+    }

@@ -5,17 +5,17 @@ from __future__ import annotations
 from math import inf, sqrt
 
 from opto_ckt.circuit import Bench, Fitted
-from opto_ckt.circuits.drivers.led import asked_current, heated, law_of, nominal
+from opto_ckt.circuits.drivers.led import heated, law_of, nominal
 from opto_ckt.circuits.drivers.led_sizing import largest_current, least_resistance
+from opto_ckt.circuits.drivers.led_switch.drive import DriveSizing
+from opto_ckt.circuits.drivers.led_switch.limits import switch_current
 from opto_ckt.circuits.drivers.led_switch.structure import is_peaked, peaking_gain
 from opto_ckt.constants import BOLTZMANN, ELEMENTARY_CHARGE
 from opto_ckt.derivation import Derivation
 from opto_ckt.errors import InfeasibleError
 from opto_ckt.formulas import driver, led, switching
-from opto_ckt.parts.transistor import BipolarData
-from opto_ckt.preferred import Series, neighbours
 from opto_ckt.request import LedSwitchRequest
-from opto_ckt.units import percent, write
+from opto_ckt.units import write
 
 FORMULAS = (
     driver.series_resistance,
@@ -30,12 +30,6 @@ FORMULAS = (
     led.electrical_bandwidth,
     led.optical_bandwidth,
 )
-FORCED_GAIN = 10.0  #: collector over base current of a sure switch, common practice [1]
-OVERDRIVE = 2.0  #: least base drive over what saturates the least gain, common practice [1]
-BLEED_SHARE = 0.1  #: of the base drive that the bleed takes, common practice
-PULL_DOWN = 100e3  #: keeps a gate low while nothing drives it, common practice [Ω]
-GATE_SHARE = 0.25  #: of the LED's rise time that the gate may take, common practice
-LEAST_GATE = 10.0  #: damps the gate, common practice [Ω]
 SPARE = 1.15  #: peaking beyond the bandwidth asked for: capacitances of LED and stray ends take their part
 
 
@@ -53,28 +47,8 @@ def propose(request: LedSwitchRequest, derivation: Derivation, bench: Bench) -> 
     return tuple(sizing.parts.values())
 
 
-class _Sizing:
-    """Parts in the order in which they are sized; what the design file fixes is kept."""
-
-    def __init__(self, request: LedSwitchRequest, derivation: Derivation, bench: Bench) -> None:
-        self.request, self.derivation, self.bench = request, derivation, bench
-        self.current = asked_current(request)
-        self.bipolar = isinstance(request.transistor, BipolarData)
-        voltage, junction = heated(nominal(request), request, self.current)
-        self.forward, self.junction = float(voltage), float(junction)
-        self.swept = request.signal.sweep_out or 0.0
-        self.parts: dict[str, Fitted] = {}
-
-    def fit(self, ref: str, exact: float, low: float = 0.0, high: float = inf, stock: str = "resistors") -> None:
-        """One part in its window; where the window holds none of its series, the two values next to it."""
-        series: Series = getattr(self.request.preferred, stock).series
-        fixed = self.request.fixed.get(ref)
-        if fixed is not None:
-            self.derivation.note(ref, "fixed in the design file")
-            self.parts[ref] = Fitted(ref, fixed, series, fixed=True)
-            return
-        near = neighbours(exact, series, 2, low, high) or neighbours(exact, series, 1, 0.0, inf)
-        self.parts[ref] = Fitted(ref, exact, series, low=min(near), high=max(near))
+class _Sizing(DriveSizing):
+    """Parts in the order in which they are sized: LED and what is in series, the drive, what hastens them."""
 
     def series(self) -> None:
         """R1, and with a peaked current R4 and C2: what the supply leaves at the current, shared out."""
@@ -112,10 +86,11 @@ class _Sizing:
 
     def _least(self) -> float:
         """Series resistance that keeps the largest current at the worst corner. [Ω]"""
-        most = largest_current(self.request)
+        most = largest_current(self.request, switch_current(self.request))
         drop = self.bench.low("Q1.saturation_voltage") if self.bipolar else most * self.bench.low("Q1.on_resistance")
         voltage = self.bench.high("supply.positive")
-        return least_resistance(self.request, self.derivation, most, voltage, drop)
+        shunt = self.request.fixed.get("R5", self.forward / self.swept) if self.swept else inf
+        return least_resistance(self.request, self.derivation, most, voltage, drop, shunt)
 
     def _peaked(self, whole: float, channel: float) -> None:
         """R1 and R4 share the series resistance, C2 lies across R4: zero on the LED's pole.
@@ -160,96 +135,24 @@ class _Sizing:
         )
         self.fit("C2", capacitance, stock="capacitors")
 
-    def drive(self) -> None:
-        """R2 and R3: the base driven well into saturation, or the gate damped and held low."""
-        if self.bipolar:
-            self._base()
-            return
-        quick = 2.197 * self.bench.nominal("D1.lifetime") * GATE_SHARE
-        charge = self.bench.high("Q1.input_capacitance")
-        exact = max(quick / (2.2 * charge) - self.bench.nominal("U1.source_resistance"), LEAST_GATE)
-        self.derivation.note(
-            "R2", f"charges {write(charge, 'F')} in {write(quick, 's')}, a quarter of the LED's rise; common practice"
-        )
-        self.fit("R2", exact, high=1.3 * exact)
-        self.derivation.note("R3", "common practice: the switch stays open while nothing drives it")
-        self.fit("R3", PULL_DOWN)
-
-    def _base(self) -> None:
-        """Base current for a forced gain, the bleed's share on top, at the least drive.
-
-        Raises
-        ------
-        InfeasibleError : the logic output does not reach the base-emitter voltage with anything to spare.
-        """
-        least_gain = self.bench.low("Q1.current_gain")
-        forced = min(FORCED_GAIN, least_gain / OVERDRIVE)
-        level, junction = self.bench.low("U1.high"), self.bench.high("Q1.base_emitter_voltage")
-        if level <= junction:
-            raise InfeasibleError(
-                f"the logic output's {write(level, 'V')} does not reach the transistor's {write(junction, 'V')}",
-                ["a logic_output with a higher level", "a MOSFET of low threshold"],
-            )
-        collector = largest_current(self.request) + self.swept
-        whole = self.derivation.compute(
-            "R2",
-            driver.base_resistance,
-            reason=f"forced gain {forced:.3g} at {write(collector, 'A')}, {percent(BLEED_SHARE)} more for R3, the"
-            " output's own resistance off it",
-            drive=level,
-            base_emitter_voltage=junction,
-            collector_current=collector * (1 + BLEED_SHARE),
-            forced_gain=forced,
-        )
-        exact = whole - self.bench.high("U1.source_resistance")
-        if exact <= 0:
-            raise InfeasibleError(
-                f"the logic output's own {write(self.bench.high('U1.source_resistance'), 'Ω')} leaves too little base"
-                f" current for {write(collector, 'A')}",
-                ["a stronger logic_output", "a transistor of higher current_gain, or a MOSFET"],
-            )
-        self.fit("R2", exact, low=0.85 * exact, high=exact)
-        bleed = junction / (BLEED_SHARE * collector / forced)
-        self.derivation.note("R3", f"bleeds {percent(BLEED_SHARE)} of the base drive; common practice")
-        self.fit("R3", bleed)
-
     def extras(self) -> None:
         """C1, R5 and R6, each where it is asked for."""
         signal = self.request.signal
         if signal.speed_up and self.bipolar:
-            self._speed_up()
+            self.speed_up()
         if signal.sweep_out is not None:
             self.derivation.note("R5", f"draws {write(signal.sweep_out, 'A')} out of the LED at its forward voltage")
             self.fit("R5", self.forward / signal.sweep_out)
         if signal.pre_bias is not None:
             self._pre_bias(signal.pre_bias)
 
-    def _speed_up(self) -> None:
-        """C1 carries the stored charge away.
+    def _pre_bias(self, wanted: float) -> None:
+        """R6 lets a little current through while the switch is open.
 
         Raises
         ------
-        InfeasibleError : the transistor's sheet says nothing of its storage.
+        InfeasibleError : the series resistance lets less through.
         """
-        if "Q1.storage_time" not in self.bench.limits:
-            raise InfeasibleError(
-                "a speed-up capacitor is sized by transistor.storage_time", ["transistor.storage_time"]
-            )
-        level, junction = self.bench.nominal("U1.high"), self.bench.nominal("Q1.base_emitter_voltage")
-        swing = level - junction
-        base = swing / (self.parts["R2"].exact + self.bench.nominal("U1.source_resistance"))
-        exact = self.derivation.compute(
-            "C1",
-            switching.storage_capacitance,
-            reason="carries the charge of the saturated base away",
-            base_current=base,
-            time_constant=self.bench.high("Q1.storage_time"),
-            swing=swing,
-        )
-        self.fit("C1", exact, low=exact, stock="capacitors")
-
-    def _pre_bias(self, wanted: float) -> None:
-        """R6 lets a little current through while the switch is open."""
         voltage, _ = heated(nominal(self.request), self.request, wanted)
         shunted = 0.0 if "R5" not in self.parts else float(voltage) / self.parts["R5"].exact
         whole = self.derivation.compute(
@@ -262,4 +165,10 @@ class _Sizing:
             current=wanted + shunted,
         )
         series = self.parts["R1"].exact + (self.parts["R4"].exact if "R4" in self.parts else 0.0)
+        if whole <= series:
+            raise InfeasibleError(
+                f"a pre-bias of {write(wanted, 'A')} asks for {write(whole, 'Ω')} in all, the series resistance is"
+                f" {write(series, 'Ω')} already",
+                [f"signal.pre_bias below {write(wanted * whole / series, 'A')}"],
+            )
         self.fit("R6", whole - series)

@@ -18,6 +18,7 @@ CHANNEL_DRIFT = 5e-3  #: of an on-resistance, relative; 0.4 to 0.7 %/K of small 
 FAINT = 1e-12  #: base current that stands for none [A]
 LEAST_OVER = 0.05  #: gate voltage over the threshold from which on a channel is taken to conduct [V]
 STATED_DRIVE = 10.0  #: sheets state storage at base currents of a tenth of the collector's, either way; common practice
+MOST_EDGE = 0.5  #: of that base current, what just saturates: whatever stores was driven twice over; common practice
 
 
 class Driven(NamedTuple):
@@ -89,18 +90,25 @@ def control_figures(values: Values, request: LedSwitchRequest, state: Driven) ->
     }
 
 
+def time_constant(stored: float | Lanes, gain: float | Lanes) -> Lanes:
+    """That of the base's charge, of which the sheet's storage time is what base currents of a tenth leave. [s]"""
+    return np.asarray(stored / np.log(2 / (1 + np.minimum(STATED_DRIVE / np.asarray(gain), MOST_EDGE))))
+
+
 def storage(values: Values, request: LedSwitchRequest, collector: Lanes, state: Driven) -> Lanes:
     """Time that a bipolar switch goes on conducting once its drive has gone; none where no sheet states it. [s]
 
-    The sheet's storage time gives the time constant; a speed-up capacitor takes the charge away at once.
+    A speed-up capacitor takes its own charge out of the base at once; the rest leaves as without it.
     """
-    if "Q1.storage_time" not in values or values["Q1.storage_time"] is None or "C1" in values:
+    if "Q1.storage_time" not in values or values["Q1.storage_time"] is None:
         return np.zeros_like(np.asarray(collector, dtype=float))
     gain = np.asarray(values["Q1.current_gain"])
-    constant = values["Q1.storage_time"] / np.log(2 / (1 + STATED_DRIVE / gain))
+    constant = time_constant(values["Q1.storage_time"], gain)
     removal = state.control / values["R3"] + np.maximum(state.control - values["U1.low"], 0.0) / (
         values["R2"] + values["U1.sink_resistance"]
     )
     drive = np.maximum(state.base, FAINT)
     edge = np.clip(np.asarray(collector) / gain, FAINT, drive)
+    swing = values["U1.high"] - state.drawn * values["U1.source_resistance"] - values["U1.low"]
+    drive = np.maximum(drive - np.asarray(values.get("C1", 0.0)) * np.maximum(swing, 0.0) / constant, edge)
     return np.asarray(storage_delay(time_constant=constant, drive=drive, removal=removal, edge=edge))
