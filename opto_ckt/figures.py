@@ -120,6 +120,7 @@ _ALL = (
         "extinction_ratio", "W/W", "extinction ratio", "one level over zero level, as a ratio; 10 log in dB", 1.0, 10.0
     ),
     Figure("compliance_margin", "V", "compliance margin", "supply left over at the current, at its worst", 0.1),
+    Figure("clamp_current", "A", "clamp current", "the most that the clamp lets flow, whatever the monitor says", 1e-6),
     Figure("clamp_margin", "1", "clamp margin", "current that the clamp lets flow over that needed, less one", 0.05),
     Figure(
         "clamp_power", "W", "clamp power", "light at the clamp's current, at the plane of the laser's sheet", 1e-9, 10.0

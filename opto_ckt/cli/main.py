@@ -90,7 +90,7 @@ class LazyGroup(click.Group):
 )
 @click.version_option(__version__, message="opto-ckt %(version)s")
 def program() -> None:
-    """Size laser drivers and photodiode receivers from data sheets, exactly and at their corners."""
+    """Size LED and laser drivers and photodiode receivers from data sheets, exactly and at their corners."""
 
 
 def main(arguments: Sequence[str] | None = None) -> NoReturn:

@@ -32,7 +32,7 @@ def pulse_deck(result: Result, scene: Scene, lines: list[str], temperature: str)
 def pulse_times(scene: Scene) -> tuple[float, float, float]:
     """When the trigger rises, when the run ends, and the largest time step. [s]"""
     width, delay = scene.expected["pulse_width"], scene.expected.get("turn_on_time", 0.0)
-    return width, 5 * width + 3 * delay, width / POINTS
+    return width, 7 * width + 3 * delay, width / POINTS
 
 
 def _changed(values: Mapping[str, float]) -> dict[str, float]:

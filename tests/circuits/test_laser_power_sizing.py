@@ -63,7 +63,9 @@ def test_the_current_needed_by_hand() -> None:
     """Aged laser, 60 °C, 0.4 mW with 0.5 dB and the drifts on top: the junction by plain iteration."""
     found = model("laser-power")
     bench, data = found.bench(), found.request.source
-    power = 0.4e-3 * 10**0.05 * (1 + 50e-6 * 45 + 100e-6 * 45 + 0.02)
+    reach = needed_range(found.request, bench)
+    setting = 0.002 * 2.2 * (reach.most / reach.least - 1) / 0.9
+    power = 0.4e-3 * 10**0.05 * (1 + 50e-6 * 45 + 100e-6 * 45 + setting)
     assert most_power(found.request, bench) == near(power, rel=1e-9)
     junction = 333.15
     for _ in range(100):
@@ -110,6 +112,17 @@ def test_the_clamp_lies_between_the_aged_and_the_cold_laser() -> None:
     figures = {figure.name: figure for figure in result.figures}
     assert figures["clamp_margin"].low >= 0.02
     assert figures["clamp_power"].high <= 5e-3
+
+
+def test_where_the_current_is_the_limit_the_clamp_keeps_below_it() -> None:
+    """A laser that stands more light than it ever gives, but 47 mA: the clamp, 21 % wide, fits."""
+    sturdy = (("power_max {18}=", 'power_max = "60 mW"'), ("current_max {16}=", 'current_max = "47 mA"'))
+    weak = (("power  ", 'power = "0.3 mW"'), ("optical_power", ""))
+    figures = {figure.name: figure for figure in sized("laser-power", *sturdy, *weak).figures}
+    assert figures["clamp_current"].high <= 47e-3
+    assert figures["clamp_margin"].low >= 0.02
+    refused = refusal(*sturdy, ("power  ", 'power = "0.5 mW"'))
+    assert "current_max of the laser" in refused.reason
 
 
 def test_the_integrator_s_window_holds_at_every_corner() -> None:
@@ -222,6 +235,25 @@ def test_a_monitor_spread_beyond_one_trimmer_is_refused_with_the_spread_that_is_
 def test_a_drawer_without_a_long_enough_trimmer_is_refused() -> None:
     refused = refusal(("", '[preferred]\ntrimmers = { series = ["1 kΩ", "10 kΩ"] }'))
     assert "no trimmer of [preferred]" in refused.reason
+
+
+@pytest.mark.parametrize(
+    ("fixed", "said"), [('R14 = "6.8 kΩ"', "brightest monitor below"), ('RV1 = "10 kΩ"', "faintest monitor above")]
+)
+def test_fixed_resistors_that_do_not_reach_are_refused(fixed: str, said: str) -> None:
+    assert said in refusal(("", f"[fixed]\n{fixed}")).reason
+
+
+def test_a_monitor_that_does_not_stand_the_supply_is_refused() -> None:
+    refused = refusal(("monitor_reverse_max", 'monitor_reverse_max = "5 V"'))
+    assert "lies across the monitor" in refused.reason
+    assert allowed(refused.remedies, "conditions.supply.positive") == "4.76 V"
+
+
+def test_light_too_faint_for_any_trimmer_names_the_least_that_does() -> None:
+    refused = refusal(("power  ", 'power = "1 µW"'))
+    assert "no trimmer of [preferred]" in refused.reason
+    assert any(remedy.startswith("signal.power ≥ ") for remedy in refused.remedies)
 
 
 def test_a_start_too_short_for_the_data_is_refused() -> None:

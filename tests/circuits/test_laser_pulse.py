@@ -1,47 +1,25 @@
-"""The pulse driver: its pulse by integration and in simulators, its energy, its faults by hand, what it refuses."""
+"""The pulse driver: its pulse by integration and in simulators, its energy, its sizing, its drawing."""
 
 from __future__ import annotations
 
-import re
 from dataclasses import replace
 
 import numpy as np
 import pytest
 from scipy.integrate import solve_ivp
 
-from opto_ckt.errors import InfeasibleError, InputError
 from opto_ckt.outputs import pulse_deck
 from opto_ckt.outputs.crosscheck import crosscheck
+from opto_ckt.outputs.readings import pulse_of
+from opto_ckt.outputs.schematic import schematic
 from opto_ckt.outputs.simulators import run
 from opto_ckt.outputs.spice import deck_of
 from opto_ckt.outputs.wiring import drawing_faults
 from opto_ckt.result import Result, Scene
+from tests.circuits.pulses import BARE, NAME, POWER, SLOW, VARIANTS, Changes
 from tests.circuits.sized import model, read, sized
 from tests.near import near
 
-NAME = "laser-pulse"
-Changes = tuple[tuple[str, str], ...]
-
-SLOW = (("pulse_width  ", 'pulse_width = "60 ns"'),)
-"""So much damping that the discharge does not swing back."""
-
-BARE = (
-    (r"\[diode\] ", ""),
-    ("forward   ", ""),
-    ("reverse_voltage_max = ", ""),
-    ("capacitance         = ", ""),
-    ("pulse_current_max   = ", ""),
-)
-"""No clamp diode."""
-
-CURVED = (
-    ("turn_on_voltage", 'forward = [ { current = "1 A", voltage = "5.2 V" }, { current = "10 A", voltage = "6.9 V" },'),
-    ("series_resistance", '{ current = "40 A", voltage = "11 V" } ]'),
-)
-"""The laser's voltage by listed points."""
-
-POWER = (("current  ", 'power = "70 W"'),)
-VARIANTS = {"swinging": (), "slow": SLOW, "bare": BARE, "curved": CURVED, "power": POWER}
 LADDERS = pytest.mark.parametrize("changes", VARIANTS.values(), ids=VARIANTS)
 
 
@@ -186,129 +164,6 @@ def test_the_bleed_is_as_quick_as_said() -> None:
         assert 0.9 * safe < found.y[0][-1] <= safe * (1 + 1e-6)
 
 
-def test_faults_by_hand() -> None:
-    found = model(NAME)
-    chosen = {part.ref: part.value for part in sized(NAME).parts if part.value}
-    nominal = found.nominal() | chosen
-
-    def reached(case: str) -> dict[str, float]:
-        (fault,) = [fault for fault in found.circuit.faults(found.request) if fault.case == case]
-        overrides = {name: float(np.max(value)) for name, value in fault.overrides.items()}
-        return {name: float(np.max(value)) for name, value in found.biased(nominal | overrides).items()}
-
-    usual = {name: float(np.max(value)) for name, value in found.biased(nominal).items()}
-    stuck = reached("switch stuck on")
-    series = chosen["R1"] + (0.16 + chosen["R3"] + 0.02 + 0.04)  # R2 beside: 0.2 % of the current
-    assert stuck["D1.steady_current"] == near((75.0 - 5.0) / series, rel=5e-3)
-    assert stuck["R1.power"] == near(75.0**2 / chosen["R1"], rel=0.01)
-    assert stuck["D1.optical_power"] == 0.0
-    assert reached("trigger stuck high")["D1.steady_current"] == near(stuck["D1.steady_current"], rel=1e-9)
-    for case in (
-        "switch open",
-        "supply before control, trigger open",
-        "load open",
-        "storage capacitor short",
-        "charging resistor open",
-    ):
-        assert reached(case)["D1.current"] < 1e-3
-        assert reached(case)["D1.optical_power"] == 0.0
-    short = reached("load short")
-    assert short["Q1.current"] > 1.1 * usual["Q1.current"]
-    assert short["D1.peak_power"] == 0.0
-    wild = reached("repetition too fast")
-    assert wild["Q1.current"] < 1e-3
-    assert wild["R1.power"] == near(70.0**2 / chosen["R1"], rel=0.02)  # all that comes through R1 is drawn
-    missing = reached("clamp diode missing")
-    assert missing["D1.reverse_voltage"] == near(usual["recoil.voltage"], rel=1e-12)
-    assert usual["D1.reverse_voltage"] == near(usual["D2.forward_voltage"], rel=1e-12)
-    direct = reached("charging resistor short")
-    assert direct["D1.steady_current"] == near(70.0 / (0.16 + chosen["R3"] + 0.02 + 0.04), rel=2e-3)
-
-
-def test_every_case_is_told_with_its_figures() -> None:
-    said = {fault.case: fault for fault in sized(NAME).faults}
-    assert {case for case, fault in said.items() if not fault.ok} == {
-        "repetition too fast", "charging resistor short", "damping resistor short", "clamp diode missing",
-        "25 K above the hottest asked for",
-    }  # fmt: skip
-    assert "limited by R1" in said["switch stuck on"].result
-    assert re.search(r"R1 takes \d+ mW", said["switch stuck on"].result)
-    assert "reverse_voltage_max" in said["clamp diode missing"].result
-    assert "duty" in said["repetition too fast"].result
-    assert "no current through the laser" in said["load short"].result
-
-
-def test_without_a_clamp_the_laser_s_reverse_voltage_is_missed() -> None:
-    result = sized(NAME, *BARE)
-    assert result.verdict == "missed"
-    (row,) = [row for row in result.requirements if not row.met]
-    assert row.requirement.figure == "reverse_voltage"
-    assert any("no diode across the laser" in said for said in result.cautions)
-    assert "clamp diode missing" not in {fault.case for fault in result.faults}
-
-
-def test_people_are_warned_of_light_voltage_and_charge() -> None:
-    said = " ".join(sized(NAME).cautions)
-    for words in ("invisible", "high voltage, do not touch", "wait, measure, then touch", "competent person"):
-        assert words in said
-
-
-@pytest.mark.parametrize(
-    "changes", [(("supply  ", 'supply = { positive = "40 V", tolerance = "3 %" }'),),
-                (("series_resistance", 'series_resistance = "2 Ω"'),)]
-)  # fmt: skip
-def test_what_would_do_does(changes: Changes) -> None:
-    """A pulse out of reach is refused with figures for supply, width and current, and each of them sizes."""
-    with pytest.raises(InfeasibleError) as refused:
-        sized(NAME, *changes)
-    remedies = {text.split(" ≥ ")[0].split(" ≤ ")[0]: text for text in refused.value.remedies}
-    for key, line in (
-        ("conditions.supply.positive", ("supply  ", 'supply = {{ positive = "{}", tolerance = "3 %" }}')),
-        ("signal.pulse_width", ("pulse_width  ", 'pulse_width = "{}"')),
-        ("signal.current", ("current  ", 'current = "{}"')),
-    ):
-        figure_text = re.split(" [≥≤] ", remedies[key])[1]
-        number, unit = figure_text.split(" ")
-        nudged = float(number) * (1.01 if "≥" in remedies[key] else 0.99)
-        pattern, text = line
-        others = tuple(change for change in changes if change[0] != pattern)
-        assert sized(NAME, *others, (pattern, text.format(f"{nudged:.4g} {unit}")), ("peak_current  ", ""),
-                     ("peak_power  ", "")).parts  # fmt: skip
-
-
-@pytest.mark.parametrize(
-    ("change", "words"),
-    [
-        (("voltage_max   ", 'voltage_max = "60 V"'), "voltage_max of the transistor"),
-        (("gate_voltage_max", 'gate_voltage_max = "5 V"'), "gate_voltage_max"),
-        (("high  ", 'high = "2 V"'), "the transistor turns on from"),
-        (("discharge_time    ", 'discharge_time = "1 ms"'), "it would take the supply"),
-        (("", '[fixed]\nC1 = "1 nF"'), "C1, fixed at 1.00 nF"),
-        (("pulse_current_max        = ", 'pulse_current_max = "20 A"'), "more than the transistor stands"),
-    ],
-)
-def test_what_the_parts_do_not_allow_is_refused(change: tuple[str, str], words: str) -> None:
-    with pytest.raises(InfeasibleError, match=re.escape(words)):
-        sized(NAME, change)
-
-
-@pytest.mark.parametrize(
-    ("change", "words"),
-    [
-        (("current  ", 'current = "50 A"'), "above pulse_current_max 40.0 A"),
-        (("pulse_width  ", 'pulse_width = "200 ns"'), "above pulse_width_max 100 ns"),
-        (("repetition_rate", 'repetition_rate = "200 kHz"'), "duty_max"),
-        (("supply  ", 'supply = { positive = "5 V", tolerance = "3 %" }'), "does not pass the forward voltage"),
-        (("kind  ", 'kind = "pmos"'), "nmos"),
-        (("pulse_width  ", 'pulse_widht = "12 ns"'), "pulse_width"),
-    ],
-)
-def test_what_the_file_must_not_ask_is_told_with_its_line(change: tuple[str, str], words: str) -> None:
-    with pytest.raises(InputError) as refused:
-        sized(NAME, change)
-    assert any(words in str(problem) for problem in refused.value.problems)
-
-
 @pytest.mark.parametrize("changes", [(), BARE], ids=["clamped", "bare"])
 def test_the_drawing_joins_what_the_topology_joins(changes: Changes) -> None:
     topology = model(NAME, *changes).topology
@@ -322,3 +177,37 @@ def test_the_loop_s_inductance_is_the_sum_of_its_parts() -> None:
     assert limit.at("nominal", 0.0) == near(5.2e-9 + 0.4e-9 + 3e-9)
     assert limit.at("low", 0.0) == near(4.8e-9 + 0.8 * 0.4e-9 + 2.4e-9)  # 0.4 nH is given as typ only
     assert read(NAME).request.source.pulse_current_max == 40.0
+
+
+def test_what_swings_back_and_follows_is_simulated_too() -> None:
+    """Little damping, a clamp whose sheet is the deck's diode; the second pulse is small, and its diodes are curved."""
+    points = '{ current = "1 A", voltage = "0.711 V" }, { current = "10 A", voltage = "0.77 V" }'
+    result = sized(
+        NAME,
+        ("supply  ", 'supply = { positive = "50 V", tolerance = "3 %" }'),
+        ("pulse_width  ", 'pulse_width = "14 ns"'),
+        ("forward   ", f"forward = [ {points} ]"),
+    )
+    for scene in result.scenes:
+        current = run(deck_of(result, scene, "pulse"), "ngspice")["tran"]["v(pulse)"]
+        after = current[int(np.argmax(current)) :]
+        assert -float(np.min(after)) == near(scene.values["D2.current"], rel=0.01)
+        second = float(np.max(after[int(np.argmin(after)) :]))
+        assert second == pytest.approx(scene.values["D1.second_current"], abs=0.015 * scene.values["Q1.current"])
+    assert any("a second pulse" in said for said in result.cautions)
+
+
+def test_the_stray_is_drawn_with_its_value_and_bought_by_nobody() -> None:
+    picture = schematic(sized(NAME))
+    assert ">LS</text>" in picture
+    assert ">8.6 nH</text>" in picture
+
+
+def test_a_pulse_is_read_off_samples() -> None:
+    """A half sine of 3 A from 2 s to 2 s + π, coarsely sampled."""
+    time = np.linspace(0.0, 8.0, 401)
+    answer = np.where((time > 2) & (time < 2 + np.pi), 3 * np.sin(time - 2), 0.0)
+    found = pulse_of(time, answer)
+    assert found.peak == near(3.0, rel=1e-6)
+    assert found.width == near(2 * np.pi / 3, rel=1e-4)
+    assert found.rise_time == near(np.arcsin(0.9) - np.arcsin(0.1), rel=1e-3)

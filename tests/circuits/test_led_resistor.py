@@ -6,7 +6,10 @@ import numpy as np
 import pytest
 
 from opto_ckt.circuits.drivers.led import lit, nominal
+from opto_ckt.circuits.drivers.root import falling_root
 from opto_ckt.errors import InfeasibleError, InputError
+from opto_ckt.formulas.diode import current_at_voltage, forward_voltage
+from opto_ckt.limits import Lanes
 from opto_ckt.outputs.crosscheck import crosscheck
 from opto_ckt.outputs.wiring import drawing_faults
 from opto_ckt.result import Result
@@ -170,3 +173,20 @@ def test_power_finds_its_current() -> None:
     step = result.derivation.of("R1")
     assert step is not None
     assert step.inputs["current"] == near(20e-3, rel=0.01)
+
+
+def test_the_root_of_a_falling_function_agrees_with_another_road() -> None:
+    """Junctions of many kinds behind many resistors, beside the exact inverse by Lambert's function."""
+    rng = np.random.default_rng(1)
+    voltage, resistance = rng.uniform(1, 12, 500), 10 ** rng.uniform(0, 4, 500)
+    law = {"saturation_current": 10 ** rng.uniform(-20, -9, 500), "emission": rng.uniform(1, 2.5, 500)}
+
+    def left(current: Lanes) -> Lanes:
+        junction = forward_voltage(current=current, series_resistance=0.0, temperature=298.15, **law)
+        return np.asarray(voltage - current * resistance - junction)
+
+    found = falling_root(left, np.zeros(500), voltage / resistance)
+    exact = current_at_voltage(voltage=voltage, series_resistance=resistance, temperature=298.15, **law)
+    lit = exact > 1e-6 * voltage / resistance
+    assert lit.mean() > 0.9
+    np.testing.assert_allclose(found[lit], np.asarray(exact)[lit], rtol=1e-6)

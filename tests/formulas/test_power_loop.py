@@ -8,12 +8,11 @@ from hypothesis import given
 from hypothesis import strategies as st
 from scipy.integrate import solve_ivp
 
+from opto_ckt.formulas.laser_modulation import extinction_ratio, modulation_for_extinction
 from opto_ckt.formulas.power_loop import (
     bandwidth_for_droop,
-    extinction_ratio,
     integration_capacitance,
     loop_droop,
-    modulation_for_extinction,
     monitor_pole,
     power_loop_bandwidth,
     set_resistance,

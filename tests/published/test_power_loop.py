@@ -4,12 +4,10 @@ from __future__ import annotations
 
 from math import log10
 
+from opto_ckt.formulas.laser_modulation import extinction_ratio, modulation_for_extinction, run_duration
 from opto_ckt.formulas.power_loop import (
     crossover_of,
-    extinction_ratio,
-    modulation_for_extinction,
     power_loop_bandwidth,
-    run_duration,
 )
 from tests.published.printed import printed
 

@@ -7,6 +7,7 @@ from functools import cache
 import numpy as np
 
 from opto_ckt.circuits.drivers.laser import INVISIBLE_FROM
+from opto_ckt.circuits.drivers.root import falling_root
 from opto_ckt.constants import BOLTZMANN, ELEMENTARY_CHARGE, ROOM_TEMPERATURE
 from opto_ckt.formulas.diode import DiodeLaw, fit
 from opto_ckt.formulas.formula import Real
@@ -82,13 +83,13 @@ def current_through(values: Values, request: LedDriverRequest, voltage: Real, re
     """
     bridged = np.asarray(values.get("D1.short", 0.0)) > 0
     top = np.maximum(np.asarray(voltage, dtype=float), 0.0) / np.maximum(resistance, SHORT)
-    low, high = np.zeros_like(top), top
-    for _ in range(HALVINGS):
-        middle = (low + high) / 2
-        drop = np.where(bridged, 0.0, heated(values, request, middle)[0])
-        short = middle * resistance + drop < voltage
-        low, high = np.where(short, middle, low), np.where(short, high, middle)
-    return np.asarray(np.where(np.asarray(values.get("D1.open", 0.0)) > 0, 0.0, (low + high) / 2))
+
+    def left(current: Lanes) -> Lanes:
+        drop = np.where(bridged, 0.0, heated(values, request, current)[0])
+        return np.asarray(voltage - current * resistance - drop)
+
+    current = falling_root(left, np.zeros_like(top), top)
+    return np.asarray(np.where(np.asarray(values.get("D1.open", 0.0)) > 0, 0.0, current))
 
 
 def lit(values: Values, request: LedDriverRequest, current: Lanes) -> dict[str, float | Lanes]:

@@ -8,9 +8,10 @@ from typing import NamedTuple
 import numpy as np
 
 from opto_ckt.circuit import Bench
-from opto_ckt.circuits.drivers.laser import Most, coupling, forward, safe_current, settle
-from opto_ckt.circuits.drivers.laser_power.given import SETTING, tracking_error
-from opto_ckt.circuits.drivers.laser_power.monitor import wanted_point
+from opto_ckt.circuits.drivers.laser import Most, forward, safe_current, settle
+from opto_ckt.circuits.drivers.laser_power.given import tracking_error
+from opto_ckt.circuits.drivers.laser_power.monitor import sheet_share, wanted_point
+from opto_ckt.circuits.drivers.laser_power.trim import coarseness
 from opto_ckt.circuits.drivers.side import side_of
 from opto_ckt.circuits.drivers.slack import offset_error
 from opto_ckt.circuits.drivers.spread import resistor_spread
@@ -46,14 +47,8 @@ def most_power(request: LaserPowerRequest, bench: Bench) -> float:
     """The most that a trimmed unit ever gives, at the plane of the laser's sheet. [W]"""
     power = request.signal.power
     asked = 0.0 if power is None else power.high
-    drift = bench.high("U2.drift") + bench.high("set.drift") + 10 * SETTING
+    drift = bench.high("U2.drift") + bench.high("set.drift") + coarseness(request, bench)
     return asked / sheet_share(request, bench, "low") * 10 ** (tracking_error(request) / 10) * (1 + drift)
-
-
-def sheet_share(request: LaserPowerRequest, bench: Bench, level: str) -> float:
-    """Power at the plane asked for over that at the plane of the sheet, at its low or high end. [1]"""
-    values = {name: getattr(bench, level)(name) for name in bench.limits if name.startswith("D1.")}
-    return float(coupling(values, request))
 
 
 def _worn(request: LaserPowerRequest, bench: Bench, temperature: Lanes | float) -> dict[str, float | Lanes]:

@@ -17,7 +17,7 @@ from opto_ckt.circuits.drivers.laser_power import inner
 from opto_ckt.circuits.drivers.laser_power.monitor import beside
 from opto_ckt.circuits.drivers.pass_transistor import pass_transistor
 from opto_ckt.constants import ROOM_TEMPERATURE
-from opto_ckt.formulas import power_loop
+from opto_ckt.formulas import laser_modulation, power_loop
 from opto_ckt.formulas.reference import divided_voltage
 from opto_ckt.limits import Figures, Lanes, Requirement, Values
 from opto_ckt.request import LaserPowerRequest
@@ -77,7 +77,7 @@ class LaserPowerFigures(LaserFigures):
         slope = data.slope_at(ROOM_TEMPERATURE, values["D1.slope_efficiency.room"]) * coupling(values, request)
         return (
             np.asarray(
-                power_loop.modulation_for_extinction(
+                laser_modulation.modulation_for_extinction(
                     power=signal.power.nominal,
                     extinction_ratio=signal.extinction_ratio,
                     mark_density=signal.mark_density,
@@ -94,10 +94,15 @@ class LaserPowerFigures(LaserFigures):
         slope, current = self._values["D1.slope_efficiency"], self.modulation_current
         most = (1 - LEAST_ZERO) * power / (density * slope)
         return np.asarray(
-            power_loop.extinction_ratio(
+            laser_modulation.extinction_ratio(
                 power=power, modulation_current=np.minimum(current, most), mark_density=density, slope=slope
             )
         )
+
+    @cached_property
+    def clamp_current(self) -> Lanes:
+        """The most that the integrator's swing lets flow. [A]"""
+        return np.asarray(self._values["clamp_current"])
 
     @cached_property
     def clamp_margin(self) -> Lanes:
@@ -157,7 +162,7 @@ class LaserPowerFigures(LaserFigures):
         signal = self._request.signal
         if signal.bit_rate is None:
             return np.full_like(self.current, np.nan)
-        run = power_loop.run_duration(run_length=signal.run_length, bit_rate=signal.bit_rate)
+        run = laser_modulation.run_duration(run_length=signal.run_length, bit_rate=signal.bit_rate)
         crossover = stability.crossover_frequency(self._evaluation)
         return np.asarray(power_loop.loop_droop(bandwidth=crossover, duration=run))
 
@@ -202,6 +207,7 @@ def implied(request: LaserPowerRequest) -> tuple[Requirement, ...]:
     bounds = [
         Requirement("compliance_margin", "min", 0.0, 0.1),
         Requirement("clamp_margin", "min", 0.0, 0.05),
+        Requirement("clamp_current", "max", data.current_max, data.current_max),
         Requirement("clamp_power", "max", data.power_max, data.power_max),
         Requirement("current", "max", data.current_max, data.current_max),
         Requirement("junction_temperature", "max", junction_limit(request), 10.0),

@@ -13,7 +13,7 @@ from opto_ckt.circuits.drivers.laser_power import figures, operation
 from opto_ckt.circuits.drivers.pass_transistor import pass_transistor
 from opto_ckt.circuits.drivers.spread import resistor_spread
 from opto_ckt.errors import InfeasibleError
-from opto_ckt.formulas import power_loop
+from opto_ckt.formulas import laser_modulation, power_loop
 from opto_ckt.limits import Lanes
 from opto_ckt.request import LaserPowerRequest
 from opto_ckt.units import percent, write
@@ -93,7 +93,7 @@ def _ceiling(
     }
     signal, droop, wanted = request.signal, request.require.get("droop"), request.require.get("loop_bandwidth")
     if signal.bit_rate is not None:
-        run = power_loop.run_duration(run_length=signal.run_length, bit_rate=signal.bit_rate)
+        run = laser_modulation.run_duration(run_length=signal.run_length, bit_rate=signal.bit_rate)
         allowed = DROOP if droop is None or droop.max is None else droop.max
         said = f"for a droop of {percent(allowed)} over {signal.run_length} bits, {write(float(run), 's')}"
         found[said] = float(power_loop.bandwidth_for_droop(droop=allowed, duration=run))

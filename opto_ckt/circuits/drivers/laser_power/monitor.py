@@ -6,6 +6,7 @@ from typing import NamedTuple
 
 import numpy as np
 
+from opto_ckt.circuit import Bench
 from opto_ckt.circuits.drivers.current_source import amplifier_errors, disabled
 from opto_ckt.circuits.drivers.laser import Forward, coupling, thermal_resistance
 from opto_ckt.circuits.drivers.side import side_of
@@ -132,3 +133,9 @@ def wanted_point(values: Values, request: LaserPowerRequest, line: Forward, powe
 def beside(values: Values, total: Lanes) -> Lanes:
     """The set resistance with R16 beside it, which comes from the reference and holds the integrator off. [Ω]"""
     return np.asarray(parallel_resistance(first=total, second=values["R16"]))
+
+
+def sheet_share(request: LaserPowerRequest, bench: Bench, level: str) -> float:
+    """Power at the plane asked for over that at the plane of the sheet, at its low or high end. [1]"""
+    values = {name: getattr(bench, level)(name) for name in bench.limits if name.startswith("D1.")}
+    return float(coupling(values, request))

@@ -8,7 +8,7 @@ from opto_ckt.circuit import Bench
 from opto_ckt.circuits.drivers.laser_power.given import tracking_error
 from opto_ckt.constants import ROOM_TEMPERATURE
 from opto_ckt.errors import InfeasibleError
-from opto_ckt.formulas import power_loop
+from opto_ckt.formulas import laser_modulation
 from opto_ckt.request import LaserPowerRequest
 from opto_ckt.units import percent, write
 
@@ -33,7 +33,7 @@ def refuse_dark_zero(request: LaserPowerRequest, bench: Bench) -> None:
     least = least_power(request, bench)
     room = float(data.slope_at(ROOM_TEMPERATURE))
     current = float(
-        power_loop.modulation_for_extinction(
+        laser_modulation.modulation_for_extinction(
             power=power, extinction_ratio=signal.extinction_ratio, mark_density=density, slope=room
         )
     )

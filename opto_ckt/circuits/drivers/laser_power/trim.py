@@ -6,8 +6,8 @@ from typing import NamedTuple
 
 from opto_ckt.circuit import Bench
 from opto_ckt.circuits.drivers.fitting import Sizing
-from opto_ckt.circuits.drivers.laser_power.clamp import sheet_share
 from opto_ckt.circuits.drivers.laser_power.given import SETTING
+from opto_ckt.circuits.drivers.laser_power.monitor import sheet_share
 from opto_ckt.circuits.drivers.slack import offset_error
 from opto_ckt.circuits.drivers.spread import resistor_spread
 from opto_ckt.errors import InfeasibleError
@@ -20,6 +20,7 @@ COARSEST = 0.05  #: of the power, that a setting may be off where the fixed resi
 LARGEST = 2e6  #: of trimmers to be had; common practice [Ω]
 OFF = 3.0  #: times the largest offset; common practice
 MOST_OFF_BIAS = 2.2e6  #: above it leakage of a board counts; common practice [Ω]
+NEXT = 2.2  #: from one value of E3 to the next
 STEPS = 5.0  #: a track may be so many times what is needed
 
 
@@ -47,6 +48,13 @@ def needed_range(request: LaserPowerRequest, bench: Bench) -> Range:
         power=low / sheet_share(request, bench, "high"),
     )
     return Range(float(least), float(most))
+
+
+def coarseness(request: LaserPowerRequest, bench: Bench) -> float:
+    """How far the power may lie off its setting at the short end of the track, the next longer track fitted. [1]"""
+    found, tolerance = needed_range(request, bench), request.preferred.trimmers.tolerance
+    track = (found.most - found.least) / (1 - tolerance)
+    return min(SETTING * NEXT * track / found.least, COARSEST)
 
 
 def fit_trimmer(sizing: Sizing[LaserPowerRequest], bench: Bench) -> Range:
@@ -84,11 +92,36 @@ def fit_trimmer(sizing: Sizing[LaserPowerRequest], bench: Bench) -> Range:
             f" {percent(coarse)} of the power at its short end; one trimmer does not do",
             _narrower(request, bench, span * COARSEST / coarse),
         )
+    _refuse_short(sizing, found, spread)
     sizing.fit("RV1", least, "trimmers", low=least, high=STEPS * least,
                why=f"from R14 at its least to {write(found.most, 'Ω')} for the faintest monitor, track at its least;"
                " a rheostat, so that an open wiper lowers the power")  # fmt: skip
     _fit_off_bias(sizing, bench, found)
     return found
+
+
+def _refuse_short(sizing: Sizing[LaserPowerRequest], found: Range, spread: float) -> None:
+    """Refuse what the design file fixes where it does not reach over the span.
+
+    Raises
+    ------
+    InfeasibleError : R14 is too much for the brightest monitor, or with RV1 too little for the faintest.
+    """
+    fixed, request = sizing.request.fixed, sizing.request
+    if "R14" in fixed and fixed["R14"] * (1 - spread) > found.least:
+        raise InfeasibleError(
+            f"R14, fixed at {write(fixed['R14'], 'Ω')}, holds a unit with the brightest monitor below its power, which"
+            f" asks for {write(found.least, 'Ω')}",
+            [f"fixed.R14 ≤ {write(found.least / (1 + spread), 'Ω')}"],
+        )
+    most = sizing["R14"] * (1 + spread) + fixed.get("RV1", found.most) * (1 + request.preferred.trimmers.tolerance)
+    if "RV1" in fixed and most < found.most:
+        short = (found.most - sizing["R14"] * (1 - spread)) / (1 - request.preferred.trimmers.tolerance)
+        raise InfeasibleError(
+            f"RV1, fixed at {write(fixed['RV1'], 'Ω')}, leaves a unit with the faintest monitor above its power, which"
+            f" asks for {write(found.most, 'Ω')} in all",
+            [f"fixed.RV1 ≥ {write(short, 'Ω')}"],
+        )
 
 
 def _fit_off_bias(sizing: Sizing[LaserPowerRequest], bench: Bench, found: Range) -> None:

@@ -105,18 +105,18 @@ def _ratings(values: Values, request: LaserPulseRequest) -> list[str]:
 
 def _speed(values: Values, request: LaserPulseRequest) -> list[str]:
     """A gate too slow for the pulse."""
-    slowest = np.max(
+    turn_on = np.asarray(
         discharge.turn_on_time(
             gate_charge=values["Q1.gate_charge"],
             resistance=np.asarray(values["U1.source_resistance"]) + values["R4"],
             drive=values["Q1.overdrive"],
             plateau=0.0,
         )
-        / np.asarray(values["discharge.width"])
     )
-    if float(slowest) <= SLOW:
+    if float(np.max(turn_on / values["discharge.width"])) <= SLOW:
         return []
+    width = write(float(np.min(values["discharge.width"])), "s")
     return [
-        f"the gate takes up to {write(float(slowest * np.min(values['discharge.width'])), 's')} to charge, not far"
-        " below the width: the pulse is lower and wider than told; a faster driver, or less gate charge"
+        f"the gate takes up to {write(float(np.max(turn_on)), 's')} to charge, the pulse is {width} wide: it may come"
+        " lower and wider than told; a faster driver, or less gate charge"
     ]
