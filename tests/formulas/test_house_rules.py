@@ -75,6 +75,7 @@ BY_NAME = {  # where an equation holds only for figures that suit one another
     "allowed": 15.0,
     "bandwidth": 1e5,
     "case_to_sink": 0.5,
+    "coupling_capacitance": 1e-9,
     "dark_current": 1e-9,
     "error": 0.3,
     "error_ratio": 1e-9,
