@@ -146,3 +146,30 @@ def share_through(*, aperture: Real, spot: Real) -> Real:
     0.989
     """
     return 1 - exp(-((aperture / spot) ** 2))
+
+
+@source("derived: cone of a surface that shines by the cosine")
+def lambertian_share(*, aperture: Real, distance: Real) -> Real:
+    r"""Share of a small Lambertian surface's light that enters an aperture on its axis.
+
+    .. math:: \eta = \frac{d_a^2}{d_a^2 + 4 r^2}
+
+    Parameters
+    ----------
+    aperture : d_a. [m]
+    distance : r of the aperture. [m]
+
+    Returns
+    -------
+    η. [1]
+
+    Notes
+    -----
+    Light into one half space; a lens makes it a beam, of which more enters.
+
+    Examples
+    --------
+    >>> print(f"{lambertian_share(aperture=7e-3, distance=100e-3) * 1e3:.2f} per mille")
+    1.22 per mille
+    """
+    return aperture**2 / (aperture**2 + 4 * distance**2)

@@ -7,7 +7,7 @@ from dataclasses import dataclass, replace
 from typing import Literal
 from unicodedata import east_asian_width
 
-from opto_ckt.outputs.symbols import Segment
+from opto_ckt.outputs.strokes import Segment
 from opto_ckt.topology import Point
 
 SIZE = 0.28  #: of the letters [grid]

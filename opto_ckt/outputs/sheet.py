@@ -8,7 +8,8 @@ from itertools import combinations
 from math import hypot
 
 from opto_ckt.outputs.lettering import Frame, Label, TextBox, place_labels, spots_around, spots_beyond, spots_in_corners
-from opto_ckt.outputs.symbols import Segment, Shape, disc, drawn, ground_mark, port_mark, rail_mark, snapped, symbol
+from opto_ckt.outputs.strokes import Segment, Shape, disc, ground_mark, port_mark, rail_mark, snapped
+from opto_ckt.outputs.symbols import drawn, symbol
 from opto_ckt.outputs.wiring import junctions, lies_on, marks, pins, rails, touched_points, wires, written
 from opto_ckt.topology import GROUND, Element, FixedTia, OpAmp, Point, Terminal, Topology
 

@@ -6,7 +6,8 @@ from collections import Counter, defaultdict
 from collections.abc import Iterator
 from dataclasses import dataclass
 
-from opto_ckt.outputs.symbols import drawn, optional_pins, snapped
+from opto_ckt.outputs.strokes import snapped
+from opto_ckt.outputs.symbols import drawn, optional_pins
 from opto_ckt.topology import GROUND, Point, Supply, Topology
 
 _NEAR = 1e-6  #: points closer than this are one [grid]

@@ -10,18 +10,24 @@ from pydantic import Field
 from opto_ckt.parts.led import LedData
 from opto_ckt.parts.logic import LogicOutputData
 from opto_ckt.parts.opamp import OpAmpData
-from opto_ckt.parts.record import Check, Finding
+from opto_ckt.parts.record import Check, Finding, Unit
 from opto_ckt.parts.reference import ReferenceData
 from opto_ckt.parts.transistor import BipolarData, MosfetData
 from opto_ckt.request.driver import DriverConditions, DriveSignal
 from opto_ckt.request.request import Request
+from opto_ckt.request.tables import Band
 from opto_ckt.units import percent, write
 
 
 class LedSignal(DriveSignal):
-    """What the LED has to do, and by which level of a logic output it is lit."""
+    """What the LED has to do, how it is lit, what hastens it; each circuit reads what concerns it."""
 
-    drive: Literal["source", "sink"] = "sink"  #: current out of the output while high, or into it while low
+    drive: Literal["source", "sink"] = "sink"  #: current out of the logic output while high, or into it while low
+    pre_bias: Annotated[float | None, Unit("A", "0.5 mA")] = None  #: through the LED while off: no delay, less contrast
+    sweep_out: Annotated[float | None, Unit("A", "5 mA")] = None  #: drawn out of the LED by a resistor across it
+    speed_up: bool = False  #: a capacitor across the base resistor
+    band: Band | None = None  #: of an analog signal
+    source_resistance: Annotated[float, Unit("Ω", "50 Ω")] = 50.0  #: of what drives an analog input
 
 
 def _in_reach(

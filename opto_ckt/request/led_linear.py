@@ -22,11 +22,10 @@ N_TYPE = ("npn", "nmos")
 
 
 class LedLinearSignal(LedSignal):
-    """The standing current or light, and the signal about it."""
+    """The standing current or light, and the signal about it; its band has to be known."""
 
     modulation_index: Annotated[float, Unit("1", "0.5")] = 0.5  #: peak over standing current
     band: Band
-    source_resistance: Annotated[float, Unit("Ω", "50 Ω")] = 50.0  #: of what drives the input
 
 
 def _below(transistor: BipolarData | MosfetData) -> Iterator[Finding]:
@@ -36,8 +35,14 @@ def _below(transistor: BipolarData | MosfetData) -> Iterator[Finding]:
         )
 
 
-def _crest(source: LedData, signal: LedLinearSignal) -> Iterator[Finding]:
-    if signal.current is None:
+def _analog(signal: LedSignal) -> Iterator[Finding]:
+    """A signal read for another circuit may say nothing of it."""
+    if signal.band is None or signal.modulation_index is None:
+        yield Finding(("signal", "band"), "band and modulation_index of the analog signal are needed")
+
+
+def _crest(source: LedData, signal: LedSignal) -> Iterator[Finding]:
+    if signal.current is None or signal.modulation_index is None:
         return
     crest = signal.current.nominal * (1 + signal.modulation_index)
     if crest > source.current_max:
@@ -60,6 +65,7 @@ class LedLinearRequest(LedDriverRequest):
     checks: ClassVar[tuple[Check, ...]] = (
         *LedDriverRequest.checks,
         Check(("transistor",), _below),
+        Check(("signal",), _analog),
         Check(("source", "signal"), _crest),
         Check(("amplifier", "conditions"), amplifier_supplied),
     )

@@ -8,19 +8,11 @@ from typing import Annotated, ClassVar
 from pydantic import Field
 
 from opto_ckt.parts.logic import LogicOutputData
-from opto_ckt.parts.record import Check, Finding, Unit
+from opto_ckt.parts.record import Check, Finding
 from opto_ckt.parts.transistor import BipolarData, MosfetData
-from opto_ckt.request.led import LedDriverRequest, LedSignal
+from opto_ckt.request.led import LedDriverRequest
 
 N_TYPE = ("npn", "nmos")
-
-
-class LedSwitchSignal(LedSignal):
-    """What the LED has to do, and what hastens it."""
-
-    pre_bias: Annotated[float | None, Unit("A", "0.5 mA")] = None  #: through the LED while off: no delay, less contrast
-    sweep_out: Annotated[float | None, Unit("A", "5 mA")] = None  #: drawn out of the LED by a resistor across it
-    speed_up: bool = False  #: a capacitor across the base resistor
 
 
 def _below(transistor: BipolarData | MosfetData) -> Iterator[Finding]:
@@ -35,6 +27,5 @@ class LedSwitchRequest(LedDriverRequest):
 
     logic_output: LogicOutputData
     transistor: Annotated[BipolarData | MosfetData, Field(discriminator="kind")]
-    signal: LedSwitchSignal
 
     checks: ClassVar[tuple[Check, ...]] = (*LedDriverRequest.checks, Check(("transistor",), _below))

@@ -2,10 +2,16 @@
 
 from __future__ import annotations
 
+import pytest
+
+from opto_ckt.circuits.drivers.eye_safety import hazard_levels
 from opto_ckt.formulas.eye_safety import class_1_limit, share_through, single_mode_spot
+from opto_ckt.parts.fibre import FibreData
+from opto_ckt.parts.record import Spread
 from opto_ckt.units import write
 from tests.circuits.lc import FACET
 from tests.circuits.sized import sized
+from tests.published.printed import printed
 
 NAME = "laser-current"
 SINGLE_MODE = (("", '[fibre]\ncore = "8.2 µm"\nmode_field_diameter = "9.2 µm"'),)
@@ -53,3 +59,19 @@ def test_the_verdict_follows_normal_running_and_fault() -> None:
 
 def test_wavelengths_without_a_limit_are_said() -> None:
     assert "a competent person has to look" in advice(("wavelength", 'wavelength = "4600 nm"'))
+
+
+@pytest.mark.parametrize(
+    ("wavelength", "level_1", "level_1m"), [(1270e-9, "25.8e-3", "42.8e-3"), (1550e-9, "10e-3", "136e-3")]
+)
+def test_hazard_levels_of_a_single_mode_fibre(wavelength: float, level_1: str, level_1m: str) -> None:
+    """IEC 60825-2:2004/A1, annex D, from memory, for 11 µm; ADVA, FSP 3000 C hardware guide p. 347: 136 mW."""
+    fibre = FibreData(core=Spread(typ=8.2e-6), mode_field_diameter=Spread(typ=11e-6))
+    assert hazard_levels(fibre, wavelength) == (printed(level_1), printed(level_1m))
+
+
+def test_hazard_levels_are_told_and_beyond_1400_nm_all_the_light_counts() -> None:
+    long = (*SINGLE_MODE, ("wavelength", 'wavelength = "1550 nm"'))
+    assert f"{write(worst(*long), 'W')} in the worst fault" in advice(*long)
+    for changes in (SINGLE_MODE, long):
+        assert any("hazard level 1 goes up to" in caution for caution in sized(NAME, *changes).cautions)

@@ -2,12 +2,16 @@
 
 from __future__ import annotations
 
+import re
+
 import numpy as np
 import pytest
 
 from opto_ckt.analyses.network import Network
 from opto_ckt.analyses.network.expansion import expand
 from opto_ckt.analyses.response import bandwidth
+from opto_ckt.circuits import load
+from opto_ckt.design.comparison import alternatives
 from opto_ckt.errors import InfeasibleError, InputError
 from opto_ckt.outputs.crosscheck import crosscheck
 from opto_ckt.outputs.wiring import drawing_faults
@@ -161,3 +165,17 @@ def test_a_transistor_that_cannot_switch_to_ground_is_refused(kind: str) -> None
 def test_a_drive_below_the_base_voltage_is_infeasible() -> None:
     with pytest.raises(InfeasibleError, match="does not reach the transistor's"):
         sized(NAME, ("high ", 'high = { min = "0.6 V", typ = "2 V", max = "2.4 V" }'))
+
+
+def test_the_same_request_is_told_for_the_other_drivers() -> None:
+    """A file that has every table: each other driver of an LED with what it gives and risks, or why it does not go."""
+    tables = re.search(r"\[amplifier\].*?(?=\[signal\])", load("led-linear").starter, re.DOTALL)
+    assert tables is not None
+    plain = read(NAME, ("", tables[0])).request
+    other, linear = alternatives(plain, ("led-switch", "led-resistor", "led-linear"), load)
+    assert other.circuit == "led-resistor"
+    assert other.faults is not None
+    assert "band and modulation_index" in linear.verdict
+    analog = ("speed_up", 'modulation_index = "30 %"\nband = { min = "20 Hz", max = "50 kHz" }')
+    full = read(NAME, ("", tables[0]), ("# " + analog[0], analog[1])).request
+    assert alternatives(full, ("led-linear",), load)[0].figures["current"] > 0

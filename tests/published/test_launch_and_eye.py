@@ -10,6 +10,7 @@ import pytest
 from opto_ckt.formulas.eye_safety import (
     class_1_limit,
     infrared_factor,
+    lambertian_share,
     multimode_spot,
     share_through,
     single_mode_spot,
@@ -191,6 +192,13 @@ def test_hazard_levels_of_the_1310_nm_window():
     for distance, figure in ((70e-3, "25.8e-3"), (100e-3, "42.8e-3")):
         spot = single_mode_spot(distance=distance, wavelength=1270e-9, mode_field_diameter=11e-6)
         assert 15.6e-3 / share_through(aperture=7e-3, spot=spot) == printed(figure)
+
+
+def test_lambertian_source_through_an_aperture():
+    """Another road: the cosine integrated over the cone of 7 mm at 100 mm."""
+    cone = np.linspace(0, np.arctan(3.5e-3 / 100e-3), 20_001)
+    entering = np.trapezoid(2 * np.cos(cone) * np.sin(cone), cone)
+    assert lambertian_share(aperture=7e-3, distance=100e-3) == near(entering)
 
 
 @pytest.mark.parametrize("wavelength", [300e-9, 5e-6])

@@ -11,6 +11,7 @@ from opto_ckt.formulas.eye_safety import (
     INFRARED,
     LONGEST,
     LOUPE,
+    NAKED,
     NARROW,
     PUPIL,
     SHORTEST,
@@ -77,13 +78,29 @@ def _seen(request: LaserRequest, wavelength: float) -> Seen:
     if fibre is None:
         where = "the fibre's end" if (request.signal.plane or request.source.plane) == "fibre" else "the bare source"
         return Seen(1.0, f"all the light of {where} enters the eye; [fibre] gives its share")
-    aperture = PUPIL if wavelength < INFRARED else NARROW
-    share = float(share_through(aperture=aperture, spot=_spot(fibre, wavelength, LOUPE)))
-    return Seen(
-        share,
-        f"{percent(share)} of the light from the fibre's end enters {write(aperture, 'm')} at {write(LOUPE, 'm')}, a"
-        " Gaussian beam; with the fibre out, the laser's own light is met",
+    level_1, level_1m = (write(power, "W") for power in hazard_levels(fibre, wavelength))
+    levels = (
+        f"; of the fibre's end, hazard level 1 goes up to {level_1} and 1M to {level_1m} (IEC 60825-2, from memory)"
+        "; with the fibre out, the laser's own light is met"
     )
+    if wavelength >= INFRARED:
+        return Seen(1.0, f"all the light of the fibre's end counts beyond {write(INFRARED, 'm')}{levels}")
+    share = float(share_through(aperture=PUPIL, spot=_spot(fibre, wavelength, LOUPE)))
+    beam = f"{percent(share)} of the light from the fibre's end enters {write(PUPIL, 'm')} at {write(LOUPE, 'm')}"
+    return Seen(share, f"{beam}, a Gaussian beam{levels}")
+
+
+def hazard_levels(fibre: FibreData, wavelength: float) -> tuple[float, float]:
+    """Power from a fibre's end up to which it is of hazard level 1, through a magnifier, and 1M, by a bare eye. [W]
+
+    Beyond 1400 nm level 1 takes all the light for met.
+    """
+    limit = float(class_1_limit(wavelength))
+    aperture = PUPIL if wavelength < INFRARED else NARROW
+    magnified, bare = (
+        float(share_through(aperture=aperture, spot=_spot(fibre, wavelength, distance))) for distance in (LOUPE, NAKED)
+    )
+    return limit / (magnified if wavelength < INFRARED else 1.0), limit / bare
 
 
 def _spot(fibre: FibreData, wavelength: float, distance: float) -> float:
