@@ -121,35 +121,6 @@ def planar_efficiency(*, index: Real) -> Real:
     return 1 / (index * (index + 1) ** 2)
 
 
-@source("T. P. Pearsall, Photonics Essentials, Ex. 6.6")
-def recombination_rate(*, coefficient: Real, doping: Real, nonradiative: Real) -> Real:
-    r"""Rate at which carriers vanish in a doped layer, few carriers being injected.
-
-    .. math:: \frac{1}{\tau} = B n + \frac{1}{\tau_{nr}}
-
-    Parameters
-    ----------
-    coefficient : B. [m³/s]
-    doping : n. [1/m³]
-    nonradiative : τ_nr. [s]
-
-    Returns
-    -------
-    1/τ. [1/s]
-
-    Notes
-    -----
-    The same book takes 1/(πτ) as bandwidth, a third convention beside those of `electrical_bandwidth` and
-    `optical_bandwidth`.
-
-    Examples
-    --------
-    >>> print(f"{recombination_rate(coefficient=8e-17, doping=5e24, nonradiative=2e-9):.2e}")
-    9.00e+08
-    """
-    return coefficient * doping + 1 / nonradiative
-
-
 @source("derived: photocurrent at 0.707 of its low-frequency value, one pole")
 def electrical_bandwidth(*, lifetime: Real) -> Real:
     r"""Frequency at which the photocurrent's power has halved.

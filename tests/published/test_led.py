@@ -14,10 +14,10 @@ from opto_ckt.formulas.led import (
     optical_index,
     planar_efficiency,
     planar_extraction,
-    recombination_rate,
     saturation_current,
     second_harmonic,
 )
+from opto_ckt.formulas.recombination import driven_recombination_rate, recombination_rate
 from opto_ckt.formulas.transit import bandwidth_of_rise_time
 from tests.near import near
 from tests.published.printed import printed
@@ -81,6 +81,14 @@ def test_pearsall_6_6():
     rate = recombination_rate(coefficient=8e-17, doping=5e24, nonradiative=2e-9)
     assert rate == printed("9.00e8")
     assert rate / np.pi == printed("286e6")
+
+
+def test_speed_grows_as_the_root_of_a_large_drive():
+    """Pearsall, ch. 6, its 3 included: a balance of J/(3 q d) and B n² solved for n gives 1/τ = B n."""
+    rate = driven_recombination_rate(coefficient=8e-17, current_density=np.array([1e7, 4e7]), thickness=0.5e-6)
+    carriers = rate / 8e-17
+    assert 8e-17 * carriers**2 * 3 * 1.602176634e-19 * 0.5e-6 == near(np.array([1e7, 4e7]), rel=1e-12)
+    assert rate[1] / rate[0] == near(2.0, rel=1e-12)
 
 
 def test_kolimbiris_3_3():
