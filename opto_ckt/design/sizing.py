@@ -211,11 +211,13 @@ def _scenes(sized: Sized, rows: Sequence[FoundRequirement], found: Mapping[str, 
     evaluation = model.evaluation(biased)
     frequency = model.circuit.noise_frequency(model.request)
     density = np.sqrt(noise.output_density(evaluation, frequency))
+    with np.errstate(divide="ignore", invalid="ignore"):  # a dark LED answers nothing
+        referred = density / np.abs(response.transfer_at(evaluation, frequency))
     expected = {
         **model.circuit.figures(biased, evaluation, model.request),
         "output_noise_density": density,
         "settling_time": response.settling_time(evaluation),
-        "signal_noise_density": density / np.abs(response.transfer_at(evaluation, frequency)),
+        "signal_noise_density": referred,
     }
 
     def lane(values: Values, index: int) -> dict[str, float]:

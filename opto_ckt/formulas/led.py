@@ -8,9 +8,7 @@ from opto_ckt.constants import ELEMENTARY_CHARGE, LIGHT_SPEED, PLANCK
 from opto_ckt.formulas.formula import Real, source
 
 
-@source(
-    "rates add; J. M. Senior, Optical Fiber Communications, Ex. 7.1; G. Keiser, same title, Ex. 4.5"
-)
+@source("rates add; J. M. Senior, Optical Fiber Communications, Ex. 7.1; G. Keiser, same title, Ex. 4.5")
 def carrier_lifetime(*, radiative: Real, nonradiative: Real) -> Real:
     r"""Lifetime of the carriers.
 

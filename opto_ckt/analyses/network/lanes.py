@@ -49,9 +49,13 @@ def horner(coefficients: Array, at: Any) -> Any:
 
 
 def over_points(polynomial: Array, points: Array, weight: Array | float = 1.0) -> Array:
-    """Values of a polynomial times a weight at every point, for every lane; shape (points, lanes)."""
+    """Values of a polynomial times a weight at every point, for every lane; shape (points, lanes).
+
+    Where a wild lane leaves the range of numbers it holds inf or nan.
+    """
     powers = np.vander(points, len(polynomial), increasing=True)
-    return np.asarray((powers.T * weight).T @ polynomial)
+    with np.errstate(over="ignore", invalid="ignore"):
+        return np.asarray((powers.T * weight).T @ polynomial)
 
 
 def difference(left: Array, right: Array) -> Array:

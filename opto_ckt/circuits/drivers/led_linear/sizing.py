@@ -115,6 +115,7 @@ def _current(sizing: Sizing[LedLinearRequest], bench: Bench) -> None:
                 "a lower signal.current or signal.modulation_index",
             ],
         )
+    safe = max(safe, LEAST_SERIES)
     if room < safe:
         derivation.note(
             "R7",
