@@ -53,8 +53,8 @@ def over_points(polynomial: Array, points: Array, weight: Array | float = 1.0) -
 
     Where a wild lane leaves the range of numbers it holds inf or nan.
     """
-    powers = np.vander(points, len(polynomial), increasing=True)
     with np.errstate(over="ignore", invalid="ignore"):
+        powers = np.vander(points, len(polynomial), increasing=True)
         return np.asarray((powers.T * weight).T @ polynomial)
 
 
